@@ -1,0 +1,1 @@
+//! The interference engine: what light does in a stack of films.

@@ -1,0 +1,1 @@
+//! The recipe language: from text to findings.

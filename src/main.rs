@@ -1,0 +1,2 @@
+//! The `overcoat` command.
+fn main() {}
