@@ -1,1 +1,11 @@
 //! The recipe language: from text to findings.
+//!
+//! Data flows one way: text → tokens → [`syntax`] tree → resolved [`model`] → evaluation → [`finding`]s →
+//! [`diagnostic`]s, which every output is a view of.
+
+pub mod code;
+pub mod diagnostic;
+pub mod finding;
+pub mod source;
+pub mod syntax;
+pub mod units;

@@ -1,0 +1,3 @@
+//! From text to tree.
+
+pub mod ast;
