@@ -30,6 +30,15 @@ pub enum FormFact {
         /// Where it could be imported from: module path, or `handbook`.
         import: Option<String>,
     },
+    /// A name that the file it is to come from does not define.
+    NotInFile {
+        /// The name.
+        name: String,
+        /// The file as written.
+        path: String,
+        /// The nearest names there, best first.
+        near: Vec<String>,
+    },
     /// A name of another kind than the place needs.
     WrongKind {
         /// The name.

@@ -4,8 +4,10 @@
 //! (nm, rad, s, MPa, fractions), so that the words can be changed without touching the checks.
 
 mod form;
+mod optics;
 
 pub use form::FormFact;
+pub use optics::OpticsFact;
 
 use crate::source::Place;
 
@@ -23,11 +25,19 @@ pub struct Finding {
 pub enum Fact {
     /// About the text: syntax, names, units, files.
     Form(FormFact),
+    /// About optical constants and light.
+    Optics(OpticsFact),
 }
 
 impl From<FormFact> for Fact {
     fn from(fact: FormFact) -> Fact {
         Fact::Form(fact)
+    }
+}
+
+impl From<OpticsFact> for Fact {
+    fn from(fact: OpticsFact) -> Fact {
+        Fact::Optics(fact)
     }
 }
 
