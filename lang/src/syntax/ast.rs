@@ -587,6 +587,8 @@ pub enum AtItem {
 }
 
 /// A statement of a recipe.
+// A recipe has a handful of statements: the size of the largest costs nothing.
+#[allow(clippy::large_enum_variant)]
 #[derive(Clone, Debug, PartialEq)]
 pub enum RecipeStatement {
     /// `revision "B"`
