@@ -1,1 +1,29 @@
 //! The interference engine: what light does in a stack of films.
+//!
+//! It knows light and films, and nothing of recipes, files or editors. Lengths are in nm, wavelengths are in
+//! vacuum, angles in rad, everything is `f64`.
+//!
+//! # Conventions
+//!
+//! - Fields go as exp(−iωt); a refractive index is N = n + ik with k ≥ 0.
+//! - Angles are those of incidence, in the incident medium, from 0 to below 90°.
+//! - For p polarisation r is that of the tangential electric field: at normal incidence r is the same for s
+//!   and p, and negative where the light meets the higher index.
+//! - R, T and A are fractions of the incident power; light that enters the exit half-space is transmitted.
+
+mod bodies;
+mod coating;
+mod constants;
+mod dispersion;
+mod error;
+mod matrix;
+mod number;
+mod plan;
+mod response;
+mod stack;
+
+pub use dispersion::{Index, MixingRule, Oscillator};
+pub use error::{IndexError, ModelError, OpticsError, SpectrumError};
+pub use num_complex::Complex64;
+pub use response::{Absorption, Polarisation, Response};
+pub use stack::{Body, Film, Stack};

@@ -1,0 +1,107 @@
+//! One coating, coherent, between two media: amplitudes, powers and the power flow at every face.
+
+use num_complex::Complex64;
+
+use crate::matrix::{Medium, Mode, Pair, Step};
+
+/// What a coating does to a wave that arrives in one of the two media about it. Powers refer to the
+/// arriving wave's.
+#[derive(Clone, Debug)]
+pub(crate) struct Coating {
+    /// The amplitude of the reflected tangential electric field. For p this is the sign with which r is the
+    /// same for s and p at normal incidence.
+    pub(crate) r: Complex64,
+    pub(crate) reflectance: f64,
+    pub(crate) transmittance: f64,
+    pub(crate) ln_transmittance: f64,
+    /// The absorptance of each film, if asked for, in the order the light meets them.
+    pub(crate) films: Vec<f64>,
+    /// The numerator and the denominator of r, up to a common factor that never vanishes or turns.
+    pub(crate) numerator: Complex64,
+    pub(crate) denominator: Complex64,
+    /// The logarithm of that factor's size.
+    pub(crate) ln_scale: f64,
+}
+
+/// Which results are wanted beyond R and T.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum Detail {
+    Whole,
+    ByFilm,
+}
+
+impl Coating {
+    /// `steps` in the order the light meets the films. R = |r|², T is the power that flows into the exit
+    /// medium over what the arriving wave alone carries.
+    ///
+    /// Where the entry medium carries no power (a thick body in total reflection) all powers are zero: no
+    /// light arrives there.
+    pub(crate) fn solve<'a>(
+        steps: impl DoubleEndedIterator<Item = &'a Step<Complex64>>,
+        entry: &Medium<Complex64>,
+        exit: &Medium<Complex64>,
+        mode: Mode,
+        detail: Detail,
+    ) -> Coating {
+        let arriving = entry.wave(mode);
+        let mut pair = exit.wave(mode);
+        let flux_out = pair.flux().max(0.0);
+        let mut faces: Vec<(f64, f64)> = Vec::new();
+        for step in steps.rev() {
+            if detail == Detail::ByFilm {
+                faces.push((pair.flux(), pair.ln_scale));
+            }
+            pair = step.carry(&pair, mode);
+        }
+        let front = pair;
+        let sum = arriving.c * front.b + arriving.b * front.c;
+        let difference = arriving.c * front.b - arriving.b * front.c;
+        let flux_in = arriving.flux();
+        let mut coating = Coating {
+            r: difference / sum,
+            reflectance: 0.0,
+            transmittance: 0.0,
+            ln_transmittance: f64::NEG_INFINITY,
+            films: Vec::new(),
+            numerator: difference,
+            denominator: sum,
+            ln_scale: front.ln_scale,
+        };
+        if flux_in <= 0.0 {
+            coating.films = vec![0.0; faces.len()];
+            return coating;
+        }
+        coating.reflectance = difference.norm_sqr() / sum.norm_sqr();
+        // The power flow of a field in the stack over that of the arriving wave alone.
+        let share = 4.0 * (arriving.b * arriving.c).norm_sqr() / (flux_in * sum.norm_sqr());
+        if flux_out > 0.0 {
+            coating.ln_transmittance = (share * flux_out).ln() - 2.0 * front.ln_scale;
+            coating.transmittance = share * flux_out * (-2.0 * front.ln_scale).exp();
+        }
+        if detail == Detail::ByFilm {
+            faces.push((front.flux(), front.ln_scale));
+            let flow = |&(flux, ln_scale): &(f64, f64)| share * flux * (2.0 * (ln_scale - front.ln_scale)).exp();
+            let flows: Vec<f64> = faces.iter().rev().map(flow).collect();
+            coating.films = flows.windows(2).map(|faces| faces[0] - faces[1]).collect();
+        }
+        coating
+    }
+
+    /// Whether every number is one.
+    pub(crate) fn is_finite(&self) -> bool {
+        self.reflectance.is_finite()
+            && self.transmittance.is_finite()
+            && !self.ln_transmittance.is_nan()
+            && self.films.iter().all(|share| share.is_finite())
+    }
+
+    /// The logarithm of |r|'s denominator squared, scale and all.
+    #[cfg(test)]
+    pub(crate) fn ln_denominator(&self) -> f64 {
+        self.denominator.norm_sqr().ln() + 2.0 * self.ln_scale
+    }
+}
+
+/// The fields' pair for tests.
+#[cfg(test)]
+pub(crate) type Fields = Pair<Complex64>;
