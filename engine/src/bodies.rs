@@ -31,7 +31,8 @@ impl Chain {
     /// `ln_passed` holds the logarithm of what one pass through each body leaves. `None` if a number is not
     /// finite or the balance of a body has no solution.
     pub(crate) fn new(links: Vec<Link>, ln_passed: Vec<f64>, lossless: bool) -> Option<Chain> {
-        let finite = |link: &Link| link.front.is_finite() && link.back.as_ref().is_none_or(Coating::is_finite);
+        let finite =
+            |link: &Link| link.front.is_finite() && link.back.as_ref().is_none_or(Coating::is_finite);
         if !links.iter().all(finite) {
             return None;
         }
@@ -43,7 +44,7 @@ impl Chain {
             let passed = ln_passed[at].exp();
             let (front, back) = (&links[at].front, links[at].back.as_ref()?);
             let lost = 1.0 - back.reflectance * behind[at + 1] * passed * passed;
-            if !(lost > 0.0) {
+            if lost <= 0.0 {
                 // No power enters a body in total reflection, so that it has nothing to sum.
                 if front.transmittance > 0.0 {
                     return None;

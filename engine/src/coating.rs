@@ -2,21 +2,20 @@
 
 use num_complex::Complex64;
 
-use crate::matrix::{Medium, Mode, Pair, Step};
+use crate::matrix::{Medium, Mode, Step};
 
 /// What a coating does to a wave that arrives in one of the two media about it. Powers refer to the
 /// arriving wave's.
 #[derive(Clone, Debug)]
 pub(crate) struct Coating {
-    /// The amplitude of the reflected tangential electric field. For p this is the sign with which r is the
-    /// same for s and p at normal incidence.
-    pub(crate) r: Complex64,
     pub(crate) reflectance: f64,
     pub(crate) transmittance: f64,
     pub(crate) ln_transmittance: f64,
     /// The absorptance of each film, if asked for, in the order the light meets them.
     pub(crate) films: Vec<f64>,
-    /// The numerator and the denominator of r, up to a common factor that never vanishes or turns.
+    /// The numerator and the denominator of r, the amplitude of the tangential electric field reflected, up to
+    /// a common positive factor. For p this is the sign with which r is the same for s and p at normal
+    /// incidence.
     pub(crate) numerator: Complex64,
     pub(crate) denominator: Complex64,
     /// The logarithm of that factor's size.
@@ -58,7 +57,6 @@ impl Coating {
         let difference = arriving.c * front.b - arriving.b * front.c;
         let flux_in = arriving.flux();
         let mut coating = Coating {
-            r: difference / sum,
             reflectance: 0.0,
             transmittance: 0.0,
             ln_transmittance: f64::NEG_INFINITY,
@@ -80,7 +78,8 @@ impl Coating {
         }
         if detail == Detail::ByFilm {
             faces.push((front.flux(), front.ln_scale));
-            let flow = |&(flux, ln_scale): &(f64, f64)| share * flux * (2.0 * (ln_scale - front.ln_scale)).exp();
+            let flow =
+                |&(flux, ln_scale): &(f64, f64)| share * flux * (2.0 * (ln_scale - front.ln_scale)).exp();
             let flows: Vec<f64> = faces.iter().rev().map(flow).collect();
             coating.films = flows.windows(2).map(|faces| faces[0] - faces[1]).collect();
         }
@@ -94,14 +93,4 @@ impl Coating {
             && !self.ln_transmittance.is_nan()
             && self.films.iter().all(|share| share.is_finite())
     }
-
-    /// The logarithm of |r|'s denominator squared, scale and all.
-    #[cfg(test)]
-    pub(crate) fn ln_denominator(&self) -> f64 {
-        self.denominator.norm_sqr().ln() + 2.0 * self.ln_scale
-    }
 }
-
-/// The fields' pair for tests.
-#[cfg(test)]
-pub(crate) type Fields = Pair<Complex64>;

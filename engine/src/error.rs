@@ -93,7 +93,7 @@ pub enum IndexError {
 
 /// Why a spectrum (a light source, a detector, a weight) was refused.
 #[derive(Clone, Debug, PartialEq, Error)]
-pub enum SpectrumError {
+pub enum WeightError {
     /// Fewer than two rows.
     #[error("a table needs at least 2 rows, not {given}")]
     TooFew {

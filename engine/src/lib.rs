@@ -11,6 +11,7 @@
 //!   and p, and negative where the light meets the higher index.
 //! - R, T and A are fractions of the incident power; light that enters the exit half-space is transmitted.
 
+mod band;
 mod bodies;
 mod coating;
 mod constants;
@@ -19,11 +20,17 @@ mod error;
 mod matrix;
 mod number;
 mod plan;
+mod quadrature;
+mod quantity;
 mod response;
 mod stack;
+mod weight;
 
+pub use band::{Extreme, Extremes, Mean, extremes, extremes_over_angles, mean, value};
 pub use dispersion::{Index, MixingRule, Oscillator};
-pub use error::{IndexError, ModelError, OpticsError, SpectrumError};
+pub use error::{IndexError, ModelError, OpticsError, WeightError};
 pub use num_complex::Complex64;
+pub use quantity::{Light, Quantity};
 pub use response::{Absorption, Polarisation, Response};
 pub use stack::{Body, Film, Stack};
+pub use weight::SpectralWeight;

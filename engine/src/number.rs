@@ -9,12 +9,7 @@ use num_complex::Complex64;
 
 /// A complex-valued function of a real variable (a photon energy), known at one point.
 pub(crate) trait Number:
-    Clone
-    + Add<Output = Self>
-    + Sub<Output = Self>
-    + Mul<Output = Self>
-    + Div<Output = Self>
-    + Neg<Output = Self>
+    Clone + Add<Output = Self> + Sub<Output = Self> + Mul<Output = Self> + Div<Output = Self> + Neg<Output = Self>
 {
     /// A value that does not depend on the variable.
     fn constant(value: Complex64) -> Self;

@@ -161,14 +161,15 @@ impl Tilted<'_> {
     }
 
     /// The coatings and the bodies between them, with every number checked.
-    fn chain(&self, mode: Mode, detail: Detail) -> Result<Chain, OpticsError> {
+    pub(crate) fn chain(&self, mode: Mode, detail: Detail) -> Result<Chain, OpticsError> {
         let coatings = self.coatings(mode, detail);
         let bodies = &self.plan.bodies;
         let damping = |body: &Layer| {
             let decay = self.media[body.material].normal().im;
             -2.0 * TAU * decay * body.thickness_nm / self.wavelength_nm
         };
-        let lossless = self.media.iter().enumerate().all(|(at, medium)| at == self.plan.exit || medium.index.im == 0.0);
+        let lossless =
+            self.media.iter().enumerate().all(|(at, medium)| at == self.plan.exit || medium.index.im == 0.0);
         let ln_passed = bodies.iter().map(damping).collect();
         Chain::new(coatings, ln_passed, lossless).ok_or(self.not_finite())
     }

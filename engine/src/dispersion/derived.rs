@@ -55,7 +55,8 @@ mod tests {
     #[test]
     fn shift_and_factor_leave_k_alone() {
         let base = Index::constant(2.0, 0.1).expect("valid");
-        let shifted = base.shifted(0.01).and_then(|index| index.at(500.0).map_err(|_| ModelError::NoCommonRange));
+        let shifted =
+            base.shifted(0.01).and_then(|index| index.at(500.0).map_err(|_| ModelError::NoCommonRange));
         assert_eq!(shifted.map(|index| (index.re, index.im)), Ok((2.01, 0.1)));
         let scaled = base.scaled(0.5).expect("valid").at(500.0).expect("physical");
         assert_eq!((scaled.re, scaled.im), (3.0, 0.1));

@@ -71,7 +71,8 @@ pub(super) fn mix<N: Number>(rule: MixingRule, parts: &[(N, f64)]) -> N {
 /// half-plane into itself, and so has one fixed point there (Denjoy and Wolff), which iteration finds:
 /// that is the right root, for any number of parts. Newton's steps then make it exact.
 fn bruggeman<N: Number>(parts: &[(N, f64)]) -> N {
-    let values: Vec<(Complex64, f64)> = parts.iter().map(|(eps, fraction)| (eps.value(), *fraction)).collect();
+    let values: Vec<(Complex64, f64)> =
+        parts.iter().map(|(eps, fraction)| (eps.value(), *fraction)).collect();
     let start: Complex64 = values.iter().map(|(eps, fraction)| eps * *fraction).sum();
     let mut root = start;
     for _ in 0..10_000 {
@@ -110,12 +111,9 @@ mod tests {
 
     #[test]
     fn a_mixture_of_one_thing_is_that_thing() {
-        for rule in [
-            MixingRule::Bruggeman,
-            MixingRule::MaxwellGarnett,
-            MixingRule::LorentzLorenz,
-            MixingRule::Volume,
-        ] {
+        for rule in
+            [MixingRule::Bruggeman, MixingRule::MaxwellGarnett, MixingRule::LorentzLorenz, MixingRule::Volume]
+        {
             let index = mixed(rule, &[(1.7, 0.2, 0.3), (1.7, 0.2, 0.7)]);
             assert!((index - Complex64::new(1.7, 0.2)).norm() < 1e-14);
         }
@@ -123,9 +121,13 @@ mod tests {
 
     #[test]
     fn three_parts_satisfy_the_equation_and_the_limit_of_two() {
-        let eps = mixed(MixingRule::Bruggeman, &[(2.35, 0.0, 0.3), (0.06, 3.6, 0.2), (1.0, 0.0, 0.5)]).powi(2);
-        let parts: [(Complex64, f64); 3] =
-            [(Complex64::new(2.35, 0.0), 0.3), (Complex64::new(0.06, 3.6), 0.2), (Complex64::new(1.0, 0.0), 0.5)];
+        let eps =
+            mixed(MixingRule::Bruggeman, &[(2.35, 0.0, 0.3), (0.06, 3.6, 0.2), (1.0, 0.0, 0.5)]).powi(2);
+        let parts: [(Complex64, f64); 3] = [
+            (Complex64::new(2.35, 0.0), 0.3),
+            (Complex64::new(0.06, 3.6), 0.2),
+            (Complex64::new(1.0, 0.0), 0.5),
+        ];
         let balance: Complex64 = parts.iter().map(|(n, f)| (n * n - eps) / (n * n + 2.0 * eps) * *f).sum();
         assert!(balance.norm() < 1e-14 && eps.im > 0.0);
         let two = mixed(MixingRule::Bruggeman, &[(2.35, 0.0, 0.3), (1.46, 0.0, 0.7)]);

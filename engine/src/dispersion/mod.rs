@@ -94,7 +94,12 @@ impl Index {
     }
 
     /// A model that stands on its own.
-    fn basic(model: Model, range_nm: Option<(f64, f64)>, knots_nm: Vec<f64>, lines_nm: Vec<(f64, f64)>) -> Index {
+    fn basic(
+        model: Model,
+        range_nm: Option<(f64, f64)>,
+        knots_nm: Vec<f64>,
+        lines_nm: Vec<(f64, f64)>,
+    ) -> Index {
         Index(Arc::new(Material { model, range_nm, knots_nm, lines_nm, depth: 0 }))
     }
 

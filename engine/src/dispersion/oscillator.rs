@@ -65,7 +65,12 @@ impl Index {
                 }
                 Oscillator::TaucLorentz { strength_ev, centre_ev, width_ev, gap_ev } => {
                     let must = "above 0 eV";
-                    check("the strength of a Tauc–Lorentz term", strength_ev, strength_ev >= 0.0, "0 eV or above")?;
+                    check(
+                        "the strength of a Tauc–Lorentz term",
+                        strength_ev,
+                        strength_ev >= 0.0,
+                        "0 eV or above",
+                    )?;
                     check("the centre of a Tauc–Lorentz term", centre_ev, centre_ev > 0.0, must)?;
                     check("the width of a Tauc–Lorentz term", width_ev, width_ev > 0.0, must)?;
                     check("the gap of a Tauc–Lorentz term", gap_ev, gap_ev >= 0.0, "0 eV or above")?;

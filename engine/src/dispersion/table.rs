@@ -67,7 +67,8 @@ struct Curve(Vec<[f64; 4]>);
 impl Curve {
     fn new(x: &[f64], y: Vec<f64>) -> Curve {
         let steps: Vec<f64> = x.windows(2).map(|pair| pair[1] - pair[0]).collect();
-        let chords: Vec<f64> = y.windows(2).zip(&steps).map(|(pair, step)| (pair[1] - pair[0]) / step).collect();
+        let chords: Vec<f64> =
+            y.windows(2).zip(&steps).map(|(pair, step)| (pair[1] - pair[0]) / step).collect();
         let slopes = slopes(&steps, &chords);
         let piece = |at: usize| {
             let (step, chord, left, right) = (steps[at], chords[at], slopes[at], slopes[at + 1]);

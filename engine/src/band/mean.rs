@@ -1,0 +1,176 @@
+//! The mean of a quantity over bands, weighted.
+
+use super::chebyshev::{DEGREE, Series};
+use super::extremes::{check_band, mesh_angles};
+use super::mesh::{Along, Mesh};
+use super::probe::Probe;
+use crate::error::OpticsError;
+use crate::quadrature::gauss_legendre;
+use crate::quantity::{Light, Quantity};
+use crate::stack::Stack;
+use crate::weight::SpectralWeight;
+
+/// The accuracy that a mean is promised to.
+const ACCURACY: f64 = 1e-8;
+/// The accuracy asked of every panel, so that their sum keeps the promise.
+const PANEL: f64 = 1e-9;
+/// Steps of the mesh, each an eighth of a fringe, that a panel starts with.
+const STEPS: usize = 8;
+/// How often a panel may be halved.
+const DEEPEST: u32 = 48;
+/// The most panels over a band.
+const MOST: usize = 200_000;
+
+/// A mean, and how uncertain it is.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Mean {
+    /// The value.
+    pub value: f64,
+    /// An estimate of its error.
+    pub error: f64,
+}
+
+/// ∫ q w dλ / ∫ w dλ over the union of bands of vacuum wavelengths in nm, to 1e-8 of the quantity's size.
+///
+/// The stack's response becomes a piecewise Chebyshev series, halved where it has not settled, and is then
+/// integrated against the weight between each two of the weight's own rows: a rough weight costs no
+/// evaluations of the stack.
+///
+/// # Errors
+/// As [`extremes`](super::extremes); a band without width; a weight that does not reach over the bands or is
+/// zero all over them; [`OpticsError::NotConverged`] if the accuracy is not reached.
+pub fn mean(
+    stack: &Stack,
+    quantity: &Quantity,
+    light: &Light,
+    bands_nm: &[(f64, f64)],
+    weight: &SpectralWeight,
+) -> Result<Mean, OpticsError> {
+    let probe = Probe::new(stack, quantity, light)?;
+    let bands = union(bands_nm)?;
+    for &band_nm in &bands {
+        if let Some(range_nm) = weight.range_nm()
+            && !(range_nm.0 <= band_nm.0 && band_nm.1 <= range_nm.1)
+        {
+            return Err(OpticsError::WeightOutside { band_nm, range_nm });
+        }
+    }
+    let sum = Sum::over(&probe, &bands, weight)?;
+    if sum.weight <= 0.0 {
+        let band_nm = (bands[0].0, bands[bands.len() - 1].1);
+        return Err(OpticsError::WeightZero { band_nm });
+    }
+    let mean = Mean { value: sum.product / sum.weight, error: sum.error / sum.weight };
+    if mean.error <= ACCURACY * mean.value.abs().max(1.0) {
+        Ok(mean)
+    } else {
+        Err(OpticsError::NotConverged {
+            estimate: mean.value,
+            error: mean.error,
+            wavelength_nm: sum.worst_nm,
+        })
+    }
+}
+
+/// The bands in order, those that touch or overlap joined.
+fn union(bands_nm: &[(f64, f64)]) -> Result<Vec<(f64, f64)>, OpticsError> {
+    let mut sorted = bands_nm.to_vec();
+    sorted.sort_by(|a, b| a.0.total_cmp(&b.0));
+    let mut joined: Vec<(f64, f64)> = Vec::new();
+    for band_nm in sorted {
+        check_band(band_nm)?;
+        if band_nm.0 == band_nm.1 {
+            return Err(OpticsError::Band { band_nm });
+        }
+        match joined.last_mut() {
+            Some(last) if band_nm.0 <= last.1 => last.1 = last.1.max(band_nm.1),
+            _ => joined.push(band_nm),
+        }
+    }
+    if joined.is_empty() { Err(OpticsError::Band { band_nm: (f64::NAN, f64::NAN) }) } else { Ok(joined) }
+}
+
+/// ∫ q w dλ with its error, and ∫ w dλ.
+struct Sum {
+    product: f64,
+    weight: f64,
+    error: f64,
+    worst_nm: f64,
+    worst: f64,
+}
+
+impl Sum {
+    fn over(probe: &Probe, bands: &[(f64, f64)], weight: &SpectralWeight) -> Result<Sum, OpticsError> {
+        let mut sum = Sum { product: 0.0, weight: 0.0, error: 0.0, worst_nm: 0.0, worst: -1.0 };
+        let knots = weight.knots_nm();
+        // Exact for a panel's series times a straight line times a wavelength.
+        let rule = gauss_legendre(DEGREE / 2 + 2);
+        let width: f64 = bands.iter().map(|band| band.1 - band.0).sum();
+        for &band in bands {
+            for series in panels(probe, band, width)? {
+                sum.add(&series, weight, &knots, &rule);
+            }
+        }
+        Ok(sum)
+    }
+
+    fn add(&mut self, series: &Series, weight: &SpectralWeight, knots: &[f64], rule: &[(f64, f64)]) {
+        let first = knots.partition_point(|&knot| knot <= series.lo);
+        let inside = knots[first..].iter().copied().take_while(|&knot| knot < series.hi);
+        let mut ends: Vec<f64> = std::iter::once(series.lo).chain(inside).collect();
+        ends.push(series.hi);
+        let mut weighed = 0.0;
+        for ends in ends.windows(2) {
+            // Smooth weights, such as a black body's, are cut where the wavelength has grown by a tenth.
+            let pieces = ((ends[1] / ends[0]).ln() / 0.1).ceil().max(1.0);
+            let half = 0.5 * (ends[1] - ends[0]) / pieces;
+            for piece in 0..pieces as usize {
+                let middle = ends[0] + half * (2 * piece + 1) as f64;
+                for &(x, share) in rule {
+                    let wavelength = middle + half * x;
+                    let weight = half * share * weight.inside(wavelength);
+                    weighed += weight;
+                    self.product += weight * series.at(wavelength);
+                }
+            }
+        }
+        self.weight += weighed;
+        let error = series.tail() * weighed;
+        self.error += error;
+        if error > self.worst {
+            (self.worst, self.worst_nm) = (error, 0.5 * (series.lo + series.hi));
+        }
+    }
+}
+
+/// The quantity over a band, as series that have settled.
+fn panels(probe: &Probe, band_nm: (f64, f64), total_nm: f64) -> Result<Vec<Series>, OpticsError> {
+    let mut ends: Vec<f64> = Vec::new();
+    for angle_rad in mesh_angles(probe) {
+        let along = Along::Wavelength { angle_rad };
+        let mesh = Mesh::build(&probe.plan, &probe.light, probe.cone.is_some(), along, band_nm)?;
+        let points: Vec<f64> = mesh.points().collect();
+        ends.extend(points.iter().step_by(STEPS));
+    }
+    ends.extend([band_nm.0, band_nm.1]);
+    let knots = probe.plan.materials.iter().flat_map(|material| material.knots_nm());
+    ends.extend(knots.filter(|&knot| band_nm.0 < knot && knot < band_nm.1));
+    ends.sort_by(f64::total_cmp);
+    ends.dedup();
+    let mut open: Vec<(f64, f64, u32)> = ends.windows(2).rev().map(|ends| (ends[0], ends[1], 0)).collect();
+    let mut settled = Vec::new();
+    while let Some((lo, hi, depth)) = open.pop() {
+        let series = Series::of(lo, hi, |wavelength_nm| probe.at(wavelength_nm))?;
+        let tail = series.tail();
+        let share = (hi - lo) / total_nm;
+        let middle = 0.5 * (lo + hi);
+        let fine = tail <= PANEL || tail * share <= 1e-3 * PANEL;
+        if fine || depth >= DEEPEST || settled.len() + open.len() >= MOST || middle <= lo || middle >= hi {
+            settled.push(series);
+        } else {
+            open.push((middle, hi, depth + 1));
+            open.push((lo, middle, depth + 1));
+        }
+    }
+    Ok(settled)
+}

@@ -1,0 +1,147 @@
+//! What can be promised of a stack, and the light that it is promised for.
+
+use crate::coating::Detail;
+use crate::error::OpticsError;
+use crate::plan::{Plan, Tilted};
+use crate::response::Polarisation;
+
+/// A quantity that a stack has at every wavelength and angle.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum Quantity {
+    /// R.
+    Reflectance,
+    /// T.
+    Transmittance,
+    /// A, of all films and bodies.
+    Absorptance,
+    /// The absorptance in some films and thick bodies together.
+    AbsorptanceIn {
+        /// The films, each by coating and place within it, from 0, in the light's order.
+        films: Vec<(usize, usize)>,
+        /// The thick bodies, from 0, in the light's order.
+        bodies: Vec<usize>,
+    },
+    /// −log₁₀ T.
+    OpticalDensity,
+}
+
+/// A beam: its polarisation, its angle of incidence, and the cone that it fills.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Light {
+    /// The polarisation, about the plane of incidence of the beam's axis.
+    pub polarisation: Polarisation,
+    /// The angle of incidence of the axis, rad.
+    pub angle_rad: f64,
+    /// The half-angle of the cone, rad; 0 is a parallel beam.
+    pub cone_half_angle_rad: f64,
+}
+
+impl Light {
+    /// A parallel beam of unpolarised light at normal incidence.
+    pub fn normal() -> Light {
+        Light::parallel(0.0, Polarisation::Mean)
+    }
+
+    /// A parallel beam at an angle of incidence in rad.
+    pub fn parallel(angle_rad: f64, polarisation: Polarisation) -> Light {
+        Light { polarisation, angle_rad, cone_half_angle_rad: 0.0 }
+    }
+}
+
+/// A quantity that adds up over rays and polarisations in power: all but the optical density, which is the
+/// logarithm of one that does.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(crate) struct Tally {
+    /// The value over exp(`ln_scale`).
+    pub(crate) value: f64,
+    pub(crate) ln_scale: f64,
+}
+
+impl Tally {
+    pub(crate) const NONE: Tally = Tally { value: 0.0, ln_scale: f64::NEG_INFINITY };
+
+    /// The sum of this and a share of another.
+    pub(crate) fn plus(self, share: f64, other: Tally) -> Tally {
+        if share == 0.0 || other.ln_scale == f64::NEG_INFINITY {
+            return self;
+        }
+        if other.ln_scale > self.ln_scale {
+            let kept =
+                if self.value == 0.0 { 0.0 } else { self.value * (self.ln_scale - other.ln_scale).exp() };
+            Tally { value: kept + share * other.value, ln_scale: other.ln_scale }
+        } else {
+            Tally { value: self.value + share * other.value * (other.ln_scale - self.ln_scale).exp(), ..self }
+        }
+    }
+}
+
+impl Quantity {
+    /// Whether the stack has the films and bodies that this names.
+    pub(crate) fn check(&self, plan: &Plan) -> Result<(), OpticsError> {
+        if let Quantity::AbsorptanceIn { films, bodies } = self {
+            let film = |&(coating, film): &(usize, usize)| {
+                plan.coatings.get(coating).is_some_and(|films| film < films.len())
+            };
+            if !(films.iter().all(film) && bodies.iter().all(|&body| body < plan.bodies.len())) {
+                return Err(OpticsError::NoSuchPlace);
+            }
+        }
+        Ok(())
+    }
+
+    /// Of a prepared stack, with the given shares of s and p.
+    pub(crate) fn tally(&self, tilted: &Tilted<'_>, shares: [f64; 2]) -> Result<Tally, OpticsError> {
+        let mut total = Tally::NONE;
+        for (mode, share) in [crate::matrix::Mode::S, crate::matrix::Mode::P].into_iter().zip(shares) {
+            if share == 0.0 {
+                continue;
+            }
+            let chain = tilted.chain(
+                mode,
+                if matches!(self, Quantity::AbsorptanceIn { .. }) { Detail::ByFilm } else { Detail::Whole },
+            )?;
+            let plain = |value: f64| Tally { value, ln_scale: 0.0 };
+            let tally = match self {
+                Quantity::Reflectance => plain(chain.response().reflectance),
+                Quantity::Transmittance => plain(chain.response().transmittance),
+                Quantity::Absorptance => plain(chain.response().absorptance),
+                Quantity::OpticalDensity => Tally { value: 1.0, ln_scale: chain.response().ln_transmittance },
+                Quantity::AbsorptanceIn { films, bodies } => {
+                    let absorption = chain.absorption();
+                    let of_films: f64 =
+                        films.iter().map(|&(coating, film)| absorption.films[coating][film]).sum();
+                    let of_bodies: f64 = bodies.iter().map(|&body| absorption.bodies[body]).sum();
+                    plain(of_films + of_bodies)
+                }
+            };
+            total = total.plus(share, tally);
+        }
+        Ok(total)
+    }
+
+    /// The quantity itself from what adds up.
+    pub(crate) fn value(&self, tally: Tally, wavelength_nm: f64) -> Result<f64, OpticsError> {
+        if !matches!(self, Quantity::OpticalDensity) {
+            return Ok(if tally.ln_scale == f64::NEG_INFINITY {
+                0.0
+            } else {
+                tally.value * tally.ln_scale.exp()
+            });
+        }
+        if tally.ln_scale == f64::NEG_INFINITY || tally.value <= 0.0 {
+            return Err(OpticsError::Dark { wavelength_nm });
+        }
+        Ok(-(tally.ln_scale + tally.value.ln()) / std::f64::consts::LN_10)
+    }
+}
+
+impl Polarisation {
+    /// The shares of s and p.
+    pub(crate) fn shares(self) -> [f64; 2] {
+        match self {
+            Polarisation::S => [1.0, 0.0],
+            Polarisation::P => [0.0, 1.0],
+            Polarisation::Mean => [0.5, 0.5],
+        }
+    }
+}

@@ -1,0 +1,187 @@
+//! Spectral weights: light sources, detectors, and their products.
+
+use std::sync::Arc;
+
+use crate::constants::{BOLTZMANN, LIGHT, PLANCK};
+use crate::error::WeightError;
+
+/// A function of the vacuum wavelength that is never negative. Cheap to clone.
+#[derive(Clone, Debug)]
+pub struct SpectralWeight(Arc<Kind>);
+
+#[derive(Debug)]
+enum Kind {
+    Constant,
+    Table(Vec<(f64, f64)>),
+    BlackBody { kelvin: f64 },
+    Wavelength,
+    Product { factors: Vec<SpectralWeight>, range_nm: Option<(f64, f64)> },
+}
+
+impl SpectralWeight {
+    /// 1 at every wavelength: no weight.
+    pub fn constant() -> SpectralWeight {
+        SpectralWeight(Arc::new(Kind::Constant))
+    }
+
+    /// Rows of (vacuum wavelength in nm, value), joined by straight lines.
+    ///
+    /// # Errors
+    /// Fewer than two rows, wavelengths that don't ascend strictly from above 0, values below 0.
+    pub fn table(rows: &[(f64, f64)]) -> Result<SpectralWeight, WeightError> {
+        if rows.len() < 2 {
+            return Err(WeightError::TooFew { given: rows.len() });
+        }
+        let mut before = 0.0;
+        for (at, &(wavelength, value)) in rows.iter().enumerate() {
+            let columns = [
+                ("the wavelength", wavelength, wavelength > before, "above 0 and above the row before"),
+                ("the value", value, value >= 0.0, "0 or above"),
+            ];
+            for (what, value, passes, must) in columns {
+                if !(value.is_finite() && passes) {
+                    return Err(WeightError::Row { row: at + 1, what, value, must });
+                }
+            }
+            before = wavelength;
+        }
+        Ok(SpectralWeight(Arc::new(Kind::Table(rows.to_vec()))))
+    }
+
+    /// The exitance of a black body per wavelength, 2πhc²/λ⁵ /(exp(hc/λkT) − 1), in W m⁻² nm⁻¹.
+    ///
+    /// Source: M. Planck, Ann. Phys. 309, 553 (1901); constants of the SI, 9th edition.
+    ///
+    /// # Errors
+    /// A temperature that is not above 0 K.
+    pub fn blackbody(kelvin: f64) -> Result<SpectralWeight, WeightError> {
+        if kelvin.is_finite() && kelvin > 0.0 {
+            Ok(SpectralWeight(Arc::new(Kind::BlackBody { kelvin })))
+        } else {
+            Err(WeightError::Temperature { kelvin })
+        }
+    }
+
+    /// The product of several, wherever all of them have a value.
+    ///
+    /// # Errors
+    /// No factor, or factors with no wavelength in common.
+    pub fn product(factors: &[SpectralWeight]) -> Result<SpectralWeight, WeightError> {
+        if factors.is_empty() {
+            return Err(WeightError::NoFactor);
+        }
+        let range_nm = factors
+            .iter()
+            .filter_map(SpectralWeight::range_nm)
+            .reduce(|a: (f64, f64), b| (a.0.max(b.0), a.1.min(b.1)));
+        if range_nm.is_some_and(|(lo, hi)| lo >= hi) {
+            return Err(WeightError::NoCommonRange);
+        }
+        Ok(SpectralWeight(Arc::new(Kind::Product { factors: factors.to_vec(), range_nm })))
+    }
+
+    /// The same times the wavelength in nm: proportional to the number of photons instead of their energy.
+    pub fn photons(&self) -> SpectralWeight {
+        let factors = vec![self.clone(), SpectralWeight(Arc::new(Kind::Wavelength))];
+        SpectralWeight(Arc::new(Kind::Product { factors, range_nm: self.range_nm() }))
+    }
+
+    /// The value at a vacuum wavelength in nm, or `None` outside the range: nothing is extrapolated.
+    pub fn at(&self, wavelength_nm: f64) -> Option<f64> {
+        match self.range_nm() {
+            Some((lo, hi)) if !(lo <= wavelength_nm && wavelength_nm <= hi) => None,
+            _ => Some(self.inside(wavelength_nm)),
+        }
+    }
+
+    /// The range in nm; `None` is everywhere.
+    pub fn range_nm(&self) -> Option<(f64, f64)> {
+        match &*self.0 {
+            Kind::Table(rows) => Some((rows[0].0, rows[rows.len() - 1].0)),
+            Kind::Product { range_nm, .. } => *range_nm,
+            Kind::Constant | Kind::BlackBody { .. } | Kind::Wavelength => None,
+        }
+    }
+
+    /// The wavelengths in nm at which it is not smooth, ascending.
+    pub fn knots_nm(&self) -> Vec<f64> {
+        match &*self.0 {
+            Kind::Table(rows) => rows.iter().map(|row| row.0).collect(),
+            Kind::Product { factors, .. } => {
+                let mut knots: Vec<f64> = factors.iter().flat_map(SpectralWeight::knots_nm).collect();
+                knots.sort_by(f64::total_cmp);
+                knots.dedup();
+                knots
+            }
+            Kind::Constant | Kind::BlackBody { .. } | Kind::Wavelength => Vec::new(),
+        }
+    }
+
+    /// The value at a wavelength that is known to lie within the range.
+    pub(crate) fn inside(&self, wavelength_nm: f64) -> f64 {
+        match &*self.0 {
+            Kind::Constant => 1.0,
+            Kind::Wavelength => wavelength_nm,
+            Kind::Table(rows) => {
+                let after = rows.partition_point(|row| row.0 <= wavelength_nm).clamp(1, rows.len() - 1);
+                let ((x0, y0), (x1, y1)) = (rows[after - 1], rows[after]);
+                let along = ((wavelength_nm - x0) / (x1 - x0)).clamp(0.0, 1.0);
+                y0 + (y1 - y0) * along
+            }
+            Kind::BlackBody { kelvin } => planck(wavelength_nm, *kelvin),
+            Kind::Product { factors, .. } => {
+                factors.iter().map(|factor| factor.inside(wavelength_nm)).product()
+            }
+        }
+    }
+}
+
+/// Spectral exitance in W m⁻² nm⁻¹.
+fn planck(wavelength_nm: f64, kelvin: f64) -> f64 {
+    let metres = wavelength_nm * 1e-9;
+    let exponent = PLANCK * LIGHT / (metres * BOLTZMANN * kelvin);
+    2.0 * std::f64::consts::PI * PLANCK * LIGHT * LIGHT / metres.powi(5) / exponent.exp_m1() * 1e-9
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_table_is_joined_by_straight_lines_and_ends_at_its_ends() {
+        let lamp = SpectralWeight::table(&[(400.0, 1.0), (500.0, 3.0), (510.0, 0.0)]).expect("valid");
+        assert_eq!(lamp.at(450.0), Some(2.0));
+        assert_eq!(lamp.at(510.0), Some(0.0));
+        assert_eq!(lamp.at(510.1), None);
+        assert_eq!(lamp.photons().at(450.0), Some(900.0));
+    }
+
+    #[test]
+    fn a_black_body_obeys_wien_and_stefan_and_boltzmann() {
+        // CODATA 2018: σ = 5.670374419e-8 W m⁻² K⁻⁴, Wien's b = 2.897771955e-3 m K.
+        let body = SpectralWeight::blackbody(300.0).expect("valid");
+        let peak: f64 = 2.897_771_955e6 / 300.0;
+        assert!(
+            body.inside(peak) > body.inside(peak * 1.0001) && body.inside(peak) > body.inside(peak / 1.0001)
+        );
+        let rule = crate::quadrature::gauss_legendre(20);
+        let total: f64 = (0..400)
+            .flat_map(|at| rule.iter().map(move |(x, w)| (f64::from(at), *x, *w)))
+            .map(|(at, x, w)| {
+                let wavelength = (6.0 + (at + 0.5 + 0.5 * x) * 0.03_f64).exp();
+                0.015 * w * wavelength * body.inside(wavelength)
+            })
+            .sum();
+        let sigma = total / 300.0_f64.powi(4);
+        assert!((sigma / 5.670_374_419e-8 - 1.0).abs() < 1e-6, "{sigma}");
+    }
+
+    #[test]
+    fn bad_tables_are_refused() {
+        assert!(SpectralWeight::table(&[(400.0, 1.0)]).is_err());
+        assert!(SpectralWeight::table(&[(400.0, 1.0), (400.0, 1.0)]).is_err());
+        assert!(SpectralWeight::table(&[(400.0, 1.0), (500.0, -1.0)]).is_err());
+        assert!(SpectralWeight::blackbody(0.0).is_err());
+        assert!(SpectralWeight::product(&[]).is_err());
+    }
+}
