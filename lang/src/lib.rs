@@ -5,7 +5,15 @@
 
 pub mod code;
 pub mod diagnostic;
+pub mod files;
 pub mod finding;
+pub mod handbook;
+pub mod model;
+pub mod project;
+pub mod report;
+mod resolve;
 pub mod source;
 pub mod syntax;
 pub mod units;
+
+pub use resolve::{load, nearest};

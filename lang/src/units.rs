@@ -125,54 +125,66 @@ impl Dimension {
 pub struct UnitScale {
     /// What it measures.
     pub dimension: Dimension,
-    /// Base units in one of it.
-    pub factor: f64,
-    /// Added after scaling; not zero for kelvin alone.
-    pub offset: f64,
+    times: f64,
+    power_of_ten: i32,
+    plus: f64,
 }
 
-/// Every unit: as the formatter writes it, other spellings, dimension, base units in one of it.
-const UNITS: &[(&str, &[&str], Dimension, f64)] = &[
-    ("A", &["Å", "Å"], Dimension::Length, 0.1),
-    ("nm", &[], Dimension::Length, 1.0),
-    ("um", &["µm", "μm"], Dimension::Length, 1e3),
-    ("mm", &[], Dimension::Length, 1e6),
-    ("cm", &[], Dimension::Length, 1e7),
-    ("m", &[], Dimension::Length, 1e9),
-    ("um^2", &["µm^2", "μm^2"], Dimension::Area, 1e6),
-    ("nm^2", &[], Dimension::Area, 1.0),
-    ("um^4", &["µm^4", "μm^4"], Dimension::Length4, 1e12),
-    ("nm^4", &[], Dimension::Length4, 1.0),
-    ("um^6", &["µm^6", "μm^6"], Dimension::Length6, 1e18),
-    ("nm^6", &[], Dimension::Length6, 1.0),
-    ("eV", &[], Dimension::Energy, 1.0),
-    ("1/cm", &[], Dimension::Wavenumber, 1.0),
-    ("THz", &[], Dimension::Frequency, 1.0),
-    ("qw", &[], Dimension::OpticalThickness, 1.0),
-    ("deg", &["°"], Dimension::Angle, std::f64::consts::PI / 180.0),
-    ("mrad", &[], Dimension::Angle, 1e-3),
-    ("rad", &[], Dimension::Angle, 1.0),
-    ("%", &[], Dimension::Ratio, 1e-2),
-    ("ppm", &[], Dimension::Ratio, 1e-6),
-    ("s", &[], Dimension::Time, 1.0),
-    ("min", &[], Dimension::Time, 60.0),
-    ("h", &[], Dimension::Time, 3600.0),
-    ("fs", &[], Dimension::Time, 1e-15),
-    ("fs^2", &[], Dimension::GroupDelayDispersion, 1.0),
-    ("nm/s", &[], Dimension::Rate, 1.0),
-    ("nm/min", &[], Dimension::Rate, 1.0 / 60.0),
-    ("A/s", &["Å/s"], Dimension::Rate, 0.1),
-    ("degC", &["°C"], Dimension::Temperature, 1.0),
-    ("K", &[], Dimension::Temperature, 1.0),
-    ("MPa", &[], Dimension::Stress, 1.0),
-    ("GPa", &[], Dimension::Stress, 1e3),
-    ("N/m", &[], Dimension::ForcePerWidth, 1.0),
-    ("g/cm3", &[], Dimension::Density, 1.0),
-    ("g", &[], Dimension::Mass, 1.0),
-    ("mg", &[], Dimension::Mass, 1e-3),
-    ("mA/cm2", &[], Dimension::CurrentDensity, 1.0),
-    ("W/m2", &[], Dimension::Irradiance, 1.0),
-    ("J/cm2", &[], Dimension::Fluence, 1.0),
+impl UnitScale {
+    /// A number of these units in the base unit. Powers of ten move the decimal point, so that 99.9 % is 0.999 and
+    /// not its neighbour.
+    pub fn base(self, number: f64) -> f64 {
+        let number = number * self.times;
+        let moved = match self.power_of_ten {
+            0 => number,
+            power => format!("{number}e{power}").parse().unwrap_or(number * 10f64.powi(power)),
+        };
+        moved + self.plus
+    }
+}
+
+/// Every unit: as the formatter writes it, other spellings, dimension, and how many base units it has: a factor and a power of ten.
+const UNITS: &[(&str, &[&str], Dimension, f64, i32)] = &[
+    ("A", &["Å", "Å"], Dimension::Length, 1.0, -1),
+    ("nm", &[], Dimension::Length, 1.0, 0),
+    ("um", &["µm", "μm"], Dimension::Length, 1.0, 3),
+    ("mm", &[], Dimension::Length, 1.0, 6),
+    ("cm", &[], Dimension::Length, 1.0, 7),
+    ("m", &[], Dimension::Length, 1.0, 9),
+    ("um^2", &["µm^2", "μm^2"], Dimension::Area, 1.0, 6),
+    ("nm^2", &[], Dimension::Area, 1.0, 0),
+    ("um^4", &["µm^4", "μm^4"], Dimension::Length4, 1.0, 12),
+    ("nm^4", &[], Dimension::Length4, 1.0, 0),
+    ("um^6", &["µm^6", "μm^6"], Dimension::Length6, 1.0, 18),
+    ("nm^6", &[], Dimension::Length6, 1.0, 0),
+    ("eV", &[], Dimension::Energy, 1.0, 0),
+    ("1/cm", &[], Dimension::Wavenumber, 1.0, 0),
+    ("THz", &[], Dimension::Frequency, 1.0, 0),
+    ("qw", &[], Dimension::OpticalThickness, 1.0, 0),
+    ("deg", &["°"], Dimension::Angle, std::f64::consts::PI / 180.0, 0),
+    ("mrad", &[], Dimension::Angle, 1.0, -3),
+    ("rad", &[], Dimension::Angle, 1.0, 0),
+    ("%", &[], Dimension::Ratio, 1.0, -2),
+    ("ppm", &[], Dimension::Ratio, 1.0, -6),
+    ("s", &[], Dimension::Time, 1.0, 0),
+    ("min", &[], Dimension::Time, 60.0, 0),
+    ("h", &[], Dimension::Time, 3600.0, 0),
+    ("fs", &[], Dimension::Time, 1.0, -15),
+    ("fs^2", &[], Dimension::GroupDelayDispersion, 1.0, 0),
+    ("nm/s", &[], Dimension::Rate, 1.0, 0),
+    ("nm/min", &[], Dimension::Rate, 1.0 / 60.0, 0),
+    ("A/s", &["Å/s"], Dimension::Rate, 1.0, -1),
+    ("degC", &["°C"], Dimension::Temperature, 1.0, 0),
+    ("K", &[], Dimension::Temperature, 1.0, 0),
+    ("MPa", &[], Dimension::Stress, 1.0, 0),
+    ("GPa", &[], Dimension::Stress, 1.0, 3),
+    ("N/m", &[], Dimension::ForcePerWidth, 1.0, 0),
+    ("g/cm3", &[], Dimension::Density, 1.0, 0),
+    ("g", &[], Dimension::Mass, 1.0, 0),
+    ("mg", &[], Dimension::Mass, 1.0, -3),
+    ("mA/cm2", &[], Dimension::CurrentDensity, 1.0, 0),
+    ("W/m2", &[], Dimension::Irradiance, 1.0, 0),
+    ("J/cm2", &[], Dimension::Fluence, 1.0, 0),
 ];
 
 /// Every unit as the formatter writes it.
@@ -188,9 +200,9 @@ pub fn canonical(text: &str) -> Option<&'static str> {
 /// What a unit means.
 pub fn scale(text: &str) -> Option<UnitScale> {
     let name = canonical(text)?;
-    let (_, _, dimension, factor) = UNITS.iter().find(|unit| unit.0 == name)?;
-    let offset = if name == "K" { -273.15 } else { 0.0 };
-    Some(UnitScale { dimension: *dimension, factor: *factor, offset })
+    let (_, _, dimension, times, power_of_ten) = UNITS.iter().copied().find(|unit| unit.0 == name)?;
+    let plus = if name == "K" { -273.15 } else { 0.0 };
+    Some(UnitScale { dimension, times, power_of_ten, plus })
 }
 
 /// The vacuum wavelength in nm of a spectral quantity in its base unit; none where it has none (zero, or another dimension).
@@ -223,5 +235,12 @@ mod tests {
         assert_eq!(canonical("µm"), Some("um"));
         assert_eq!(canonical("°"), Some("deg"));
         assert_eq!(canonical("parsec"), None);
+    }
+
+    #[test]
+    fn shares_are_exact() {
+        let percent = scale("%").map(|unit| unit.base(99.9));
+        assert_eq!(percent, Some(0.999));
+        assert_eq!(scale("K").map(|unit| unit.base(300.0).round()), Some(27.0));
     }
 }

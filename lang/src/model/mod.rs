@@ -19,8 +19,7 @@ pub use requirement::{
 };
 pub use spectrum::{Spectrum, SpectrumKind};
 pub use stack::{
-    Body, BodyKind, CoatedSide, Element, Graded, Layer, LayerMaterial, Medium, MixingRule, Stack,
-    Thickness,
+    Body, BodyKind, CoatedSide, Element, Graded, Layer, LayerMaterial, Medium, MixingRule, Stack, Thickness,
 };
 
 use crate::source::FileId;

@@ -75,17 +75,7 @@ pub enum Thickness {
 }
 
 /// A rule for the permittivity of a mixture.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum MixingRule {
-    /// Bruggeman's.
-    Bruggeman,
-    /// Maxwell Garnett's, the first being the host.
-    MaxwellGarnett,
-    /// Lorentz and Lorenz's.
-    LorentzLorenz,
-    /// The mean of ε by volume.
-    Volume,
-}
+pub use overcoat_engine::MixingRule;
 
 /// A film whose composition runs through it.
 #[derive(Clone, Debug)]
@@ -214,8 +204,7 @@ impl Stack {
                 let behind_rank = rank(behind, &self.exit);
                 let before_rank = rank(before, &self.incident);
                 let front = behind_rank >= before_rank;
-                let (body, half_space) =
-                    if front { (behind, &self.exit) } else { (before, &self.incident) };
+                let (body, half_space) = if front { (behind, &self.exit) } else { (before, &self.incident) };
                 let base = body.map_or(&half_space.material, |body| &body.material).clone();
                 let layers = if front { layers.rev().collect() } else { layers.collect() };
                 sides.push(CoatedSide { base, front, layers });
