@@ -9,6 +9,7 @@ pub mod files;
 pub mod finding;
 pub mod handbook;
 pub mod model;
+mod near;
 pub mod project;
 pub mod report;
 mod resolve;
@@ -16,4 +17,5 @@ pub mod source;
 pub mod syntax;
 pub mod units;
 
-pub use resolve::{load, nearest};
+pub use near::nearest;
+pub use resolve::load;

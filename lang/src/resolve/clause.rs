@@ -220,7 +220,7 @@ impl Resolver<'_> {
             let wavelengths: Vec<Option<f64>> = values
                 .iter()
                 .zip(&exprs)
-                .map(|(value, expr)| self.to_wavelength(module, expr.span, (*value)?, "a wavelength"))
+                .map(|(value, expr)| self.as_wavelength(module, expr.span, (*value)?, "a wavelength"))
                 .collect();
             clauses.wavelengths = wavelengths.into_iter().collect::<Option<_>>()?;
             return Some("at … nm");

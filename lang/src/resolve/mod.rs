@@ -10,7 +10,6 @@ mod expression;
 mod loader;
 mod material;
 mod names;
-mod near;
 mod paths;
 mod quantity;
 mod recipe;
@@ -20,11 +19,10 @@ mod stack;
 mod table;
 mod unused;
 
-pub use near::nearest;
-
 use crate::files::Files;
 use crate::finding::{Fact, Finding};
 use crate::model;
+use crate::near::nearest;
 use crate::project::Project;
 use crate::source::{FileId, Place, Sources, Span};
 use crate::syntax::ast;

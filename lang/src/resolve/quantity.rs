@@ -79,10 +79,10 @@ impl Resolver<'_> {
     /// A vacuum wavelength in nm, from a length, a photon energy, a wavenumber or a frequency.
     pub(super) fn wavelength(&mut self, module: ModuleId, expr: &Expr, role: &str) -> Option<f64> {
         let value = self.value(module, expr)?;
-        self.to_wavelength(module, expr.span, value, role)
+        self.as_wavelength(module, expr.span, value, role)
     }
 
-    pub(super) fn to_wavelength(
+    pub(super) fn as_wavelength(
         &mut self,
         module: ModuleId,
         span: Span,
@@ -176,8 +176,8 @@ impl Resolver<'_> {
     /// A band in nm, short end first. A band in energies, wavenumbers or frequencies runs the other way.
     pub(super) fn band(&mut self, module: ModuleId, range: &Range, role: &str) -> Option<(f64, f64)> {
         let (low, high) = self.ends(module, range)?;
-        let a = self.to_wavelength(module, range.low.span, low, role);
-        let b = self.to_wavelength(module, range.high.span, high, role);
+        let a = self.as_wavelength(module, range.low.span, low, role);
+        let b = self.as_wavelength(module, range.high.span, high, role);
         let (a, b) = (a?, b?);
         if low.dimension != high.dimension {
             let (needed, found) = (high.dimension.phrase(), low.dimension.phrase());

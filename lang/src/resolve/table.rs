@@ -226,7 +226,10 @@ type CsvProblem = (Option<usize>, Option<String>, String);
 
 /// Reads a CSV file with a header; `#` starts a comment line.
 fn read_csv(bytes: &[u8]) -> Result<Csv, CsvProblem> {
-    let text = crate::syntax::decode(bytes).map_err(|_| (None, None, "is not a text in UTF-8".to_owned()))?;
+    let mut text =
+        crate::syntax::decode(bytes).map_err(|_| (None, None, "is not a text in UTF-8".to_owned()))?;
+    // Every row then ends with a line break, and the reader's line after a row is the one below it.
+    text.push('\n');
     let mut reader = csv::ReaderBuilder::new()
         .comment(Some(b'#'))
         .trim(csv::Trim::All)
@@ -244,9 +247,9 @@ fn read_csv(bytes: &[u8]) -> Result<Csv, CsvProblem> {
         ));
     }
     let mut rows = Vec::new();
-    for record in reader.records() {
-        let record = record.map_err(|error| (None, None, format!("can't be read: {error}")))?;
-        let line = record.position().map_or(0, |position| position.line() as usize);
+    let mut record = csv::StringRecord::new();
+    while reader.read_record(&mut record).map_err(|error| (None, None, format!("can't be read: {error}")))? {
+        let line = reader.position().line() as usize - 1;
         if record.len() != columns.len() {
             let problem = format!("has {} cells, and the first line names {}", record.len(), columns.len());
             return Err((Some(line), None, problem));

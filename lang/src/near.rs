@@ -28,7 +28,8 @@ mod tests {
     #[test]
     fn nearest_names_come_first() {
         let names = ["silver", "silica", "silicon", "titania"];
-        assert_eq!(nearest("silcon", names), ["silicon", "silica"]);
+        assert_eq!(nearest("silcon", names), ["silicon"]);
+        assert_eq!(nearest("silver2", names), ["silver"]);
         assert_eq!(nearest("Titania", names), ["titania"]);
         assert!(nearest("gold", names).is_empty());
     }
