@@ -1,0 +1,119 @@
+//! Reading the reference files and building stacks from them.
+
+use std::path::PathBuf;
+
+use overcoat_engine::{Body, Film, Index, Polarisation, Stack};
+use serde::Deserialize;
+use serde::de::DeserializeOwned;
+
+fn root() -> PathBuf {
+    PathBuf::from(env!("CARGO_MANIFEST_DIR"))
+}
+
+/// A file of `tests/reference/data`.
+pub(crate) fn reference<T: DeserializeOwned>(name: &str) -> T {
+    let path = root().join("tests/reference/data").join(name);
+    let text = std::fs::read_to_string(&path).unwrap_or_else(|e| panic!("{}: {e}", path.display()));
+    serde_json::from_str(&text).unwrap_or_else(|e| panic!("{name}: {e}"))
+}
+
+/// The rows of the first table in a handbook file, wavelengths in nm first.
+pub(crate) fn handbook_rows(name: &str) -> Vec<Vec<f64>> {
+    let path = root().join("lang/handbook").join(format!("{name}.coat"));
+    let text = std::fs::read_to_string(&path).unwrap_or_else(|e| panic!("{}: {e}", path.display()));
+    let rows: Vec<Vec<f64>> = text
+        .lines()
+        .skip_while(|line| line.trim_start().starts_with('#') || !line.contains("table {"))
+        .skip(1)
+        .take_while(|line| !line.contains('}'))
+        .map(|line| {
+            let cells = line.trim().trim_end_matches(',').replace(" nm", "");
+            cells.split_whitespace().map(|cell| cell.parse().expect("a number in a handbook's row")).collect()
+        })
+        .collect();
+    assert!(rows.len() > 1, "{name} has a table");
+    rows
+}
+
+/// Crystalline silicon, M. A. Green, Sol. Energy Mater. Sol. Cells 92, 1305 (2008).
+pub(crate) fn silicon() -> Index {
+    let rows: Vec<(f64, f64, f64)> = handbook_rows("silicon").iter().map(|r| (r[0], r[1], r[2])).collect();
+    Index::table(&rows).expect("silicon's rows are a table")
+}
+
+pub(crate) fn constant([n, k]: [f64; 2]) -> Index {
+    Index::constant(n, k).expect("a physical index")
+}
+
+/// Films between two half-spaces.
+pub(crate) fn films(incident: Index, films: Vec<(Index, f64)>, exit: Index) -> Stack {
+    let films = films.into_iter().map(|(index, thickness_nm)| Film { index, thickness_nm }).collect();
+    Stack { incident, coatings: vec![films], bodies: Vec::new(), exit }
+}
+
+#[derive(Deserialize)]
+#[serde(rename_all = "snake_case")]
+pub(crate) enum Kind {
+    Film,
+    Body,
+}
+
+/// A film or a thick body of a reference stack.
+#[derive(Deserialize)]
+pub(crate) struct Element {
+    kind: Kind,
+    index: [f64; 2],
+    thickness_nm: f64,
+}
+
+/// The engine's stack for elements in the light's order.
+pub(crate) fn stack(incident: f64, elements: &[Element], exit: [f64; 2]) -> Stack {
+    let mut coatings = vec![Vec::new()];
+    let mut bodies = Vec::new();
+    for element in elements {
+        let (index, thickness_nm) = (constant(element.index), element.thickness_nm);
+        match element.kind {
+            Kind::Film => coatings.last_mut().expect("never empty").push(Film { index, thickness_nm }),
+            Kind::Body => {
+                bodies.push(Body { index, thickness_nm });
+                coatings.push(Vec::new());
+            }
+        }
+    }
+    Stack { incident: constant([incident, 0.0]), coatings, bodies, exit: constant(exit) }
+}
+
+pub(crate) fn polarisation(name: &str) -> Polarisation {
+    match name {
+        "s" => Polarisation::S,
+        "p" => Polarisation::P,
+        "mean" => Polarisation::Mean,
+        other => panic!("no such polarisation: {other}"),
+    }
+}
+
+/// Compares many figures and tells of every one that is off.
+#[derive(Default)]
+pub(crate) struct Comparison {
+    compared: usize,
+    off: Vec<String>,
+    worst: f64,
+}
+
+impl Comparison {
+    pub(crate) fn add(&mut self, what: &str, got: f64, expected: f64, tolerance: f64) {
+        self.compared += 1;
+        let deviation = (got - expected).abs();
+        self.worst = self.worst.max(deviation);
+        if !(deviation <= tolerance) {
+            self.off.push(format!("{what}: {got} instead of {expected}, off by {deviation:e}"));
+        }
+    }
+
+    pub(crate) fn finish(self, at_least: usize) {
+        let off = self.off.join("\n");
+        assert!(self.off.is_empty(), "{} of {} are off:\n{off}", self.off.len(), self.compared);
+        assert!(self.compared >= at_least, "only {} figures were compared", self.compared);
+        println!("{} figures, the worst off by {:e}", self.compared, self.worst);
+    }
+}

@@ -1,0 +1,76 @@
+//! Weighted means over bands against quadrature with numpy and scipy.
+//!
+//! Sources: ASTM G173-03; CIE 015:2018, CIE 018; M. Planck (1901); silicon by M. A. Green, Sol. Energy Mater.
+//! Sol. Cells 92, 1305 (2008); M. Born, E. Wolf, Principles of Optics, 7th ed. (1999), 1.6.4.
+
+use overcoat_engine::{Index, Light, Polarisation, Quantity, SpectralWeight, mean};
+use serde::Deserialize;
+
+use crate::data::{Comparison, constant, films, reference, silicon};
+use crate::spectra::rows;
+
+#[derive(Deserialize)]
+struct File {
+    means: Vec<Entry>,
+}
+
+#[derive(Deserialize)]
+struct Entry {
+    part: String,
+    films: Vec<([f64; 2], f64)>,
+    exit: Medium,
+    band_nm: (f64, f64),
+    angle_deg: f64,
+    under: Vec<String>,
+    photons: bool,
+    mean_reflectance: f64,
+}
+
+#[derive(Deserialize)]
+#[serde(untagged)]
+enum Medium {
+    Constant([f64; 2]),
+    Handbook { handbook: String },
+}
+
+fn medium(medium: &Medium) -> Index {
+    match medium {
+        Medium::Constant(index) => constant(*index),
+        Medium::Handbook { handbook } => {
+            assert_eq!(handbook, "silicon");
+            silicon()
+        }
+    }
+}
+
+fn weight(names: &[String], photons: bool) -> SpectralWeight {
+    let factors: Vec<SpectralWeight> = names
+        .iter()
+        .map(|name| match name.as_str() {
+            "blackbody 2856 K" => SpectralWeight::blackbody(2856.0).expect("a temperature"),
+            name => SpectralWeight::table(&rows(name)).expect("a handbook spectrum is a table"),
+        })
+        .collect();
+    let product = match factors.as_slice() {
+        [] => SpectralWeight::constant(),
+        factors => SpectralWeight::product(factors).expect("they overlap"),
+    };
+    if photons { product.photons() } else { product }
+}
+
+#[test]
+fn means_agree_with_numpy_and_scipy() {
+    let file: File = reference("means.json");
+    let mut comparison = Comparison::default();
+    for entry in &file.means {
+        let layers = entry.films.iter().map(|&(index, thickness)| (constant(index), thickness)).collect();
+        let stack = films(constant([1.0, 0.0]), layers, medium(&entry.exit));
+        let light = Light::parallel(entry.angle_deg.to_radians(), Polarisation::Mean);
+        let what = format!("{} over {:?} nm under {:?}", entry.part, entry.band_nm, entry.under);
+        let weight = weight(&entry.under, entry.photons);
+        let got = mean(&stack, &Quantity::Reflectance, &light, &[entry.band_nm], &weight)
+            .unwrap_or_else(|e| panic!("{what}: {e}"));
+        comparison.add(&what, got.value, entry.mean_reflectance, 1e-8);
+    }
+    comparison.finish(19);
+}
