@@ -1,6 +1,7 @@
 //! Beams that fill a cone against a sum over rays with explicit vectors.
 //!
-//! Source: projected solid angle, ISO 80000-7:2019; numpy 2.4.6.
+//! Sources: projected solid angle, ISO 80000-7:2019; the turn of a polarised beam from its axis to its rays,
+//! B. Richards, E. Wolf, Proc. R. Soc. A 253, 358 (1959); numpy 2.4.6.
 
 use overcoat_engine::{Light, Quantity, Stack, value};
 use serde::Deserialize;

@@ -33,8 +33,8 @@ struct Case {
     films: Vec<f64>,
 }
 
-/// What is promised; the figures agree to about 1e-13.
-const TOLERANCE: f64 = 1e-10;
+/// Room for what other orders of the same sums would round.
+const TOLERANCE: f64 = 1e-12;
 
 #[test]
 fn random_stacks_agree_with_fifty_digits() {

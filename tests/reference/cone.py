@@ -2,9 +2,10 @@
 
 A beam of uniform radiance fills a cone about an axis; what falls on the surface
 from a direction goes as cos(theta) d(omega) (projected solid angle; ISO 80000-7,
-radiance).  Every ray is split into s and p by cross products with the surface
-normal.  For unpolarised light the two directions of the field are taken in the
-beam's own frame and projected on the ray's s and p, which must come to the same.
+radiance).  A polarised beam's field is turned from the axis to each ray by the
+least rotation, as a focusing lens does (B. Richards, E. Wolf, Proc. R. Soc. A 253,
+358 (1959)), here with Rodrigues' formula, and then projected on the ray's own s
+and p, which are cross products with the surface normal.
 """
 
 import math
@@ -41,7 +42,7 @@ def reflectances(part, wavelength, sines, s):
 
 
 def beam(part, wavelength, axis_deg, half_deg, radial=120, around=400):
-    """(s, p, unpolarised) reflectance of the beam."""
+    """Reflectance of the beam polarised across and in the axis' plane, and unpolarised."""
     axis = math.radians(axis_deg)
     low = math.cos(math.radians(half_deg))
     nodes, weights = numpy.polynomial.legendre.leggauss(radial)
@@ -71,16 +72,19 @@ def beam(part, wavelength, axis_deg, half_deg, radial=120, around=400):
     r_s = reflectances(part, wavelength, length, True)
     r_p = reflectances(part, wavelength, length, False)
 
-    # Two fields at right angles to the ray and to one another, fixed to the beam.
-    first = numpy.cross(rays, aside)
-    first /= numpy.linalg.norm(first, axis=2)[..., None]
-    second = numpy.cross(rays, first)
-    unpolarised = 0
-    for field in (first, second):
-        on_s = (field * s_direction).sum(axis=2) ** 2
-        on_p = (field * p_direction).sum(axis=2) ** 2
-        unpolarised = unpolarised + (on_s * r_s + on_p * r_p) / 2
-    return [float((share * value).sum()) for value in (r_s, r_p, unpolarised)]
+    # Rodrigues: v + w x v + w x (w x v)/(1 + c), with w = axis x ray and c their cosine.
+    turn = numpy.cross(numpy.broadcast_to(along, rays.shape), rays)
+    shrink = (1 + rays @ along)[..., None]
+    values = []
+    for field in (aside, across):
+        once = numpy.cross(turn, numpy.broadcast_to(field, rays.shape))
+        turned = field + once + numpy.cross(turn, once) / shrink
+        on_s = (turned * s_direction).sum(axis=2) ** 2
+        on_p = (turned * p_direction).sum(axis=2) ** 2
+        assert abs(on_s + on_p - 1).max() < 1e-12
+        values.append(float((share * (on_s * r_s + on_p * r_p)).sum()))
+    unpolarised = float((share * (r_s + r_p) / 2).sum())
+    return [*values, unpolarised]
 
 
 def make():
@@ -120,10 +124,10 @@ def make():
     return {
         "cone.json": document(
             {
-                "about": "reflectance of beams of uniform radiance that fill a cone; s and p in "
-                "each ray's own plane",
-                "source": "projected solid angle, ISO 80000-7:2019; summed ray by ray with explicit "
-                "vectors",
+                "about": "reflectance of beams of uniform radiance that fill a cone; s and p are "
+                "the beam's, about the plane of incidence of its axis",
+                "source": "projected solid angle, ISO 80000-7:2019; B. Richards, E. Wolf, "
+                "Proc. R. Soc. A 253, 358 (1959); summed ray by ray with explicit vectors",
                 "parts": [
                     {"name": name, "incident": i, "films": f, "exit": e}
                     for name, (i, f, e) in PARTS.items()
