@@ -35,9 +35,10 @@ fn textbook_stacks_meet_their_formulas() {
         let response = stack(entry.incident, &entry.elements, entry.exit)
             .response(entry.wavelength_nm, entry.angle_deg.to_radians(), polarisation(&entry.polarisation))
             .unwrap_or_else(|e| panic!("{what}: {e}"));
-        for (letter, got, expected) in
-            [("R", response.reflectance, entry.reflectance), ("T", response.transmittance, entry.transmittance)]
-        {
+        for (letter, got, expected) in [
+            ("R", response.reflectance, entry.reflectance),
+            ("T", response.transmittance, entry.transmittance),
+        ] {
             if let Some(expected) = expected {
                 comparison.add(&format!("{what}, {letter}"), got, expected, entry.tolerance);
             }

@@ -103,7 +103,8 @@ impl Comparison {
     pub(crate) fn add(&mut self, what: &str, got: f64, expected: f64, tolerance: f64) {
         self.compared += 1;
         let deviation = (got - expected).abs();
-        if !(deviation <= tolerance) {
+        // Not a number is off as well.
+        if deviation.is_nan() || deviation > tolerance {
             self.off.push(format!("{what}: {got} instead of {expected}, off by {deviation:e}"));
         }
     }

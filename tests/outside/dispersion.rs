@@ -132,9 +132,12 @@ fn mixtures_agree_with_forty_digits() {
             (MixingRule::LorentzLorenz, mixture.lorentz_lorenz),
             (MixingRule::Volume, mixture.volume),
         ] {
-            let got = Index::mixture(rule, &parts).expect("valid parts").at(550.0).expect("constant everywhere");
-            let what =
-                format!("{rule:?} of {:?} {} and {:?}", mixture.first, mixture.share_of_first, mixture.second);
+            let got =
+                Index::mixture(rule, &parts).expect("valid parts").at(550.0).expect("constant everywhere");
+            let what = format!(
+                "{rule:?} of {:?} {} and {:?}",
+                mixture.first, mixture.share_of_first, mixture.second
+            );
             comparison.add(&format!("{what}, n"), got.re, expected[0], 1e-12);
             comparison.add(&format!("{what}, k"), got.im, expected[1], 1e-12);
         }

@@ -57,5 +57,7 @@ fn handbook_spectra_are_the_standards() {
 }
 
 fn trapezoid(rows: &[(f64, f64)], weight: impl Fn(f64) -> f64) -> f64 {
-    rows.windows(2).map(|w| (w[0].1 * weight(w[0].0) + w[1].1 * weight(w[1].0)) * (w[1].0 - w[0].0) / 2.0).sum()
+    rows.windows(2)
+        .map(|w| (w[0].1 * weight(w[0].0) + w[1].1 * weight(w[1].0)) * (w[1].0 - w[0].0) / 2.0)
+        .sum()
 }

@@ -46,7 +46,8 @@ fn magnesium_fluoride_on_crown_glass_leaves_about_1_3_percent() {
     let coated = films(constant([1.0, 0.0]), film, crown.clone());
     let bare = films(constant([1.0, 0.0]), Vec::new(), crown);
     let light = Light::normal();
-    let found = extremes(&coated, &Quantity::Reflectance, &light, (450.0, 650.0)).expect("within the formula");
+    let found =
+        extremes(&coated, &Quantity::Reflectance, &light, (450.0, 650.0)).expect("within the formula");
     assert!((found.min.value - 0.013).abs() < 0.0005, "it leaves {}", found.min.value);
     let before = extremes(&bare, &Quantity::Reflectance, &light, (550.0, 550.0)).expect("within the formula");
     assert!((before.min.value - 0.042).abs() < 0.0005, "bare: {}", before.min.value);
