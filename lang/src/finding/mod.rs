@@ -4,10 +4,16 @@
 //! (nm, rad, s, MPa, fractions), so that the words can be changed without touching the checks.
 
 mod form;
+mod house;
 mod optics;
+mod process;
+mod promise;
 
 pub use form::FormFact;
+pub use house::HouseFact;
 pub use optics::OpticsFact;
+pub use process::{LayerName, ProcessFact, SideName, Trouble};
+pub use promise::{PromiseFact, Verdict};
 
 use crate::source::Place;
 
@@ -27,6 +33,12 @@ pub enum Fact {
     Form(FormFact),
     /// About optical constants and light.
     Optics(OpticsFact),
+    /// About what a part must do.
+    Promise(Box<PromiseFact>),
+    /// About what a chamber can do.
+    Process(Box<ProcessFact>),
+    /// About provenance and housekeeping.
+    House(HouseFact),
 }
 
 impl From<FormFact> for Fact {
@@ -38,6 +50,24 @@ impl From<FormFact> for Fact {
 impl From<OpticsFact> for Fact {
     fn from(fact: OpticsFact) -> Fact {
         Fact::Optics(fact)
+    }
+}
+
+impl From<PromiseFact> for Fact {
+    fn from(fact: PromiseFact) -> Fact {
+        Fact::Promise(Box::new(fact))
+    }
+}
+
+impl From<ProcessFact> for Fact {
+    fn from(fact: ProcessFact) -> Fact {
+        Fact::Process(Box::new(fact))
+    }
+}
+
+impl From<HouseFact> for Fact {
+    fn from(fact: HouseFact) -> Fact {
+        Fact::House(fact)
     }
 }
 

@@ -1,0 +1,130 @@
+//! Facts about what a part must do, and about margins.
+
+use crate::model::{Bound, Requirement};
+use crate::report::At;
+use crate::source::Place;
+use std::sync::Arc;
+
+/// A fact about one requirement of one recipe.
+#[derive(Clone, Debug)]
+pub struct PromiseFact {
+    /// The requirement.
+    pub requirement: Arc<Requirement>,
+    /// The recipe's name.
+    pub recipe: String,
+    /// The place that brings the requirement in: itself, or the specification's name under `meets`.
+    pub asked_at: Place,
+    /// What is the case.
+    pub verdict: Verdict,
+}
+
+/// What is the case with a requirement.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Verdict {
+    /// The value is beyond the bound.
+    Missed {
+        /// The value, in the report's unit.
+        value: f64,
+        /// The bound that it breaks, at the place of `at`.
+        bound: f64,
+        /// Whether the bound is the least value allowed.
+        least: bool,
+        /// Where.
+        at: At,
+    },
+    /// The edge is elsewhere; none where the curve does not cross the level in the band searched.
+    EdgeMisplaced {
+        /// nm.
+        found: Option<f64>,
+        /// The band searched, nm.
+        searched: (f64, f64),
+        /// Where it was looked for.
+        at: At,
+    },
+    /// Met, but within a tenth of the bound.
+    Thin {
+        /// The value, in the report's unit.
+        value: f64,
+        /// The bound, there.
+        bound: f64,
+        /// Whether the bound is the least value allowed.
+        least: bool,
+        /// How far inside.
+        margin: f64,
+        /// Where.
+        at: At,
+    },
+    /// It is not evaluated by this version; what, as a noun phrase.
+    NotEvaluated {
+        /// What: "a yield", "a stack with a graded layer".
+        what: String,
+    },
+    /// A mean or an extreme that did not settle.
+    NotConverged {
+        /// The best estimate.
+        estimate: f64,
+        /// How uncertain it is.
+        error: f64,
+        /// Where the difficulty lies, nm.
+        wavelength: f64,
+    },
+    /// The half-space that the light comes from absorbs.
+    AbsorbingIncident {
+        /// The material.
+        material: String,
+        /// k there.
+        k: f64,
+        /// nm.
+        wavelength: f64,
+        /// The stack's statement.
+        place: Place,
+    },
+    /// A name that neither a layer of the recipe nor a material has.
+    UnknownTarget {
+        /// The name.
+        name: String,
+        /// The names that the recipe has, nearest first.
+        near: Vec<String>,
+    },
+    /// The light source has no value in part of the band.
+    SpectrumOutside {
+        /// Its name.
+        name: String,
+        /// Where it is defined.
+        defined: Place,
+        /// What is asked for, nm.
+        asked: (f64, f64),
+        /// What there is, nm.
+        range: (f64, f64),
+    },
+    /// The light source is dark in the whole band, so that there is no mean.
+    SpectrumDark {
+        /// Its name.
+        name: String,
+        /// nm.
+        asked: (f64, f64),
+    },
+    /// A mask that says nothing in any of the bands or at any of the wavelengths.
+    MaskApart {
+        /// The file as written.
+        path: String,
+        /// What the mask covers, nm.
+        covers: (f64, f64),
+    },
+}
+
+impl PartialEq for PromiseFact {
+    fn eq(&self, other: &Self) -> bool {
+        self.requirement.place == other.requirement.place
+            && self.recipe == other.recipe
+            && self.asked_at == other.asked_at
+            && self.verdict == other.verdict
+    }
+}
+
+impl PromiseFact {
+    /// The bound of the requirement.
+    pub fn bound(&self) -> &Bound {
+        &self.requirement.bound
+    }
+}
