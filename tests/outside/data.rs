@@ -17,30 +17,6 @@ pub(crate) fn reference<T: DeserializeOwned>(name: &str) -> T {
     serde_json::from_str(&text).unwrap_or_else(|e| panic!("{name}: {e}"))
 }
 
-/// The rows of the first table in a handbook file, wavelengths in nm first.
-pub(crate) fn handbook_rows(name: &str) -> Vec<Vec<f64>> {
-    let path = root().join("lang/handbook").join(format!("{name}.coat"));
-    let text = std::fs::read_to_string(&path).unwrap_or_else(|e| panic!("{}: {e}", path.display()));
-    let rows: Vec<Vec<f64>> = text
-        .lines()
-        .skip_while(|line| line.trim_start().starts_with('#') || !line.contains("table {"))
-        .skip(1)
-        .take_while(|line| !line.contains('}'))
-        .map(|line| {
-            let cells = line.trim().trim_end_matches(',').replace(" nm", "");
-            cells.split_whitespace().map(|cell| cell.parse().expect("a number in a handbook's row")).collect()
-        })
-        .collect();
-    assert!(rows.len() > 1, "{name} has a table");
-    rows
-}
-
-/// Crystalline silicon, M. A. Green, Sol. Energy Mater. Sol. Cells 92, 1305 (2008).
-pub(crate) fn silicon() -> Index {
-    let rows: Vec<(f64, f64, f64)> = handbook_rows("silicon").iter().map(|r| (r[0], r[1], r[2])).collect();
-    Index::table(&rows).expect("silicon's rows are a table")
-}
-
 pub(crate) fn constant([n, k]: [f64; 2]) -> Index {
     Index::constant(n, k).expect("a physical index")
 }

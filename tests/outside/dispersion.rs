@@ -19,20 +19,14 @@ struct Point {
     source: String,
     wavelength_nm: f64,
     n: f64,
-    k: f64,
+    /// None where the formula is for n alone.
+    k: Option<f64>,
 }
 
 /// The material that a point names; its numbers are those of the published formula.
 fn material(model: &str) -> Index {
     let index = match model {
-        "fused_silica" => {
-            Index::sellmeier(&[(0.6961663, 0.0684043), (0.4079426, 0.1162414), (0.8974794, 9.896161)])
-        }
-        "crown_517642" => Index::sellmeier(&[
-            (1.03961212, 0.00600069867_f64.sqrt()),
-            (0.231792344, 0.0200179144_f64.sqrt()),
-            (1.01046945, 103.560653_f64.sqrt()),
-        ]),
+        "fused_silica" | "crown_517642" => return crate::handbook::index(model),
         "cauchy 1.45, 3.5e-3 um^2, 1.1e-4 um^4" => Index::cauchy(&[1.45, 3.5e-3, 1.1e-4]),
         "drude 9 eV width 0.02 eV on 3.7" => {
             Index::oscillators(3.7, vec![Oscillator::Drude { plasma_ev: 9.0, width_ev: 0.02 }])
@@ -57,9 +51,11 @@ fn formulas_agree_with_forty_digits() {
         let got = material(&point.model).at(point.wavelength_nm).expect("inside the formula's range");
         let what = format!("{} at {} nm ({})", point.model, point.wavelength_nm, point.source);
         comparison.add(&format!("{what}, n"), got.re, point.n, 1e-13 * point.n.max(1.0));
-        comparison.add(&format!("{what}, k"), got.im, point.k, 1e-13 * point.k.max(1.0));
+        if let Some(k) = point.k {
+            comparison.add(&format!("{what}, k"), got.im, k, 1e-13 * k.max(1.0));
+        }
     }
-    comparison.finish(40);
+    comparison.finish(35);
 }
 
 #[derive(Deserialize)]

@@ -8,6 +8,7 @@ mod cones;
 mod data;
 mod dispersion;
 mod extremes;
+mod handbook;
 mod means;
 mod neutron;
 mod spectra;

@@ -6,8 +6,8 @@
 use overcoat_engine::{Index, Light, Polarisation, Quantity, SpectralWeight, mean};
 use serde::Deserialize;
 
-use crate::data::{Comparison, constant, films, reference, silicon};
-use crate::spectra::rows;
+use crate::data::{Comparison, constant, films, reference};
+use crate::handbook;
 
 #[derive(Deserialize)]
 struct File {
@@ -36,10 +36,7 @@ enum Medium {
 fn medium(medium: &Medium) -> Index {
     match medium {
         Medium::Constant(index) => constant(*index),
-        Medium::Handbook { handbook } => {
-            assert_eq!(handbook, "silicon");
-            silicon()
-        }
+        Medium::Handbook { handbook } => handbook::index(handbook),
     }
 }
 
@@ -48,7 +45,7 @@ fn weight(names: &[String], photons: bool) -> SpectralWeight {
         .iter()
         .map(|name| match name.as_str() {
             "blackbody 2856 K" => SpectralWeight::blackbody(2856.0).expect("a temperature"),
-            name => SpectralWeight::table(&rows(name)).expect("a handbook spectrum is a table"),
+            name => handbook::weight(name),
         })
         .collect();
     let product = match factors.as_slice() {

@@ -3,10 +3,10 @@
 //! Sources: ASTM G173-03 (pvlib 0.16.1); CIE 015:2018 and CIE 018 (colour-science 0.4.7). The script
 //! `spectra.py` compares every row; here the integrals and a sample of the rows are.
 
-use overcoat_engine::SpectralWeight;
 use serde::Deserialize;
 
-use crate::data::{Comparison, handbook_rows, reference};
+use crate::data::{Comparison, reference};
+use crate::handbook::{rows, weight};
 
 #[derive(Deserialize)]
 struct File {
@@ -24,11 +24,6 @@ struct Entry {
     photocurrent_ma_per_cm2: Vec<(f64, f64, f64)>,
 }
 
-/// A spectrum of the handbook.
-pub(crate) fn rows(name: &str) -> Vec<(f64, f64)> {
-    handbook_rows(&format!("spectra/{name}")).iter().map(|row| (row[0], row[1])).collect()
-}
-
 #[test]
 fn handbook_spectra_are_the_standards() {
     let file: File = reference("spectra.json");
@@ -36,7 +31,7 @@ fn handbook_spectra_are_the_standards() {
     for entry in &file.spectra {
         let own = rows(&entry.name);
         assert!(own.len() >= entry.row_count, "{}: {} rows", entry.name, own.len());
-        let spectrum = SpectralWeight::table(&own).expect("a handbook spectrum is a table");
+        let spectrum = weight(&entry.name);
         for &(wavelength, expected) in &entry.rows {
             let got = spectrum.at(wavelength).expect("inside the table");
             let what = format!("{} at {wavelength} nm ({})", entry.name, entry.source);

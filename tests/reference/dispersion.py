@@ -21,14 +21,15 @@ def index(epsilon):
     return root if root.imag >= 0 else -root
 
 
-def row(model, source, wavelength_nm, value):
+def row(model, source, wavelength_nm, value, k_too=True):
+    """A point; where the formula is for n alone and k is measured apart, k is left open."""
     value = mpc(value)
     return {
         "model": model,
         "source": source,
         "wavelength_nm": double(mpf(wavelength_nm)),
         "n": double(value.real),
-        "k": double(value.imag),
+        "k": double(value.imag) if k_too else None,
     }
 
 
@@ -62,7 +63,7 @@ def make():
         if mpf(wavelength) >= mpf("0.3"):
             rows.append(
                 row("crown_517642", "SCHOTT AG, optical glass catalogue (2017), N-BK7", nm,
-                    sellmeier(catalogue, wavelength))
+                    sellmeier(catalogue, wavelength), k_too=False)
             )
     for wavelength in ("400", "550", "1000"):
         um = mpf(wavelength) / 1000
