@@ -39,6 +39,13 @@ def film(rng, kind):
     return [draw(rng, 1.0, 1.1, 4), 0.0], draw(rng, 20, 900, 2)
 
 
+def stopped(near, way, far, angle):
+    """Whether nothing at all gets through: total reflection at a clear half-space or thick body."""
+    beyond = near.real * mp.sin(mp.radians(mpf(angle)))
+    clear = [n for kind, n, _ in way if kind == "body"] + [far]
+    return any(n.imag == 0 and n.real < beyond for n in clear)
+
+
 PALETTES = {
     "lossless": ["lossless"],
     "absorbing": ["lossless", "absorbing"],
@@ -119,6 +126,9 @@ def make():
                             "reflectance": double(r),
                             "transmittance": double(t),
                             "absorptance": double(1 - r - t),
+                            "optical_density": None
+                            if stopped(near, way, far, angle)
+                            else double(-mp.log10(t)),
                             "films": [double(a) for a in absorbed],
                         }
                     )
