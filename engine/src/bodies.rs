@@ -90,32 +90,35 @@ impl Chain {
     }
 
     pub(crate) fn absorption(&self) -> Absorption {
-        let share = |(link, &(from_front, from_behind)): (&Link, &(f64, f64))| {
-            let mut films: Vec<f64> = link.front.films.iter().map(|share| share * from_front).collect();
-            if let Some(back) = &link.back {
-                for (film, share) in films.iter_mut().zip(back.films.iter().rev()) {
-                    *film += share * from_behind;
-                }
-            }
-            films
+        let films = (0..self.links.len()).map(|at| {
+            let (from_front, from_behind) = self.films(at);
+            from_front.iter().zip(&from_behind).map(|(front, behind)| front + behind).collect()
+        });
+        let bodies = (0..self.links.len() - 1).map(|at| self.body(at)).collect();
+        Absorption { response: self.response(), films: films.collect(), bodies }
+    }
+
+    /// What the films of a coating take of the light from the front, and from behind.
+    fn films(&self, at: usize) -> (Vec<f64>, Vec<f64>) {
+        let (link, (from_front, from_behind)) = (&self.links[at], self.arriving[at]);
+        let front = link.front.films.iter().map(|share| share * from_front).collect();
+        let behind = match &link.back {
+            Some(back) => back.films.iter().rev().map(|share| share * from_behind).collect(),
+            None => vec![0.0; link.front.films.len()],
         };
-        let films: Vec<Vec<f64>> = self.links.iter().zip(&self.arriving).map(share).collect();
-        let bodies = (0..self.links.len() - 1).map(|at| self.body(at, &films)).collect();
-        Absorption { response: self.response(), films, bodies }
+        (front, behind)
     }
 
-    /// What the body behind coating `at` takes: the net power into the coatings before it less what they
-    /// absorb and what goes on. Net power at each coating's front: what arrives less what leaves.
-    fn body(&self, at: usize, films: &[Vec<f64>]) -> f64 {
-        let net_in = self.net(at) - films[at].iter().sum::<f64>();
-        net_in - self.net(at + 1)
-    }
-
-    /// The net power that enters a coating at its front.
-    fn net(&self, at: usize) -> f64 {
-        let link = &self.links[at];
-        let (from_front, from_behind) = self.arriving[at];
-        let through = link.back.as_ref().map_or(0.0, |back| back.transmittance * from_behind);
-        from_front * (1.0 - link.front.reflectance) - through
+    /// What the body behind coating `at` takes: what enters it through its two coatings, less what leaves it
+    /// into them. Of the light that runs in it towards a coating, all that the coating neither absorbs nor
+    /// passes comes back or is its own: so the interference of both waves at its faces counts as its own.
+    fn body(&self, at: usize) -> f64 {
+        let (near, far) = (&self.links[at], &self.links[at + 1]);
+        let entering = near.front.transmittance * self.arriving[at].0
+            + far.back.as_ref().map_or(0.0, |back| back.transmittance * self.arriving[at + 1].1);
+        let leaving = near.back.as_ref().map_or(0.0, |back| back.transmittance * self.arriving[at].1)
+            + far.front.transmittance * self.arriving[at + 1].0;
+        let in_films = self.films(at).1.iter().sum::<f64>() + self.films(at + 1).0.iter().sum::<f64>();
+        entering - leaving - in_films
     }
 }

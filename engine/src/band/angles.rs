@@ -1,6 +1,7 @@
 //! The least and the greatest value over a band and a range of angles.
 
-use super::extremes::{Extreme, Extremes, along, check_band, over_band};
+use super::extremes::{Extreme, Extremes, check_band, over_band};
+use super::least::along;
 use super::mesh::{Along, Mesh};
 use super::probe::Probe;
 use super::search::{Point, minimum};

@@ -4,6 +4,7 @@ mod angles;
 mod chebyshev;
 mod cone;
 mod extremes;
+mod least;
 mod mean;
 mod mesh;
 mod probe;
