@@ -24,13 +24,21 @@ pub(crate) struct Chain {
     reflectance: f64,
     transmittance: f64,
     ln_transmittance: f64,
+    /// Which bodies don't absorb.
+    clear: Vec<bool>,
+    /// Whether nothing absorbs.
     lossless: bool,
 }
 
 impl Chain {
     /// `ln_passed` holds the logarithm of what one pass through each body leaves. `None` if a number is not
     /// finite or the balance of a body has no solution.
-    pub(crate) fn new(links: Vec<Link>, ln_passed: Vec<f64>, lossless: bool) -> Option<Chain> {
+    pub(crate) fn new(
+        links: Vec<Link>,
+        ln_passed: Vec<f64>,
+        clear: Vec<bool>,
+        lossless: bool,
+    ) -> Option<Chain> {
         let finite =
             |link: &Link| link.front.is_finite() && link.back.as_ref().is_none_or(Coating::is_finite);
         if !links.iter().all(finite) {
@@ -72,6 +80,7 @@ impl Chain {
             ln_transmittance: ln_arriving + links[last].front.ln_transmittance,
             links,
             arriving,
+            clear,
             lossless,
         };
         let finite = chain.reflectance.is_finite() && chain.transmittance.is_finite();
@@ -113,6 +122,9 @@ impl Chain {
     /// into them. Of the light that runs in it towards a coating, all that the coating neither absorbs nor
     /// passes comes back or is its own: so the interference of both waves at its faces counts as its own.
     fn body(&self, at: usize) -> f64 {
+        if self.clear[at] {
+            return 0.0;
+        }
         let (near, far) = (&self.links[at], &self.links[at + 1]);
         let entering = near.front.transmittance * self.arriving[at].0
             + far.back.as_ref().map_or(0.0, |back| back.transmittance * self.arriving[at + 1].1);

@@ -46,9 +46,11 @@ impl Coating {
         let mut pair = exit.wave(mode);
         let flux_out = pair.flux().max(0.0);
         let mut faces: Vec<(f64, f64)> = Vec::new();
+        let mut lossless: Vec<bool> = Vec::new();
         for step in steps.rev() {
             if detail == Detail::ByFilm {
                 faces.push((pair.flux(), pair.ln_scale));
+                lossless.push(step.is_lossless());
             }
             pair = step.carry(&pair, mode);
         }
@@ -81,7 +83,10 @@ impl Coating {
             let flow =
                 |&(flux, ln_scale): &(f64, f64)| share * flux * (2.0 * (ln_scale - front.ln_scale)).exp();
             let flows: Vec<f64> = faces.iter().rev().map(flow).collect();
-            coating.films = flows.windows(2).map(|faces| faces[0] - faces[1]).collect();
+            // A film that does not absorb takes nothing, and not what rounding leaves either.
+            let share =
+                |(faces, &lossless): (&[f64], &bool)| if lossless { 0.0 } else { faces[0] - faces[1] };
+            coating.films = flows.windows(2).zip(lossless.iter().rev()).map(share).collect();
         }
         coating
     }

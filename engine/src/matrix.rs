@@ -94,6 +94,11 @@ impl<N: Number> Step<N> {
         }
     }
 
+    /// Whether the film takes no power from the light.
+    pub(crate) fn is_lossless(&self) -> bool {
+        self.permittivity.value().im == 0.0
+    }
+
     /// The fields at the film's front from those at its back.
     pub(crate) fn carry(&self, behind: &Pair<N>, mode: Mode) -> Pair<N> {
         let (b, c) = (behind.b.clone(), behind.c.clone());

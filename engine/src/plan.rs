@@ -168,10 +168,11 @@ impl Tilted<'_> {
             let decay = self.media[body.material].normal().im;
             -2.0 * TAU * decay * body.thickness_nm / self.wavelength_nm
         };
+        let clear: Vec<bool> = bodies.iter().map(|body| self.media[body.material].index.im == 0.0).collect();
         let lossless =
             self.media.iter().enumerate().all(|(at, medium)| at == self.plan.exit || medium.index.im == 0.0);
         let ln_passed = bodies.iter().map(damping).collect();
-        Chain::new(coatings, ln_passed, lossless).ok_or(self.not_finite())
+        Chain::new(coatings, ln_passed, clear, lossless).ok_or(self.not_finite())
     }
 
     /// Every coating from the front, and from behind where a body lies behind it.

@@ -11,6 +11,8 @@ use crate::stack::Stack;
 
 /// How many stretches of angle are searched, at most, for one extreme.
 const SEARCHES: usize = 4;
+/// Two values that differ by less are the same.
+const ROUNDING: f64 = 1e-14;
 
 /// The least and the greatest value of a quantity over a band of vacuum wavelengths in nm and a range of
 /// angles of incidence in rad, ends included. The light's own angle is not looked at.
@@ -55,12 +57,13 @@ pub fn extremes_over_angles(
         found.extend(refined(&probe, band_nm, &angles, &scanned, most)?);
         found.extend(scanned);
     }
+    // The ends come first, and stay the place of an extreme that lies there but for rounding.
     let mut all = found[0];
     for next in &found {
-        if next.min.value < all.min.value {
+        if next.min.value < all.min.value - ROUNDING * (1.0 + all.min.value.abs()) {
             all.min = next.min;
         }
-        if next.max.value > all.max.value {
+        if next.max.value > all.max.value + ROUNDING * (1.0 + all.max.value.abs()) {
             all.max = next.max;
         }
     }

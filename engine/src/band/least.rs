@@ -44,7 +44,9 @@ fn least(
         return Ok((values, best));
     }
     let greatest = values.iter().map(|point| point.y).fold(f64::NEG_INFINITY, f64::max);
-    let believed = BELIEVED * (greatest - best.y).max(1e-3 * best.y.abs()).max(1e-12);
+    // What rounding alone may do to values of this size is no structure.
+    let rounding = (1e-13 * greatest.abs().max(best.y.abs())).max(1e-15);
+    let believed = (BELIEVED * (greatest - best.y)).max(rounding);
     let mut bounds = bounds(&values);
     for _ in 0..PASSES {
         let doubtful =
@@ -79,7 +81,8 @@ fn least(
         let (lo, hi) =
             (values[start.saturating_sub(1).min(at)].x, values[(start + 1).min(last).max(at + 1)].x);
         let found = minimum(lo, values[start], hi, 1e-7 * (hi - lo), &mut *function)?;
-        if found.y < best.y {
+        // An end of the range stays the place of an extreme that lies there but for rounding.
+        if found.y < best.y - 1e-2 * believed {
             best = found;
         }
     }

@@ -4,6 +4,9 @@
 //! engine; those marked 'matrix' have no closed formula and were computed by two separate methods. The
 //! sources are named from memory: authors and years are believed right, sections and pages are not verified.
 
+// The figures keep all the digits that they were computed to, final zeros too.
+#![allow(clippy::excessive_precision)]
+
 mod dispersion;
 mod films;
 mod interfaces;
