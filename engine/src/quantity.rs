@@ -20,6 +20,8 @@ pub enum Quantity {
         films: Vec<(usize, usize)>,
         /// The thick bodies, from 0, in the light's order.
         bodies: Vec<usize>,
+        /// Whether what enters the exit half-space counts too: it is absorbed there.
+        exit: bool,
     },
     /// −log₁₀ T.
     OpticalDensity,
@@ -78,7 +80,7 @@ impl Tally {
 impl Quantity {
     /// Whether the stack has the films and bodies that this names.
     pub(crate) fn check(&self, plan: &Plan) -> Result<(), OpticsError> {
-        if let Quantity::AbsorptanceIn { films, bodies } = self {
+        if let Quantity::AbsorptanceIn { films, bodies, .. } = self {
             let film = |&(coating, film): &(usize, usize)| {
                 plan.coatings.get(coating).is_some_and(|films| film < films.len())
             };
@@ -106,12 +108,13 @@ impl Quantity {
                 Quantity::Transmittance => plain(chain.response().transmittance),
                 Quantity::Absorptance => plain(chain.response().absorptance),
                 Quantity::OpticalDensity => Tally { value: 1.0, ln_scale: chain.response().ln_transmittance },
-                Quantity::AbsorptanceIn { films, bodies } => {
+                Quantity::AbsorptanceIn { films, bodies, exit } => {
                     let absorption = chain.absorption();
                     let of_films: f64 =
                         films.iter().map(|&(coating, film)| absorption.films[coating][film]).sum();
                     let of_bodies: f64 = bodies.iter().map(|&body| absorption.bodies[body]).sum();
-                    plain(of_films + of_bodies)
+                    let behind = if *exit { absorption.response.transmittance } else { 0.0 };
+                    plain(of_films + of_bodies + behind)
                 }
             };
             total = total.plus(share, tally);

@@ -172,7 +172,7 @@ proptest! {
             incident: index(1.0, 0.0), coatings: vec![films], bodies: vec![], exit: index(1.5, 0.0),
         };
         let light = Light::parallel(angle, Polarisation::Mean);
-        let whole = Quantity::AbsorptanceIn { films: vec![(0, 0)], bodies: vec![] };
+        let whole = Quantity::AbsorptanceIn { films: vec![(0, 0)], bodies: vec![], exit: false };
         for quantity in [Quantity::Reflectance, Quantity::Transmittance, whole] {
             let found = extremes(&stack, &quantity, &light, (400.0, 700.0)).unwrap();
             for step in 0..300 {

@@ -3,11 +3,13 @@
 //! Data flows one way: text → tokens → [`syntax`] tree → resolved [`model`] → evaluation → [`finding`]s →
 //! [`diagnostic`]s, which every output is a view of.
 
+mod check;
 pub mod code;
 pub mod diagnostic;
 pub mod files;
 pub mod finding;
 pub mod handbook;
+pub mod messages;
 pub mod model;
 mod near;
 pub mod project;
@@ -17,5 +19,6 @@ pub mod source;
 pub mod syntax;
 pub mod units;
 
+pub use check::{Options, check};
 pub use near::nearest;
 pub use resolve::load;

@@ -30,6 +30,8 @@ use std::sync::Arc;
 pub struct Module {
     /// Its file; a module always has one.
     pub file: Option<FileId>,
+    /// The files that it uses, those that they use included.
+    pub uses: Vec<FileId>,
     /// Its specifications, in the order written.
     pub specifications: Vec<Arc<Specification>>,
     /// Its recipes, in the order written.

@@ -297,6 +297,14 @@ impl Resolver<'_> {
         if matches!(quantity, Solar(_) | SolarAbsorptance) && clauses.bands.is_empty() {
             clauses.bands.push(SOLAR_BAND);
         }
+        let plain =
+            matches!(quantity, Reflectance | Transmittance | Absorptance | AbsorptanceIn(_) | OpticalDensity);
+        if let (true, None, Some(under)) = (plain, written.mean, &clauses.under) {
+            let (span, name) = (under.place.span, format!("`under {}`", under.spectrum.name));
+            let must = "with `mean`: light weights a mean, and a bound at every wavelength needs no weight";
+            self.invalid(module, span, "this clause", &name, must);
+            return None;
+        }
         let lacks_where = clauses.bands.is_empty() && clauses.wavelengths.is_empty();
         let hint = "write `over 420 .. 680 nm`";
         match quantity {

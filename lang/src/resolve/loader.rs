@@ -71,6 +71,7 @@ impl Resolver<'_> {
             origin,
             syntax: syntax.clone(),
             scope: Scope::default(),
+            imports: Default::default(),
         });
         self.by_path.insert(path.clone(), Some(id));
         for (number, item) in syntax.items.iter().enumerate() {
@@ -109,6 +110,9 @@ impl Resolver<'_> {
             UseSource::Handbook(_) => None,
             UseSource::File(path) => Some((path, self.imported_module(module, path))),
         };
+        if let Some((_, Some(from))) = from {
+            self.modules[module.0].imports.insert(from);
+        }
         for name in &used.names {
             let span = name.alias.as_ref().unwrap_or(&name.name).span;
             let local = name.alias.as_ref().unwrap_or(&name.name).text.clone();

@@ -57,6 +57,8 @@ struct Loaded {
     origin: model::Origin,
     syntax: Arc<ast::Module>,
     scope: Scope,
+    /// The modules that its `use` statements name.
+    imports: BTreeSet<ModuleId>,
 }
 
 /// What is known of an item that others may need.
@@ -123,7 +125,9 @@ impl<'a> Resolver<'a> {
 
     fn module(&mut self, id: ModuleId) -> model::Module {
         let syntax = self.modules[id.0].syntax.clone();
-        let mut module = model::Module { file: Some(self.modules[id.0].file), ..model::Module::default() };
+        let uses = self.uses(id);
+        let mut module =
+            model::Module { file: Some(self.modules[id.0].file), uses, ..model::Module::default() };
         for (number, item) in syntax.items.iter().enumerate() {
             let at = (id, number);
             match &item.kind {
@@ -141,6 +145,16 @@ impl<'a> Resolver<'a> {
             }
         }
         module
+    }
+
+    /// The files that a module uses, directly or not.
+    fn uses(&self, id: ModuleId) -> Vec<FileId> {
+        let mut seen = BTreeSet::from([id]);
+        let mut open = vec![id];
+        while let Some(next) = open.pop() {
+            open.extend(self.modules[next.0].imports.iter().filter(|import| seen.insert(**import)));
+        }
+        seen.into_iter().filter(|module| *module != id).map(|module| self.modules[module.0].file).collect()
     }
 
     fn place(&self, module: ModuleId, span: Span) -> Place {

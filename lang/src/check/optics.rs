@@ -1,0 +1,248 @@
+//! The model's stack as the engine has it, and what the engine says of it in the shop's names.
+
+use crate::finding::{Fact, OpticsFact, Verdict};
+use crate::model::{Element, LayerMaterial, Material, Requirement, SpectrumKind, Stack, Target, Weighting};
+use overcoat_engine::{self as engine, Index, IndexError, OpticsError, Quantity, SpectralWeight};
+use std::sync::Arc;
+
+/// A stack that the engine can evaluate: one of plain films.
+pub(super) struct Optics {
+    /// As the light meets it from the incident side.
+    forward: engine::Stack,
+    /// As light from the exit side meets it.
+    backward: engine::Stack,
+    /// For each element of the model's stack, where the engine has it.
+    seats: Vec<Seat>,
+    /// The materials with their indices, for messages.
+    materials: Vec<Arc<Material>>,
+}
+
+/// Where the engine has an element.
+#[derive(Clone, Copy)]
+enum Seat {
+    Film(usize, usize),
+    Body(usize),
+}
+
+/// Every material of a stack, each once, in the light's order.
+pub(super) fn materials(stack: &Stack) -> Vec<Arc<Material>> {
+    let mut found: Vec<Arc<Material>> = Vec::new();
+    let mut add = |material: &Arc<Material>| {
+        if !found.iter().any(|other| other.is(material)) {
+            found.push(material.clone());
+        }
+    };
+    add(&stack.incident.material);
+    for element in &stack.elements {
+        match element {
+            Element::Layer(layer) => layer.material.materials().for_each(&mut add),
+            Element::Body(body) => add(&body.material),
+        }
+    }
+    add(&stack.exit.material);
+    found
+}
+
+/// What of a stack is not evaluated yet, as a noun phrase.
+pub(super) fn beyond(stack: &Stack) -> Option<&'static str> {
+    if stack.layers().any(|layer| matches!(layer.material, LayerMaterial::Graded(_))) {
+        return Some("a stack with a graded layer");
+    }
+    if stack.layers().any(|layer| layer.rough.is_some_and(|(rms, _)| rms > 0.0)) {
+        return Some("a stack with a rough interface");
+    }
+    let textured = stack.exit.textured.is_some() || stack.incident.textured.is_some();
+    let textured = textured
+        || stack
+            .elements
+            .iter()
+            .any(|element| matches!(element, Element::Body(body) if body.textured.is_some()));
+    textured.then_some("a stack on a textured substrate")
+}
+
+impl Optics {
+    /// The engine's stack; none where a material has no index, which has been reported.
+    pub(super) fn new(stack: &Stack) -> Option<Optics> {
+        let mut coatings: Vec<Vec<engine::Film>> = vec![Vec::new()];
+        let mut bodies = Vec::new();
+        let mut seats = Vec::with_capacity(stack.elements.len());
+        for element in &stack.elements {
+            match element {
+                Element::Layer(layer) => {
+                    let index = layer.material.materials().next()?.index.clone()?;
+                    let coating = coatings.len() - 1;
+                    seats.push(Seat::Film(coating, coatings[coating].len()));
+                    coatings[coating].push(engine::Film { index, thickness_nm: layer.thickness });
+                }
+                Element::Body(body) => {
+                    seats.push(Seat::Body(bodies.len()));
+                    bodies.push(engine::Body {
+                        index: body.material.index.clone()?,
+                        thickness_nm: body.thickness,
+                    });
+                    coatings.push(Vec::new());
+                }
+            }
+        }
+        let incident = stack.incident.material.index.clone()?;
+        let exit = stack.exit.material.index.clone()?;
+        let forward = engine::Stack { incident, coatings, bodies, exit };
+        Some(Optics { backward: forward.reversed(), forward, seats, materials: materials(stack) })
+    }
+
+    /// The stack as the light of a requirement meets it.
+    pub(super) fn facing(&self, from_exit: bool) -> &engine::Stack {
+        if from_exit { &self.backward } else { &self.forward }
+    }
+
+    /// The films, bodies and half-space that a name stands for, as the engine counts them; none where it stands for
+    /// nothing in this stack.
+    pub(super) fn target(&self, stack: &Stack, target: &Target, from_exit: bool) -> Option<Quantity> {
+        let named = |name: &Option<String>| {
+            let base = name.as_ref().map(|name| name.split('[').next().unwrap_or(name));
+            base == Some(target.name.as_str())
+        };
+        let by_name = stack.layers().any(|layer| named(&layer.name));
+        let chosen = |element: &Element| match element {
+            Element::Layer(layer) if by_name => named(&layer.name),
+            Element::Layer(layer) => layer
+                .material
+                .materials()
+                .any(|material| target.material.as_ref().is_some_and(|of| of.is(material))),
+            Element::Body(body) => {
+                !by_name && target.material.as_ref().is_some_and(|of| of.is(&body.material))
+            }
+        };
+        let (mut films, mut bodies) = (Vec::new(), Vec::new());
+        for (element, seat) in stack.elements.iter().zip(&self.seats) {
+            if chosen(element) {
+                match *seat {
+                    Seat::Film(coating, film) if from_exit => {
+                        let last = self.forward.coatings.len() - 1;
+                        films.push((last - coating, self.forward.coatings[coating].len() - 1 - film));
+                    }
+                    Seat::Film(coating, film) => films.push((coating, film)),
+                    Seat::Body(body) if from_exit => bodies.push(self.forward.bodies.len() - 1 - body),
+                    Seat::Body(body) => bodies.push(body),
+                }
+            }
+        }
+        let behind = if from_exit { &stack.incident.material } else { &stack.exit.material };
+        let exit = !by_name && target.material.as_ref().is_some_and(|of| of.is(behind));
+        let nothing = films.is_empty() && bodies.is_empty() && !exit;
+        (!nothing).then_some(Quantity::AbsorptanceIn { films, bodies, exit })
+    }
+
+    /// The materials without constants somewhere in a band, nm.
+    pub(super) fn gaps(&self, band: (f64, f64)) -> Vec<OpticsFact> {
+        let mut gaps = Vec::new();
+        for material in &self.materials {
+            let range = material.index.as_ref().and_then(Index::range_nm);
+            if let Some(range) = range.filter(|range| band.0 < range.0 || band.1 > range.1) {
+                gaps.push(OpticsFact::OutsideData {
+                    name: material.name.clone(),
+                    defined: material.place,
+                    asked: band,
+                    range,
+                });
+            }
+        }
+        gaps
+    }
+
+    /// What the engine's error means in the shop's names.
+    pub(super) fn explain(&self, error: &OpticsError, requirement: &Requirement, stack: &Stack) -> Trouble {
+        let spectrum = requirement.under.as_ref().map(|under| &under.spectrum);
+        match error {
+            OpticsError::Material { index, cause } => {
+                let is =
+                    |material: &&Arc<Material>| material.index.as_ref().is_some_and(|own| own.same_as(index));
+                let (name, defined) = match self.materials.iter().find(is) {
+                    Some(material) => (material.name.clone(), material.place),
+                    None => ("a material".to_owned(), stack.place),
+                };
+                Trouble::Fact(Box::new(Fact::Optics(match *cause {
+                    IndexError::Outside { wavelength_nm, range_nm } => {
+                        let asked = (wavelength_nm, wavelength_nm);
+                        OpticsFact::OutsideData { name, defined, asked, range: range_nm }
+                    }
+                    IndexError::NotPhysical { wavelength_nm, n, k } => {
+                        OpticsFact::NotPhysical { name, defined, wavelength: wavelength_nm, nk: Some((n, k)) }
+                    }
+                    IndexError::NotFinite { wavelength_nm } | IndexError::Wavelength { wavelength_nm } => {
+                        OpticsFact::NotPhysical { name, defined, wavelength: wavelength_nm, nk: None }
+                    }
+                })))
+            }
+            OpticsError::AbsorbingIncident { wavelength_nm, k } => {
+                let medium = if requirement.from_exit { &stack.exit } else { &stack.incident };
+                Trouble::Verdict(Verdict::AbsorbingIncident {
+                    material: medium.material.name.clone(),
+                    k: *k,
+                    wavelength: *wavelength_nm,
+                    place: medium.place,
+                })
+            }
+            OpticsError::WeightOutside { band_nm, range_nm } => Trouble::Verdict(match spectrum {
+                Some(spectrum) => Verdict::SpectrumOutside {
+                    name: spectrum.name.clone(),
+                    defined: spectrum.place,
+                    asked: *band_nm,
+                    range: *range_nm,
+                },
+                None => not_settled(f64::INFINITY, band_nm.0),
+            }),
+            OpticsError::WeightZero { band_nm } => Trouble::Verdict(Verdict::SpectrumDark {
+                name: spectrum.map_or(String::new(), |spectrum| spectrum.name.clone()),
+                asked: *band_nm,
+            }),
+            OpticsError::NotConverged { estimate, error, wavelength_nm } => {
+                Trouble::Verdict(Verdict::NotConverged {
+                    estimate: *estimate,
+                    error: *error,
+                    wavelength: *wavelength_nm,
+                })
+            }
+            OpticsError::Dark { wavelength_nm } | OpticsError::NotFinite { wavelength_nm, .. } => {
+                Trouble::Verdict(not_settled(f64::INFINITY, *wavelength_nm))
+            }
+            _ => {
+                let start =
+                    requirement.bands.first().map(|band| band.0).or(requirement.wavelengths.first().copied());
+                Trouble::Verdict(not_settled(f64::INFINITY, start.unwrap_or(0.0)))
+            }
+        }
+    }
+}
+
+fn not_settled(error: f64, wavelength: f64) -> Verdict {
+    Verdict::NotConverged { estimate: 0.0, error, wavelength }
+}
+
+/// Why a requirement has no value.
+#[derive(Clone, Debug)]
+pub(super) enum Trouble {
+    /// A fact about materials.
+    Fact(Box<Fact>),
+    /// A fact about the requirement.
+    Verdict(Verdict),
+}
+
+/// The engine's weight of a requirement.
+pub(super) fn weight(under: Option<&Weighting>) -> Option<SpectralWeight> {
+    let Some(under) = under else { return Some(SpectralWeight::constant()) };
+    let weight = of_spectrum(under.spectrum.kind.as_ref()?)?;
+    Some(if under.photons { weight.photons() } else { weight })
+}
+
+fn of_spectrum(kind: &SpectrumKind) -> Option<SpectralWeight> {
+    match kind {
+        SpectrumKind::Table(rows) => SpectralWeight::table(rows).ok(),
+        SpectrumKind::Blackbody(kelvin) => SpectralWeight::blackbody(*kelvin).ok(),
+        SpectrumKind::Product(factors) => {
+            let factors: Option<Vec<SpectralWeight>> =
+                factors.iter().map(|factor| of_spectrum(factor.kind.as_ref()?)).collect();
+            SpectralWeight::product(&factors?).ok()
+        }
+    }
+}

@@ -1,0 +1,175 @@
+//! The requirements of a recipe: each with its value, its margin and where the extreme is.
+
+use super::optics::{self, Optics, Trouble};
+use super::quantity;
+use crate::finding::{Finding, OpticsFact, PromiseFact, Verdict};
+use crate::model::{Bound, Quantity, Recipe, Requirement, Stack};
+use crate::report::{At, RequirementReport};
+use crate::source::Place;
+use std::sync::Arc;
+
+/// A value that may be the one nearest to breaking a bound.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Candidate {
+    /// The value.
+    pub(super) value: f64,
+    /// Where it is.
+    pub(super) at: At,
+}
+
+/// Everything that evaluating one requirement needs.
+pub(super) struct Asked<'a> {
+    pub(super) requirement: &'a Requirement,
+    pub(super) stack: &'a Stack,
+    pub(super) optics: &'a Optics,
+}
+
+/// Evaluates every requirement of a sound recipe.
+pub(super) fn check(recipe: &Recipe, stack: &Stack, findings: &mut Vec<Finding>) -> Vec<RequirementReport> {
+    let beyond = optics::beyond(stack);
+    let optics = if beyond.is_none() { Optics::new(stack) } else { None };
+    let mut reports = Vec::new();
+    for (requirement, asked_at) in recipe.all_requirements() {
+        let result = match (&optics, beyond) {
+            (Some(optics), _) => evaluate(&Asked { requirement, stack, optics }),
+            (None, Some(what)) => {
+                Err(vec![Trouble::Verdict(Verdict::NotEvaluated { what: what.to_owned() })])
+            }
+            (None, None) => Err(Vec::new()),
+        };
+        let mut report = blank(requirement, asked_at);
+        let tell = |verdict| PromiseFact {
+            requirement: requirement.clone(),
+            recipe: recipe.name.clone(),
+            asked_at,
+            verdict,
+        };
+        match result {
+            Ok(judged) => {
+                report.met = judged.margin >= 0.0;
+                report.value = Some(judged.value);
+                report.min = judged.min;
+                report.max = judged.max;
+                report.margin = Some(judged.margin);
+                report.at = judged.at;
+                findings.extend(
+                    judged.verdict(requirement).map(|verdict| Finding::new(tell(verdict), requirement.place)),
+                );
+            }
+            Err(troubles) => {
+                for trouble in troubles {
+                    findings.push(match trouble {
+                        Trouble::Fact(fact) => Finding { fact: *fact, place: requirement.place },
+                        Trouble::Verdict(verdict) => Finding::new(tell(verdict), requirement.place),
+                    });
+                }
+            }
+        }
+        reports.push(report);
+    }
+    reports
+}
+
+/// The requirements of a recipe that could not be understood: none has a value, none is met.
+pub(super) fn not_evaluated(recipe: &Recipe) -> Vec<RequirementReport> {
+    recipe.all_requirements().map(|(requirement, asked_at)| blank(requirement, asked_at)).collect()
+}
+
+fn blank(requirement: &Arc<Requirement>, asked_at: Place) -> RequirementReport {
+    let (min, max) = match &requirement.bound {
+        Bound::Range { min, max } => (*min, *max),
+        Bound::NearColour { difference, .. } => (None, Some(*difference)),
+        Bound::Crosses { within: Some((low, high)), .. } => (Some(*low), Some(*high)),
+        _ => (None, None),
+    };
+    RequirementReport {
+        requirement: requirement.clone(),
+        asked_at,
+        met: false,
+        value: None,
+        min,
+        max,
+        margin: None,
+        at: At { wavelength: None, angle: 0.0, polarisation: requirement.polarisation },
+    }
+}
+
+/// A value with its bound.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Judged {
+    value: f64,
+    min: Option<f64>,
+    max: Option<f64>,
+    margin: f64,
+    at: At,
+}
+
+fn evaluate(asked: &Asked<'_>) -> Result<Judged, Vec<Trouble>> {
+    let gaps: Vec<OpticsFact> =
+        spans(asked.requirement).into_iter().flat_map(|band| asked.optics.gaps(band)).collect();
+    if !gaps.is_empty() {
+        return Err(gaps.into_iter().map(|gap| Trouble::Fact(Box::new(gap.into()))).collect());
+    }
+    let candidates = quantity::candidates(asked).map_err(|trouble| vec![trouble])?;
+    let Bound::Range { min, max } = asked.requirement.bound else {
+        let what = match asked.requirement.bound {
+            Bound::Crosses { .. } => "an edge",
+            Bound::NearColour { .. } => "a colour",
+            _ => "a bound from a mask",
+        };
+        return Err(vec![Trouble::Verdict(Verdict::NotEvaluated { what: what.to_owned() })]);
+    };
+    let worst = candidates
+        .into_iter()
+        .map(|candidate| judge(candidate, min, max))
+        .reduce(|worst, next| if next.margin < worst.margin { next } else { worst });
+    worst.ok_or_else(Vec::new)
+}
+
+/// Every stretch of wavelengths that a requirement looks at, nm.
+fn spans(requirement: &Requirement) -> Vec<(f64, f64)> {
+    let points = requirement.wavelengths.iter().map(|nm| (*nm, *nm));
+    requirement.bands.iter().copied().chain(points).collect()
+}
+
+fn judge(candidate: Candidate, min: Option<f64>, max: Option<f64>) -> Judged {
+    let below = max.map_or(f64::INFINITY, |max| max - candidate.value);
+    let above = min.map_or(f64::INFINITY, |min| candidate.value - min);
+    Judged { value: candidate.value, min, max, margin: below.min(above), at: candidate.at }
+}
+
+impl Judged {
+    /// What is to be said of it, if anything.
+    fn verdict(&self, requirement: &Requirement) -> Option<Verdict> {
+        let least = match (self.min, self.max) {
+            (Some(min), Some(max)) => self.value - min < max - self.value,
+            (min, _) => min.is_some(),
+        };
+        let bound = if least { self.min? } else { self.max? };
+        let (value, at, margin) = (self.value, self.at, self.margin);
+        if margin < 0.0 {
+            return Some(Verdict::Missed { value, bound, least, at });
+        }
+        let room = match (self.min, self.max) {
+            (Some(min), Some(max)) => (max - min) / 2.0,
+            // A share of the light has as much room as the nearer of 0 and 1 leaves it.
+            _ if is_share(&requirement.quantity) => bound.abs().min((1.0 - bound).abs()),
+            _ => bound.abs(),
+        };
+        (margin < room / 10.0).then_some(Verdict::Thin { value, bound, least, margin, at })
+    }
+}
+
+fn is_share(quantity: &Quantity) -> bool {
+    matches!(
+        quantity,
+        Quantity::Reflectance
+            | Quantity::Transmittance
+            | Quantity::Absorptance
+            | Quantity::AbsorptanceIn(_)
+            | Quantity::Luminous(_)
+            | Quantity::Solar(_)
+            | Quantity::SolarAbsorptance
+            | Quantity::Emittance
+    )
+}
