@@ -147,7 +147,7 @@ fn what_cannot_be_is_an_error() {
         let found = mean(&stack, &Quantity::Reflectance, &light, &[band], &SpectralWeight::constant());
         assert!(matches!(found, Err(OpticsError::Band { .. })));
     }
-    let nowhere = Quantity::AbsorptanceIn { films: vec![(0, 1)], bodies: vec![] };
+    let nowhere = Quantity::AbsorptanceIn { films: vec![(0, 1)], bodies: vec![], exit: false };
     assert!(matches!(value(&stack, &nowhere, &light, 550.0), Err(OpticsError::NoSuchPlace)));
 }
 
