@@ -1,0 +1,150 @@
+//! Sentences about what a part must do.
+
+use super::Words;
+use super::number::{self, angle, apart, band, or_list, ratio, significant, wavelength};
+use crate::code::Code;
+use crate::finding::{PromiseFact, Verdict};
+use crate::model::{Beam, Quantity, Requirement};
+use crate::report::At;
+use crate::source::Place;
+
+pub(super) fn words(fact: &PromiseFact, place: Place) -> Words {
+    let words = verdict(fact);
+    if fact.asked_at == place {
+        return words;
+    }
+    words.related(fact.asked_at, format!("recipe `{}` promises it here", fact.recipe))
+}
+
+fn verdict(fact: &PromiseFact) -> Words {
+    let requirement = &*fact.requirement;
+    let recipe = &fact.recipe;
+    match &fact.verdict {
+        Verdict::Missed { value, bound, least, at } => {
+            let digits = apart(*value, *bound);
+            let show = |number: f64| shown(requirement, number, digits);
+            let (side, allowed) = if *least { ("below", "required") } else { ("above", "allowed") };
+            Words::new(
+                Code::RequirementMissed,
+                format!(
+                    "in `{recipe}`, {} is {}{}, {} {side} the {} that is {allowed}",
+                    name(requirement),
+                    show(*value),
+                    place_of(at),
+                    shown(requirement, (value - bound).abs(), 3),
+                    show(*bound)
+                ),
+            )
+        }
+        Verdict::Thin { value, bound, least, margin, at } => {
+            let digits = apart(*value, *bound);
+            let side = if *least { "above" } else { "below" };
+            Words::new(
+                Code::MarginThin,
+                format!(
+                    "in `{recipe}`, {} is {}{}, only {} {side} its bound of {}",
+                    name(requirement),
+                    shown(requirement, *value, digits),
+                    place_of(at),
+                    shown(requirement, *margin, 3),
+                    shown(requirement, *bound, digits)
+                ),
+            )
+        }
+        Verdict::EdgeMisplaced { found, searched, at } => {
+            let what = name(requirement);
+            let message = match found {
+                Some(nm) => format!("in `{recipe}`, the edge of {what} lies at {}{}, outside its window", wavelength(*nm), beam(at)),
+                None => format!("in `{recipe}`, {what} has no such edge in {}{}", band(*searched), beam(at)),
+            };
+            Words::new(Code::EdgeMisplaced, message)
+        }
+        Verdict::NotEvaluated { what } => Words::new(
+            Code::NotEvaluated,
+            format!("in `{recipe}`, this requirement is not evaluated: this version does not work out {what}"),
+        ),
+        Verdict::NotConverged { estimate, error, wavelength: nm } => {
+            let known = if error.is_finite() {
+                format!("it is {} give or take {}", significant(*estimate, 6), significant(*error, 2))
+            } else {
+                "it has no finite value".to_owned()
+            };
+            Words::new(
+                Code::NotConverged,
+                format!("in `{recipe}`, {} did not settle near {}: {known}", name(requirement), wavelength(*nm)),
+            )
+        }
+        Verdict::AbsorbingIncident { material, k, wavelength: nm, place } => Words::new(
+            Code::AbsorbingIncident,
+            format!(
+                "in `{recipe}`, the light comes through `{material}`, which absorbs (k = {} at {}): reflectance has no \
+                 meaning there; let it come from a clear medium",
+                significant(*k, 3),
+                wavelength(*nm)
+            ),
+        )
+        .related(*place, format!("`{material}` stands at this end")),
+        Verdict::UnknownTarget { name, near } => {
+            let meant = if near.is_empty() { String::new() } else { format!("; did you mean {}?", or_list(near)) };
+            Words::new(Code::UnknownName, format!("recipe `{recipe}` has no layer and no material `{name}`{meant}"))
+        }
+        Verdict::SpectrumOutside { name, defined, asked, range } => Words::new(
+            Code::OutsideData,
+            format!(
+                "`{name}` has no values all over {}: they reach from {} to {}",
+                band(*asked),
+                wavelength(range.0),
+                wavelength(range.1)
+            ),
+        )
+        .related(*defined, format!("`{name}` is defined here")),
+        Verdict::SpectrumDark { name, asked } => {
+            Words::new(Code::InvalidValue, format!("`{name}` is dark all over {}, so that there is no mean", band(*asked)))
+        }
+        Verdict::MaskApart { path, covers } => Words::new(
+            Code::InvalidValue,
+            format!("\"{path}\" covers {}, and says nothing of any wavelength asked for", band(*covers)),
+        ),
+    }
+}
+
+/// What a requirement is about, in words: "mean reflectance", "absorptance in silver".
+fn name(requirement: &Requirement) -> String {
+    let words: Vec<&str> = requirement.text.split_whitespace().collect();
+    let bound = |word: &&&str| {
+        word.starts_with(|first: char| first.is_ascii_digit() || "<>-+(".contains(first))
+            || matches!(**word, "crosses" | "within")
+    };
+    let end = words.iter().position(|word| bound(&word)).unwrap_or(words.len());
+    words[..end].join(" ")
+}
+
+/// A value of the requirement's quantity with its unit.
+fn shown(requirement: &Requirement, number: f64, digits: usize) -> String {
+    match requirement.quantity {
+        Quantity::OpticalDensity | Quantity::PeakField | Quantity::Colour(_) => significant(number, digits),
+        Quantity::Photocurrent(_) | Quantity::PhotocurrentLoss(_) => {
+            format!("{} mA/cm2", significant(number, digits))
+        }
+        Quantity::Phase(_) => format!("{} deg", significant(number, digits)),
+        Quantity::GroupDelay(_) => format!("{} fs", significant(number, digits)),
+        Quantity::GroupDelayDispersion(_) => format!("{} fs^2", significant(number, digits)),
+        _ => ratio(number, digits),
+    }
+}
+
+/// Where a value is: the wavelength, the angle unless it is normal, the polarisation unless it is both.
+fn place_of(at: &At) -> String {
+    let wavelength = at.wavelength.map_or(String::new(), |nm| format!(" at {}", number::wavelength(nm)));
+    format!("{wavelength}{}", beam(at))
+}
+
+fn beam(at: &At) -> String {
+    let angle = if at.angle == 0.0 { String::new() } else { format!(" at {}", angle(at.angle)) };
+    let polarisation = match at.polarisation {
+        Beam::S => " polarised s",
+        Beam::P => " polarised p",
+        Beam::Mean => "",
+    };
+    format!("{angle}{polarisation}")
+}
