@@ -1,0 +1,1 @@
+//! Drives the built command.
