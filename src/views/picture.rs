@@ -1,0 +1,144 @@
+//! One finding with the text that it is about.
+
+use super::{Shown, View};
+use ariadne::{Cache, CharSet, Color, Config, IndexType, Label, Report, ReportKind};
+use overcoat_lang::diagnostic::{Diagnostic, Severity};
+use overcoat_lang::source::{FileId, Place};
+use std::collections::BTreeMap;
+use std::fmt;
+use std::ops::Range;
+
+/// A longer line is not shown: it would fill the screen.
+const LONGEST_LINE: usize = 400;
+
+/// The texts as the pictures need them, each prepared when it is first shown.
+pub(super) struct Texts<'s> {
+    shown: &'s Shown<'s>,
+    ready: BTreeMap<FileId, ariadne::Source<String>>,
+}
+
+impl<'s> Texts<'s> {
+    pub(super) fn new(shown: &'s Shown<'s>) -> Texts<'s> {
+        Texts { shown, ready: BTreeMap::new() }
+    }
+}
+
+impl Cache<FileId> for &mut Texts<'_> {
+    type Storage = String;
+
+    fn fetch(&mut self, id: &FileId) -> Result<&ariadne::Source<String>, impl fmt::Debug> {
+        let text = || ariadne::Source::from(self.shown.sources.get(*id).text.to_string());
+        Ok::<_, String>(self.ready.entry(*id).or_insert_with(text))
+    }
+
+    fn display<'a>(&self, id: &'a FileId) -> Option<impl fmt::Display + 'a> {
+        Some(self.shown.name(*id).to_owned())
+    }
+}
+
+/// How pictures are drawn. ariadne counts characters and colours everything unless told otherwise.
+fn config(coloured: bool) -> Config {
+    Config::new()
+        .with_index_type(IndexType::Byte)
+        .with_color(coloured)
+        .with_char_set(CharSet::Unicode)
+        .with_tab_width(4)
+}
+
+/// A finding for people.
+pub(super) fn draw(view: &View<'_>, texts: &mut Texts<'_>, finding: &Diagnostic, coloured: bool) -> String {
+    let severity = view.gravity(finding);
+    let colour = match severity {
+        Severity::Error => Color::Red,
+        Severity::Warning => Color::Yellow,
+        Severity::Hint => Color::Cyan,
+    };
+    let kind = ReportKind::Custom(severity.word(), colour);
+    let mut notes = finding.notes.clone();
+    if view.deny.denies(finding) {
+        notes.push(format!("denied: a {} that makes this check fail", finding.severity.word()));
+    }
+    let fix = finding.fix.as_ref().map(|fix| with_text(&fix.title, &fix.edits));
+    if !showable(&view.shown, finding) {
+        return plain(view, finding, severity, &notes, fix.as_deref());
+    }
+    let here = (finding.place.file, clamped(&view.shown, finding.place));
+    let mut label = Label::new(here.clone()).with_color(colour).with_order(-1);
+    if view.shown.sources.get(finding.place.file).slice(finding.place.span).contains('\n') {
+        // A label over several lines is drawn only with a message.
+        label = label.with_message("here");
+    }
+    let related = finding.related.iter().map(|related| {
+        let place = (related.place.file, clamped(&view.shown, related.place));
+        Label::new(place).with_color(Color::Blue).with_message(&related.message)
+    });
+    let report = Report::build(kind, here)
+        .with_config(config(coloured))
+        .with_code(finding.code.slug())
+        .with_message(&finding.message)
+        .with_label(label)
+        .with_labels(related)
+        .with_notes(notes)
+        .with_helps(fix)
+        .finish();
+    let mut drawn = Vec::new();
+    match report.write(texts, &mut drawn) {
+        Ok(()) => trimmed(&String::from_utf8_lossy(&drawn)),
+        Err(_) => plain(view, finding, severity, &finding.notes, None),
+    }
+}
+
+/// A fix's title with what it writes, where that is one short text.
+fn with_text(title: &str, edits: &[overcoat_lang::diagnostic::Edit]) -> String {
+    match edits {
+        [edit] if !edit.text.is_empty() && !edit.text.contains('\n') && !title.contains(&edit.text) => {
+            format!("{title}: `{}`", edit.text.trim())
+        }
+        _ => title.to_owned(),
+    }
+}
+
+/// The bytes of a place, inside its text and between characters.
+fn clamped(shown: &Shown<'_>, place: Place) -> Range<usize> {
+    let text = &shown.sources.get(place.file).text;
+    let inside = |offset: u32| {
+        let mut offset = (offset as usize).min(text.len());
+        while !text.is_char_boundary(offset) {
+            offset -= 1;
+        }
+        offset
+    };
+    let (start, end) = (inside(place.span.start), inside(place.span.end));
+    start..end.max(start)
+}
+
+/// Whether all lines to be shown are there and short enough.
+fn showable(shown: &Shown<'_>, finding: &Diagnostic) -> bool {
+    let places = std::iter::once(finding.place).chain(finding.related.iter().map(|related| related.place));
+    places.into_iter().all(|place| {
+        let text = &shown.sources.get(place.file).text;
+        let range = clamped(shown, place);
+        let start = text[..range.start].rfind('\n').map_or(0, |at| at + 1);
+        let end = text[range.end..].find('\n').map_or(text.len(), |at| range.end + at);
+        !text.is_empty() && text[start..end].lines().all(|line| line.len() <= LONGEST_LINE)
+    })
+}
+
+/// A finding without its text: where the file could not be read, or its lines are too long to show.
+fn plain(view: &View<'_>, finding: &Diagnostic, severity: Severity, notes: &[String], help: Option<&str>) -> String {
+    let at = view.shown.located(finding.place);
+    let (word, code) = (severity.word(), finding.code.slug());
+    let mut text = format!("[{code}] {word}: {}\n   at {}:{}:{}\n", finding.message, at.file, at.line, at.column);
+    for related in &finding.related {
+        let at = view.shown.located(related.place);
+        text.push_str(&format!("   {}:{}:{}: {}\n", at.file, at.line, at.column, related.message));
+    }
+    text.extend(notes.iter().map(|note| format!("   note: {note}\n")));
+    text.extend(help.map(|help| format!("   help: {help}\n")));
+    text
+}
+
+/// Lines without blanks at their ends.
+fn trimmed(drawn: &str) -> String {
+    drawn.lines().map(|line| format!("{}\n", line.trim_end())).collect()
+}
