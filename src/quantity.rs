@@ -61,7 +61,7 @@ fn read(text: &str, spare_unit: Option<&str>) -> Option<Quantity> {
     let unit = if unit.is_empty() { spare_unit? } else { unit };
     let number: f64 = number.parse().ok()?;
     let scale = units::scale(unit)?;
-    let number = number * scale.factor + scale.offset;
+    let number = scale.base(number);
     number.is_finite().then_some(Quantity { number, dimension: scale.dimension })
 }
 

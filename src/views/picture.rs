@@ -72,17 +72,16 @@ pub(super) fn draw(view: &View<'_>, texts: &mut Texts<'_>, finding: &Diagnostic,
         let place = (related.place.file, clamped(&view.shown, related.place));
         Label::new(place).with_color(Color::Blue).with_message(&related.message)
     });
-    let report = Report::build(kind, here)
+    let mut report = Report::build(kind, here)
         .with_config(config(coloured))
         .with_code(finding.code.slug())
         .with_message(&finding.message)
         .with_label(label)
-        .with_labels(related)
-        .with_notes(notes)
-        .with_helps(fix)
-        .finish();
+        .with_labels(related);
+    report.with_notes(notes);
+    report.with_helps(fix);
     let mut drawn = Vec::new();
-    match report.write(texts, &mut drawn) {
+    match report.finish().write(texts, &mut drawn) {
         Ok(()) => trimmed(&String::from_utf8_lossy(&drawn)),
         Err(_) => plain(view, finding, severity, &finding.notes, None),
     }
