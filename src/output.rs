@@ -28,12 +28,17 @@ pub(crate) fn print(text: &str) -> Result<(), Failure> {
     Ok(())
 }
 
-/// Says on the standard error what went wrong: the one door to it.
+/// Says on the standard error what went wrong.
 pub(crate) fn complain(colour: Colour, message: &str) {
-    let stderr = io::stderr();
-    let style = if coloured(colour, &stderr) { AnsiColor::Red.on_default().bold() } else { Style::new() };
+    let style = if coloured(colour, &io::stderr()) { AnsiColor::Red.on_default().bold() } else { Style::new() };
+    tell(&format!("{style}overcoat:{style:#} {message}\n"));
+}
+
+/// Writes a text that may hold colours to the standard error: the one door to it.
+pub(crate) fn tell(text: &str) {
+    let mut out = anstream::AutoStream::new(io::stderr().lock(), ColorChoice::Always);
     // Where even this can't be written there is nobody left to tell.
-    let _ = writeln!(stderr.lock(), "{style}overcoat:{style:#} {message}");
+    let _ = out.write_all(text.as_bytes());
 }
 
 /// Replaces a file: its new text is written beside it and takes its place in one step.

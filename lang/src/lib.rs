@@ -19,6 +19,6 @@ pub mod source;
 pub mod syntax;
 pub mod units;
 
-pub use check::{Options, check};
+pub use check::{Options, check, engine_stack};
 pub use near::nearest;
 pub use resolve::load;

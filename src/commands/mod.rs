@@ -1,11 +1,11 @@
 //! The commands, one a file.
 
-//mod check;
+mod check;
 mod completions;
 mod explain;
 //mod fmt;
 mod handbook;
-//mod spectrum;
+mod spectrum;
 
 use crate::cli::{Cli, Command};
 use crate::failure::Failure;
@@ -16,8 +16,8 @@ use std::path::{Path, PathBuf};
 pub(crate) fn run(cli: Cli) -> Result<Status, Failure> {
     let global = &cli.global;
     match cli.command {
-        Command::Check(_) => todo!(),
-        Command::Spectrum(_) => todo!(),
+        Command::Check(arguments) => check::run(&arguments, global),
+        Command::Spectrum(arguments) => spectrum::run(&arguments, global),
         Command::Fmt(_) => todo!(),
         Command::Explain(arguments) => explain::run(&arguments),
         Command::Handbook(arguments) => handbook::run(&arguments),

@@ -1,15 +1,17 @@
 //! `overcoat spectrum`: reflectance, transmittance and absorptance of one recipe as CSV.
 
-use super::open;
+use super::{Opened, open};
 use crate::Status;
 use crate::cli::{From, Global, Polarised, Spectrum};
 use crate::failure::Failure;
 use crate::settings::did_you_mean;
-use crate::views::Shown;
+use crate::views::{self, Shown};
 use crate::{output, quantity, walk};
 use overcoat_engine::{IndexError, OpticsError, Polarisation, Response, Stack};
+use overcoat_lang::messages::render;
 use overcoat_lang::model::{Element, Material, Recipe};
-use overcoat_lang::nearest;
+use overcoat_lang::project::Project;
+use overcoat_lang::{engine_stack, load, nearest};
 use std::sync::Arc;
 
 /// Where a recipe without requirements is shown: the visible range.
@@ -17,6 +19,53 @@ const VISIBLE: (f64, f64) = (380.0, 780.0);
 
 /// More rows than this are a slip of the pen.
 const MOST_ROWS: f64 = 1_000_000.0;
+
+pub(super) fn run(arguments: &Spectrum, global: &Global) -> Result<Status, Failure> {
+    let over = arguments.over.as_deref().map(|text| quantity::band(text, "--over")).transpose()?;
+    let step = quantity::length(&arguments.step, "--step")?;
+    let angle = quantity::incidence(&arguments.at, "--at")?;
+    let polarisation = match arguments.polarised {
+        Some(Polarised::S) => Polarisation::S,
+        Some(Polarised::P) => Polarisation::P,
+        None => Polarisation::Mean,
+    };
+    let file = arguments.file.display().to_string();
+    if arguments.file.is_dir() {
+        return Err(Failure::message(format!("`{file}` is a folder; name one file")));
+    }
+    let opened = open(std::slice::from_ref(&arguments.file), global.root.as_deref())?;
+    let paths: Vec<String> = walk::asked(&opened.root, &opened.settings)?.into_iter().collect();
+    let project = load(&opened.files, &paths);
+    let first = project.modules.iter().find(|module| {
+        module.file.is_some_and(|file| paths.first() == Some(&project.sources.get(file).path))
+    });
+    let recipes = first.map_or(&[][..], |module| &module.recipes);
+    // A recipe that can be evaluated is; another is told why not, as a check would.
+    let recipe = chosen(recipes, arguments.recipe.as_deref(), &file);
+    let sound = recipe.as_ref().is_ok_and(|recipe| recipe.sound());
+    if !sound && !project.findings.is_empty() {
+        return not_understood(&project, &opened, global);
+    }
+    let recipe = recipe?;
+    let stack = recipe.stack.as_ref().ok_or("no stack");
+    let stack = stack.and_then(|stack| engine_stack(stack, arguments.from == From::Exit));
+    let stack = stack.map_err(|what| Failure::message(format!("`{}` has no spectrum: {what}", recipe.name)))?;
+    let shown = Shown::new(&project.sources, &opened.root.folder, &opened.here);
+    let mut rows = Vec::new();
+    for wavelength in grid(band(&stack, recipe, over)?, step)? {
+        let response = stack.response(wavelength, angle, polarisation);
+        rows.push((wavelength, response.map_err(|error| refusal(&error, recipe, &shown))?));
+    }
+    output::print(&csv(&rows))?;
+    Ok(Status::Met)
+}
+
+/// Says on the standard error what keeps a file from being understood.
+fn not_understood(project: &Project, opened: &Opened, global: &Global) -> Result<Status, Failure> {
+    let diagnostics = project.findings.iter().map(|finding| render(finding, &project.sources)).collect();
+    views::complain_of(&project.sources, diagnostics, &opened.root.folder, &opened.here, global.color);
+    Ok(Status::NotUnderstood)
+}
 
 /// The recipe asked for, or the only one.
 fn chosen<'r>(recipes: &'r [Arc<Recipe>], name: Option<&str>, file: &str) -> Result<&'r Arc<Recipe>, Failure> {

@@ -23,10 +23,7 @@ pub(crate) fn render(view: &View<'_>, coloured: bool) -> String {
         text.push('\n');
     }
     let totals = view.totals();
-    let failed = totals.met < totals.recipes
-        || view.report.not_understood
-        || view.report.diagnostics.iter().any(|finding| view.fails(finding));
-    let _ = writeln!(text, "{}", paint.verdict(!failed, &conclusion(&totals)));
+    let _ = writeln!(text, "{}", paint.verdict(!view.failed(), &conclusion(&totals)));
     text
 }
 

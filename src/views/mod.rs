@@ -8,8 +8,9 @@ mod picture;
 pub(crate) mod sarif;
 mod table;
 
-use crate::disk;
+use crate::cli::Colour;
 use crate::settings::Deny;
+use crate::{disk, output};
 use overcoat_lang::diagnostic::{Diagnostic, Severity};
 use overcoat_lang::handbook;
 use overcoat_lang::report::Report;
@@ -87,6 +88,13 @@ impl View<'_> {
         diagnostic.waived.is_none() && self.gravity(diagnostic) == Severity::Error
     }
 
+    /// Whether anything is missed or not understood.
+    pub(crate) fn failed(&self) -> bool {
+        self.report.not_understood
+            || self.report.recipes.iter().any(|recipe| !recipe.met)
+            || self.report.diagnostics.iter().any(|finding| self.fails(finding))
+    }
+
     /// How many recipes, findings and waivers there are.
     pub(crate) fn totals(&self) -> Totals {
         let standing = |severity| {
@@ -116,6 +124,20 @@ pub(crate) struct Totals {
     /// Of the warnings and hints, those that make the check fail.
     pub(crate) denied: usize,
     pub(crate) waived: usize,
+}
+
+/// Draws findings outside a check on the standard error.
+pub(crate) fn complain_of(
+    sources: &Sources,
+    mut diagnostics: Vec<Diagnostic>,
+    root: &Path,
+    here: &Path,
+    colour: Colour,
+) {
+    diagnostics.sort_by(|a, b| a.sort_key().cmp(&b.sort_key()));
+    let report = Report { sources: Sources::default(), recipes: Vec::new(), diagnostics, not_understood: true };
+    let view = View { report: &report, shown: Shown::new(sources, root, here), deny: &Deny::default() };
+    output::tell(&human::findings(&view, output::coloured(colour, &std::io::stderr())));
 }
 
 /// The title of a recipe for people: its name, and its title where it has one.

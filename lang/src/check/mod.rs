@@ -11,7 +11,7 @@ use crate::code::Family;
 use crate::diagnostic::{Diagnostic, Severity};
 use crate::finding::Finding;
 use crate::messages::render;
-use crate::model::{Module, Recipe};
+use crate::model::{Module, Recipe, Stack};
 use crate::project::Project;
 use crate::report::{RecipeReport, Report};
 use crate::source::FileId;
@@ -78,6 +78,21 @@ pub fn check(project: Project, options: &Options) -> Report {
     let not_understood =
         diagnostics.iter().any(|diagnostic| diagnostic.code.family() == Family::Form && diagnostic.fails());
     Report { sources: project.sources, recipes: reports, diagnostics, not_understood }
+}
+
+/// A stack as the engine evaluates it, with the light from the incident side or from the exit.
+///
+/// # Errors
+///
+/// What of the stack can't be evaluated, as a noun phrase.
+pub fn engine_stack(stack: &Stack, from_exit: bool) -> Result<overcoat_engine::Stack, &'static str> {
+    match optics::beyond(stack) {
+        Some(what) => Err(what),
+        None => {
+            let optics = optics::Optics::new(stack).ok_or("a material without optical constants")?;
+            Ok(optics.facing(from_exit).clone())
+        }
+    }
 }
 
 /// The files whose own findings are to be told: those asked for and those that they use.
