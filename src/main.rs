@@ -15,8 +15,8 @@ use clap::Parser;
 use failure::Failure;
 use std::process::ExitCode;
 
-/// What the command ends with.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+/// What the command ends with; the graver the greater.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub(crate) enum Status {
     /// Everything asked for is met.
     Met = 0,

@@ -65,7 +65,7 @@ fn working(files: usize) -> ProgressBar {
 
 /// The day on which waivers are judged.
 fn today(given: Option<jiff::civil::Date>) -> Result<Date, Failure> {
-    let day = given.unwrap_or_else(|| jiff::Zoned::now().date());
+    let day = given.unwrap_or_else(|| jiff::ZonedDateTime::now().date());
     let refused = || Failure::message(format!("--today needs a day after the year 0, not {day}"));
     let year = u16::try_from(day.year()).map_err(|_| refused())?;
     let (month, day) = (day.month().unsigned_abs(), day.day().unsigned_abs());

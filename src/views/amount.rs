@@ -49,7 +49,9 @@ impl Scale {
 
     /// A difference, in points of the same scale.
     pub(crate) fn difference(self, difference: f64) -> String {
-        format!("{}{}", significant(difference * self.factor, 2), self.unit)
+        // The difference of two percentages is not a percentage of anything.
+        let unit = if self.unit == " %" { " points" } else { self.unit };
+        format!("{}{unit}", significant(difference * self.factor, 2))
     }
 }
 

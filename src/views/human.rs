@@ -46,7 +46,8 @@ fn waived_line(view: &View<'_>, finding: &Diagnostic) -> String {
     };
     let until = until.map_or(String::new(), |until| format!(", until {until}"));
     let (code, message) = (finding.code.slug(), &finding.message);
-    format!("  {}:{}:{} {code}: {message}\n      because {reason}{until}\n", at.file, at.line, at.column)
+    let line = format!("  {}:{}:{} {code}: {message}\n      because {reason}{until}\n", at.file, at.line, at.column);
+    picture::harmless(&line)
 }
 
 /// The last line.

@@ -1,6 +1,7 @@
 //! One finding with the text that it is about.
 
 use super::{Shown, View};
+use anstream::adapter::strip_str;
 use ariadne::{Cache, CharSet, Color, Config, IndexType, Label, Report, ReportKind};
 use overcoat_lang::diagnostic::{Diagnostic, Severity};
 use overcoat_lang::source::{FileId, Place};
@@ -27,7 +28,7 @@ impl Cache<FileId> for &mut Texts<'_> {
     type Storage = String;
 
     fn fetch(&mut self, id: &FileId) -> Result<&ariadne::Source<String>, impl fmt::Debug> {
-        let text = || ariadne::Source::from(self.shown.sources.get(*id).text.to_string());
+        let text = || ariadne::Source::from(harmless(&self.shown.sources.get(*id).text));
         Ok::<_, String>(self.ready.entry(*id).or_insert_with(text))
     }
 
@@ -54,7 +55,7 @@ pub(super) fn draw(view: &View<'_>, texts: &mut Texts<'_>, finding: &Diagnostic,
         Severity::Hint => Color::Cyan,
     };
     let kind = ReportKind::Custom(severity.word(), colour);
-    let mut notes = finding.notes.clone();
+    let mut notes: Vec<String> = finding.notes.iter().map(|note| harmless(note)).collect();
     if view.deny.denies(finding) {
         notes.push(format!("denied: a {} that makes this check fail", finding.severity.word()));
     }
@@ -63,26 +64,27 @@ pub(super) fn draw(view: &View<'_>, texts: &mut Texts<'_>, finding: &Diagnostic,
         return plain(view, finding, severity, &notes, fix.as_deref());
     }
     let here = (finding.place.file, clamped(&view.shown, finding.place));
-    let mut label = Label::new(here.clone()).with_color(colour).with_order(-1);
-    if view.shown.sources.get(finding.place.file).slice(finding.place.span).contains('\n') {
-        // A label over several lines is drawn only with a message.
-        label = label.with_message("here");
-    }
+    // Without a message and without colour a label would not be drawn at all.
+    let label = Label::new(here.clone()).with_color(colour).with_order(-1).with_message(finding.code.headline());
     let related = finding.related.iter().map(|related| {
         let place = (related.place.file, clamped(&view.shown, related.place));
-        Label::new(place).with_color(Color::Blue).with_message(&related.message)
+        Label::new(place).with_color(Color::Blue).with_message(harmless(&related.message))
     });
     let mut report = Report::build(kind, here)
         .with_config(config(coloured))
         .with_code(finding.code.slug())
-        .with_message(&finding.message)
+        .with_message(harmless(&finding.message))
         .with_label(label)
         .with_labels(related);
     report.with_notes(notes);
     report.with_helps(fix);
     let mut drawn = Vec::new();
     match report.finish().write(texts, &mut drawn) {
-        Ok(()) => trimmed(&String::from_utf8_lossy(&drawn)),
+        Ok(()) => {
+            let drawn = String::from_utf8_lossy(&drawn);
+            // The word for a severity of our own is coloured whatever the configuration says.
+            trimmed(&if coloured { drawn.into_owned() } else { strip_str(&drawn).to_string() })
+        }
         Err(_) => plain(view, finding, severity, &finding.notes, None),
     }
 }
@@ -127,14 +129,20 @@ fn showable(shown: &Shown<'_>, finding: &Diagnostic) -> bool {
 fn plain(view: &View<'_>, finding: &Diagnostic, severity: Severity, notes: &[String], help: Option<&str>) -> String {
     let at = view.shown.located(finding.place);
     let (word, code) = (severity.word(), finding.code.slug());
-    let mut text = format!("[{code}] {word}: {}\n   at {}:{}:{}\n", finding.message, at.file, at.line, at.column);
+    let message = harmless(&finding.message);
+    let mut text = format!("[{code}] {word}: {message}\n   at {}:{}:{}\n", at.file, at.line, at.column);
     for related in &finding.related {
         let at = view.shown.located(related.place);
-        text.push_str(&format!("   {}:{}:{}: {}\n", at.file, at.line, at.column, related.message));
+        text.push_str(&format!("   {}:{}:{}: {}\n", at.file, at.line, at.column, harmless(&related.message)));
     }
     text.extend(notes.iter().map(|note| format!("   note: {note}\n")));
     text.extend(help.map(|help| format!("   help: {help}\n")));
     text
+}
+
+/// A text without the control characters that a terminal would obey; each is one byte, and so is what replaces it.
+pub(super) fn harmless(text: &str) -> String {
+    text.chars().map(|c| if c.is_ascii_control() && c != '\n' && c != '\t' { ' ' } else { c }).collect()
 }
 
 /// Lines without blanks at their ends.

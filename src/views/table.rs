@@ -83,7 +83,7 @@ fn place(report: &RequirementReport) -> String {
     let mut text = String::new();
     let edge = matches!(report.requirement.bound, Bound::Crosses { .. });
     if let (Some(wavelength), false) = (report.at.wavelength, edge) {
-        let _ = write!(text, " at {} nm", amount::significant(wavelength, 6));
+        let _ = write!(text, " at {} nm", amount::trimmed(amount::significant(wavelength, 6)));
     }
     let angle = amount::degrees(report.at.angle);
     if angle != 0.0 {
