@@ -76,7 +76,11 @@ fn missing(error: &io::Error) -> bool {
 }
 
 fn failed(error: &io::Error) -> ReadError {
-    if missing(error) { ReadError::Missing } else { ReadError::Failed(format!("can't be read: {}", plain(error))) }
+    if missing(error) {
+        ReadError::Missing
+    } else {
+        ReadError::Failed(format!("can't be read: {}", plain(error)))
+    }
 }
 
 /// How `path` is written from the folder `from`, both absolute: with `/`, and `..` where it must be.

@@ -30,7 +30,8 @@ pub(crate) fn print(text: &str) -> Result<(), Failure> {
 
 /// Says on the standard error what went wrong.
 pub(crate) fn complain(colour: Colour, message: &str) {
-    let style = if coloured(colour, &io::stderr()) { AnsiColor::Red.on_default().bold() } else { Style::new() };
+    let style =
+        if coloured(colour, &io::stderr()) { AnsiColor::Red.on_default().bold() } else { Style::new() };
     tell(&format!("{style}overcoat:{style:#} {message}\n"));
 }
 

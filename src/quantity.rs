@@ -12,7 +12,8 @@ struct Quantity {
 
 /// A vacuum wavelength in nm, from a length, a photon energy, a wavenumber or a frequency.
 pub(crate) fn wavelength(text: &str, option: &str) -> Result<f64, Failure> {
-    let quantity = read(text, None).ok_or_else(|| refusal(text, option, "a wavelength, for example 550nm"))?;
+    let quantity =
+        read(text, None).ok_or_else(|| refusal(text, option, "a wavelength, for example 550nm"))?;
     units::wavelength_nm(quantity.number, quantity.dimension)
         .ok_or_else(|| refusal(text, option, "a wavelength greater than 0, for example 550nm"))
 }
@@ -69,7 +70,8 @@ fn read(text: &str, spare_unit: Option<&str>) -> Option<Quantity> {
 fn split(text: &str) -> Option<(&str, &str)> {
     let text = text.trim();
     // `inf` and `nan` would be numbers too, but are no quantities.
-    let possible = text.find(|c: char| !matches!(c, '0'..='9' | '.' | '-' | '+' | 'e' | 'E')).unwrap_or(text.len());
+    let possible =
+        text.find(|c: char| !matches!(c, '0'..='9' | '.' | '-' | '+' | 'e' | 'E')).unwrap_or(text.len());
     let end = (1..=possible).rev().find(|end| text[..*end].parse::<f64>().is_ok())?;
     Some((&text[..end], text[end..].trim()))
 }
@@ -87,8 +89,17 @@ mod tests {
         assert_eq!(band("10000..20000 1/cm"), Some((500.0, 1000.0)));
         let (low, high) = band("1 .. 2 eV").unwrap();
         // hc/e is 1239.841 984 eV nm (exact in the SI of 2019).
-        assert!((low - 1239.841_984_332 / 2.0).abs() < 1e-6 && (high - 1239.841_984_332).abs() < 1e-6);
-        for wrong in ["700..400nm", "400..700", "400nm", "..700nm", "nan..infnm", "0..700nm", "400deg..700nm", "400..400nm"] {
+        assert!((low - 1_239.841_984_332 / 2.0).abs() < 1e-6 && (high - 1_239.841_984_332).abs() < 1e-6);
+        for wrong in [
+            "700..400nm",
+            "400..700",
+            "400nm",
+            "..700nm",
+            "nan..infnm",
+            "0..700nm",
+            "400deg..700nm",
+            "400..400nm",
+        ] {
             assert_eq!(band(wrong), None, "{wrong}");
         }
     }

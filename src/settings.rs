@@ -59,8 +59,9 @@ impl Settings {
         })?;
         let mut deny = Deny::default();
         for word in &written.deny {
-            deny.add(word.get_ref())
-                .map_err(|why| Failure::message(format!("{FILE}{}: {why}", place(text, word.span().start))))?;
+            deny.add(word.get_ref()).map_err(|why| {
+                Failure::message(format!("{FILE}{}: {why}", place(text, word.span().start)))
+            })?;
         }
         Ok(Settings { exclude: written.exclude, deny, handbook_only_hint: written.handbook_only_hint })
     }
@@ -96,7 +97,9 @@ impl Deny {
             None => {
                 let known = Code::ALL.iter().map(|code| code.slug()).chain(["warnings"]);
                 let near = did_you_mean(&nearest(word, known));
-                Err(format!("`{word}` is no code{near}; `overcoat explain` lists them, `warnings` means all warnings"))
+                Err(format!(
+                    "`{word}` is no code{near}; `overcoat explain` lists them, `warnings` means all warnings"
+                ))
             }
         }
     }
@@ -127,7 +130,9 @@ mod tests {
 
     #[test]
     fn a_wrong_setting_is_told_with_its_place() {
-        assert!(refusal("exclude = [\"a\"]\nruns = 5\n").starts_with("overcoat.toml:2:1: unknown field `runs`"));
+        assert!(
+            refusal("exclude = [\"a\"]\nruns = 5\n").starts_with("overcoat.toml:2:1: unknown field `runs`")
+        );
         assert!(refusal("deny = [\"layer_to_thin\"]").contains(":1:9: `layer_to_thin` is no code"));
         assert!(refusal("deny = [\"layer_to_thin\"]").contains("`layer_too_thin`"));
         assert!(refusal("exclude = ").starts_with("overcoat.toml:1:"));

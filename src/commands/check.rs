@@ -42,7 +42,8 @@ fn checked(opened: &Opened, today: Date) -> Result<Report, Failure> {
     let project = load(&opened.files, &found.all);
     let asked: BTreeSet<&str> = found.asked.iter().map(String::as_str).collect();
     let files = project.sources.iter().filter(|(_, source)| asked.contains(source.path.as_str()));
-    let options = Options { today, asked: Some(files.map(|(file, _)| file).collect()), whole_project: found.whole };
+    let options =
+        Options { today, asked: Some(files.map(|(file, _)| file).collect()), whole_project: found.whole };
     let mut report = check(project, &options);
     working.finish_and_clear();
     if !opened.settings.handbook_only_hint {
@@ -73,7 +74,8 @@ fn today(given: Option<jiff::civil::Date>) -> Result<Date, Failure> {
 }
 
 fn rendered(view: &View<'_>, arguments: &Check, colour: Colour) -> Result<String, Failure> {
-    let fault = |error: String| Failure::Fault(format!("the report can't be written: {error}; please report this"));
+    let fault =
+        |error: String| Failure::Fault(format!("the report can't be written: {error}; please report this"));
     match arguments.format {
         Format::Human => {
             let coloured = match &arguments.output {

@@ -24,7 +24,9 @@ pub(super) fn run(arguments: &Handbook) -> Result<Status, Failure> {
     };
     if handbook::text(name).is_none() {
         let near = did_you_mean(&nearest(name, handbook::names()));
-        return Err(Failure::message(format!("the handbook has no `{name}`{near}; `overcoat handbook` lists all entries")));
+        return Err(Failure::message(format!(
+            "the handbook has no `{name}`{near}; `overcoat handbook` lists all entries"
+        )));
     }
     let wavelengths: Vec<f64> =
         arguments.at.iter().map(|text| quantity::wavelength(text, "--at")).collect::<Result<_, _>>()?;
@@ -85,17 +87,21 @@ fn material_page(material: &Material, wavelengths: &[f64]) -> Result<String, Fai
         text.push_str("\nwavelength_nm,n,k\n");
     }
     for wavelength in wavelengths {
-        let constants = index
-            .at(*wavelength)
-            .map_err(|error| Failure::message(format!("{} has no constants there: {error}", material.name)))?;
-        text.push_str(&format!("{wavelength},{},{}\n", constants.re, constants.im));
+        let constants = index.at(*wavelength).map_err(|error| {
+            Failure::message(format!("{} has no constants there: {error}", material.name))
+        })?;
+        let numbers = [*wavelength, constants.re, constants.im].map(amount::shortest);
+        text.push_str(&format!("{}\n", numbers.join(",")));
     }
     Ok(text)
 }
 
 fn spectrum_page(spectrum: &Spectrum, wavelengths: &[f64]) -> Result<String, Failure> {
     if !wavelengths.is_empty() {
-        return Err(Failure::message(format!("--at prints optical constants, and `{}` is a spectrum", spectrum.name)));
+        return Err(Failure::message(format!(
+            "--at prints optical constants, and `{}` is a spectrum",
+            spectrum.name
+        )));
     }
     let mut text = head(&spectrum.name, "spectrum", &spectrum.description, spectrum.source.as_deref());
     text.push_str(&format!("range    {}\n", spectrum_range(spectrum)));

@@ -3,7 +3,6 @@
 mod check;
 mod completions;
 mod explain;
-//mod fmt;
 mod handbook;
 mod spectrum;
 
@@ -18,7 +17,6 @@ pub(crate) fn run(cli: Cli) -> Result<Status, Failure> {
     match cli.command {
         Command::Check(arguments) => check::run(&arguments, global),
         Command::Spectrum(arguments) => spectrum::run(&arguments, global),
-        Command::Fmt(_) => todo!(),
         Command::Explain(arguments) => explain::run(&arguments),
         Command::Handbook(arguments) => handbook::run(&arguments),
         Command::Completions(arguments) => completions::run(&arguments),

@@ -86,6 +86,18 @@ pub(crate) fn trimmed(text: String) -> String {
     }
 }
 
+/// The shortest form that reads back as the same number; with an exponent where there would be many zeros.
+pub(crate) fn shortest(number: f64) -> String {
+    let size = number.abs();
+    if size == 0.0 {
+        "0".to_owned()
+    } else if (1e-5..1e16).contains(&size) {
+        format!("{number}")
+    } else {
+        format!("{number:e}")
+    }
+}
+
 /// A duration in the units of a shift: `15 min 44 s`, `2 h 05 min`.
 pub(crate) fn duration(seconds: f64) -> String {
     let whole = seconds.round();
@@ -131,5 +143,15 @@ mod tests {
         assert_eq!(duration(944.0), "15 min 44 s");
         assert_eq!(duration(7500.0), "2 h 05 min");
         assert_eq!(duration(12.5), "12.5 s");
+    }
+
+    #[test]
+    fn numbers_read_back_as_they_were() {
+        for number in [0.1 + 0.2, 1.0 / 3.0, 1e-300, 5e-324, 1234.5, 1e-5, 0.0, 1.0] {
+            let text = shortest(number);
+            assert_eq!(text.parse::<f64>().unwrap(), number, "{text}");
+        }
+        assert_eq!(shortest(1.5e-30), "1.5e-30");
+        assert_eq!(shortest(1000.0), "1000");
     }
 }

@@ -14,7 +14,8 @@ pub(crate) fn render(view: &View<'_>, coloured: bool) -> String {
         text.push_str(&table::draw(view, recipe, paint));
         text.push('\n');
     }
-    let waived: Vec<&Diagnostic> = view.report.diagnostics.iter().filter(|finding| finding.waived.is_some()).collect();
+    let waived: Vec<&Diagnostic> =
+        view.report.diagnostics.iter().filter(|finding| finding.waived.is_some()).collect();
     if !waived.is_empty() {
         let _ = writeln!(text, "{}", paint.strong("Waived"));
         for finding in waived {
@@ -46,7 +47,8 @@ fn waived_line(view: &View<'_>, finding: &Diagnostic) -> String {
     };
     let until = until.map_or(String::new(), |until| format!(", until {until}"));
     let (code, message) = (finding.code.slug(), &finding.message);
-    let line = format!("  {}:{}:{} {code}: {message}\n      because {reason}{until}\n", at.file, at.line, at.column);
+    let line =
+        format!("  {}:{}:{} {code}: {message}\n      because {reason}{until}\n", at.file, at.line, at.column);
     picture::harmless(&line)
 }
 

@@ -217,7 +217,8 @@ fn at_entry(at: At) -> AtEntry {
 
 fn diagnostic_entry<'r>(view: &'r View<'_>, finding: &'r Diagnostic) -> DiagnosticEntry<'r> {
     let place = |place| place_entry(view.shown.located(place));
-    let related = |related: &'r Related| RelatedEntry { place: place(related.place), message: &related.message };
+    let related =
+        |related: &'r Related| RelatedEntry { place: place(related.place), message: &related.message };
     let edit = |edit: &'r Edit| EditEntry { place: place(edit.place), text: &edit.text };
     DiagnosticEntry {
         place: place(finding.place),
@@ -233,15 +234,21 @@ fn diagnostic_entry<'r>(view: &'r View<'_>, finding: &'r Diagnostic) -> Diagnost
         denied: view.deny.denies(finding),
         related: finding.related.iter().map(related).collect(),
         notes: &finding.notes,
-        fix: finding.fix.as_ref().map(|fix| FixEntry {
-            title: &fix.title,
-            edits: fix.edits.iter().map(edit).collect(),
-        }),
+        fix: finding
+            .fix
+            .as_ref()
+            .map(|fix| FixEntry { title: &fix.title, edits: fix.edits.iter().map(edit).collect() }),
     }
 }
 
 fn place_entry(at: Located<'_>) -> PlaceEntry<'_> {
-    PlaceEntry { file: at.file, line: at.line, column: at.column, end_line: at.end_line, end_column: at.end_column }
+    PlaceEntry {
+        file: at.file,
+        line: at.line,
+        column: at.column,
+        end_line: at.end_line,
+        end_column: at.end_column,
+    }
 }
 
 /// A quantity in the language's own words.

@@ -64,7 +64,9 @@ fn requirement_case(
         status = TestCaseStatus::non_success(NonSuccessKind::Failure);
         let findings = view.report.diagnostics.iter().enumerate();
         let (number, finding) = findings
-            .filter(|(number, finding)| view.fails(finding) && !told.contains(number) && about(finding, &places))
+            .filter(|(number, finding)| {
+                view.fails(finding) && !told.contains(number) && about(finding, &places)
+            })
             .map(|(number, finding)| (Some(number), Some(finding)))
             .next()
             .unwrap_or((None, None));
@@ -103,7 +105,10 @@ fn finding_case(view: &View<'_>, finding: &Diagnostic) -> TestCase {
     if let Some(waived) = &finding.waived {
         status.set_message(format!("waived because {}", waived.reason)).set_type(finding.code.slug());
     } else if view.fails(finding) {
-        status.set_message(&finding.message).set_type(finding.code.slug()).set_description(described(view, finding));
+        status
+            .set_message(&finding.message)
+            .set_type(finding.code.slug())
+            .set_description(described(view, finding));
     }
     let mut case = TestCase::new(format!("{}:{} {}", at.line, at.column, finding.code.slug()), status);
     case.set_classname(finding.code.family().word());

@@ -28,7 +28,11 @@ impl<'r> Shown<'r> {
     /// Names the files as seen from the folder where the command was run.
     pub(crate) fn new(sources: &'r Sources, root: &Path, here: &Path) -> Shown<'r> {
         let name = |source: &Source| {
-            if from_handbook(source) { source.path.clone() } else { disk::relative(here, &root.join(&source.path)) }
+            if from_handbook(source) {
+                source.path.clone()
+            } else {
+                disk::relative(here, &root.join(&source.path))
+            }
         };
         Shown { sources, names: sources.iter().map(|(_, source)| name(source)).collect() }
     }
@@ -135,7 +139,8 @@ pub(crate) fn complain_of(
     colour: Colour,
 ) {
     diagnostics.sort_by(|a, b| a.sort_key().cmp(&b.sort_key()));
-    let report = Report { sources: Sources::default(), recipes: Vec::new(), diagnostics, not_understood: true };
+    let report =
+        Report { sources: Sources::default(), recipes: Vec::new(), diagnostics, not_understood: true };
     let view = View { report: &report, shown: Shown::new(sources, root, here), deny: &Deny::default() };
     output::tell(&human::findings(&view, output::coloured(colour, &std::io::stderr())));
 }

@@ -65,17 +65,21 @@ pub(super) fn draw(view: &View<'_>, texts: &mut Texts<'_>, finding: &Diagnostic,
     }
     let here = (finding.place.file, clamped(&view.shown, finding.place));
     // Without a message and without colour a label would not be drawn at all.
-    let label = Label::new(here.clone()).with_color(colour).with_order(-1).with_message(finding.code.headline());
-    let related = finding.related.iter().map(|related| {
+    let own = Label::new(here.clone()).with_color(colour).with_message(finding.code.headline());
+    let mut labels = vec![((false, finding.place), own)];
+    labels.extend(finding.related.iter().map(|related| {
         let place = (related.place.file, clamped(&view.shown, related.place));
-        Label::new(place).with_color(Color::Blue).with_message(harmless(&related.message))
-    });
+        let label = Label::new(place).with_color(Color::Blue).with_message(harmless(&related.message));
+        ((related.place.file != finding.place.file, related.place), label)
+    }));
+    // The finding's own file first, each file from top to bottom: otherwise one file is drawn in several pieces.
+    labels.sort_by_key(|((other, place), _)| (*other, place.file, place.span.end));
+    let labels = labels.into_iter().enumerate().map(|(number, (_, label))| label.with_order(number as i32));
     let mut report = Report::build(kind, here)
         .with_config(config(coloured))
         .with_code(finding.code.slug())
         .with_message(harmless(&finding.message))
-        .with_label(label)
-        .with_labels(related);
+        .with_labels(labels);
     report.with_notes(notes);
     report.with_helps(fix);
     let mut drawn = Vec::new();
@@ -110,7 +114,9 @@ fn clamped(shown: &Shown<'_>, place: Place) -> Range<usize> {
         offset
     };
     let (start, end) = (inside(place.span.start), inside(place.span.end));
-    start..end.max(start)
+    let end = end.max(start);
+    // A label must not end on a line's end.
+    start..start + text[start..end].trim_end_matches(['\n', '\r']).len()
 }
 
 /// Whether all lines to be shown are there and short enough.
@@ -126,7 +132,13 @@ fn showable(shown: &Shown<'_>, finding: &Diagnostic) -> bool {
 }
 
 /// A finding without its text: where the file could not be read, or its lines are too long to show.
-fn plain(view: &View<'_>, finding: &Diagnostic, severity: Severity, notes: &[String], help: Option<&str>) -> String {
+fn plain(
+    view: &View<'_>,
+    finding: &Diagnostic,
+    severity: Severity,
+    notes: &[String],
+    help: Option<&str>,
+) -> String {
     let at = view.shown.located(finding.place);
     let (word, code) = (severity.word(), finding.code.slug());
     let message = harmless(&finding.message);
@@ -140,12 +152,34 @@ fn plain(view: &View<'_>, finding: &Diagnostic, severity: Severity, notes: &[Str
     text
 }
 
-/// A text without the control characters that a terminal would obey; each is one byte, and so is what replaces it.
+/// A text without the characters that a terminal would obey or that would break a line; each is replaced by one of
+/// as many bytes, so that places stay right.
 pub(super) fn harmless(text: &str) -> String {
-    text.chars().map(|c| if c.is_ascii_control() && c != '\n' && c != '\t' { ' ' } else { c }).collect()
+    let shown = |character: char| match character {
+        '\n' | '\t' => character,
+        _ if character.is_ascii_control() => ' ',
+        '\u{80}'..='\u{9f}' => '·',
+        // Ends of lines and of paragraphs, and what turns the direction of writing.
+        '\u{2028}' | '\u{2029}' | '\u{202a}'..='\u{202e}' | '\u{2066}'..='\u{2069}' => '␣',
+        _ => character,
+    };
+    text.chars().map(shown).collect()
 }
 
 /// Lines without blanks at their ends.
 fn trimmed(drawn: &str) -> String {
     drawn.lines().map(|line| format!("{}\n", line.trim_end())).collect()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn what_a_terminal_obeys_is_replaced_byte_for_byte() {
+        let text = "a\u{1b}[31m\r\n\u{9b}\u{2028}\u{202e}Ta₂";
+        let shown = harmless(text);
+        assert_eq!(shown.len(), text.len());
+        assert_eq!(shown, "a [31m \n·␣␣Ta₂");
+    }
 }

@@ -8,9 +8,9 @@ use overcoat_lang::diagnostic::{Diagnostic, Fix, Severity, Waived};
 use overcoat_lang::source::{FileId, Place};
 use serde_json::json;
 use serde_sarif::sarif::{
-    ArtifactChange, ArtifactContent, ArtifactLocation, Location, Message, MultiformatMessageString, PhysicalLocation,
-    Region, Replacement, ReportingConfiguration, ReportingDescriptor, Result as Finding, ResultLevel, Run, Sarif,
-    Suppression, Tool, ToolComponent,
+    ArtifactChange, ArtifactContent, ArtifactLocation, Location, Message, MultiformatMessageString,
+    PhysicalLocation, Region, Replacement, ReportingConfiguration, ReportingDescriptor, Result as Finding,
+    ResultLevel, Run, Sarif, Suppression, Tool, ToolComponent,
 };
 use std::collections::BTreeMap;
 
@@ -19,7 +19,8 @@ const SCHEMA: &str = "https://json.schemastore.org/sarif-2.1.0.json";
 /// The report as a SARIF log.
 pub(crate) fn render(view: &View<'_>) -> Result<String, serde_json::Error> {
     let mut seen = BTreeMap::new();
-    let results = view.report.diagnostics.iter().map(|finding| result(view, finding, &mut seen)).collect::<Vec<_>>();
+    let results =
+        view.report.diagnostics.iter().map(|finding| result(view, finding, &mut seen)).collect::<Vec<_>>();
     let driver = ToolComponent::builder()
         .name("overcoat")
         .version(env!("CARGO_PKG_VERSION"))

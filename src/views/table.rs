@@ -44,10 +44,14 @@ pub(super) fn draw(view: &View<'_>, report: &RecipeReport, paint: Paint) -> Stri
     let recipe = &report.recipe;
     let file = view.shown.located(recipe.place).file;
     let verdict = if report.met { "met" } else { "missed" };
-    let revision = recipe.revision.as_ref().map_or(String::new(), |revision| format!(", revision {revision}"));
+    let revision =
+        recipe.revision.as_ref().map_or(String::new(), |revision| format!(", revision {revision}"));
     let name = paint.strong(&called(recipe));
-    let mut text =
-        format!("{name}{revision} {}: {}\n", paint.faint(&format!("({file})")), paint.verdict(report.met, verdict));
+    let mut text = format!(
+        "{name}{revision} {}: {}\n",
+        paint.faint(&format!("({file})")),
+        paint.verdict(report.met, verdict)
+    );
     for requirement in &report.requirements {
         text.push_str(&row(requirement, paint));
     }
@@ -57,7 +61,8 @@ pub(super) fn draw(view: &View<'_>, report: &RecipeReport, paint: Paint) -> Stri
     if let Some(process) = &report.process {
         let layers = if process.layers == 1 { "layer" } else { "layers" };
         let thickness = amount::trimmed(amount::significant(process.thickness, 6));
-        let duration = process.duration.map_or(String::new(), |seconds| format!(", {}", amount::duration(seconds)));
+        let duration =
+            process.duration.map_or(String::new(), |seconds| format!(", {}", amount::duration(seconds)));
         let _ = writeln!(text, "  process  {} {layers}, {thickness} nm{duration}", process.layers);
     }
     text
