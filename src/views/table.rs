@@ -1,6 +1,7 @@
 //! One recipe's numbers in lines for people.
 
 use super::amount::{self, Scale};
+use super::picture::harmless;
 use super::{View, called};
 use anstyle::{AnsiColor, Style};
 use overcoat_lang::model::{Beam, Bound};
@@ -44,9 +45,11 @@ pub(super) fn draw(view: &View<'_>, report: &RecipeReport, paint: Paint) -> Stri
     let recipe = &report.recipe;
     let file = view.shown.located(recipe.place).file;
     let verdict = if report.met { "met" } else { "missed" };
-    let revision =
-        recipe.revision.as_ref().map_or(String::new(), |revision| format!(", revision {revision}"));
-    let name = paint.strong(&called(recipe));
+    let revision = recipe
+        .revision
+        .as_ref()
+        .map_or(String::new(), |revision| format!(", revision {}", harmless(revision)));
+    let name = paint.strong(&harmless(&called(recipe)));
     let mut text = format!(
         "{name}{revision} {}: {}\n",
         paint.faint(&format!("({file})")),
@@ -71,7 +74,7 @@ pub(super) fn draw(view: &View<'_>, report: &RecipeReport, paint: Paint) -> Stri
 fn row(report: &RequirementReport, paint: Paint) -> String {
     let requirement = &report.requirement;
     let verdict = paint.verdict(report.met, if report.met { "met   " } else { "missed" });
-    let mut text = format!("  {verdict}   {}\n", requirement.text);
+    let mut text = format!("  {verdict}   {}\n", harmless(&requirement.text));
     let scale = Scale::of(&requirement.quantity, &requirement.bound);
     match report.value {
         Some(value) => {
