@@ -1,5 +1,8 @@
 //! Drives the built command on projects in folders of their own.
 
+// In tests a panic is the report, in helpers too.
+#![allow(clippy::unwrap_used)]
+
 mod bad_input;
 mod check;
 mod formats;
