@@ -37,10 +37,10 @@ impl Cache<FileId> for &mut Texts<'_> {
     }
 }
 
-/// How pictures are drawn. ariadne counts characters and colours everything unless told otherwise.
+/// How pictures are drawn. Counted in bytes, ariadne takes a related file's place for one in characters.
 fn config(coloured: bool) -> Config {
     Config::new()
-        .with_index_type(IndexType::Byte)
+        .with_index_type(IndexType::Char)
         .with_color(coloured)
         .with_char_set(CharSet::Unicode)
         .with_tab_width(4)
@@ -63,12 +63,12 @@ pub(super) fn draw(view: &View<'_>, texts: &mut Texts<'_>, finding: &Diagnostic,
     if !showable(&view.shown, finding) {
         return plain(view, finding, severity, &notes, fix.as_deref());
     }
-    let here = (finding.place.file, clamped(&view.shown, finding.place));
+    let here = (finding.place.file, characters(&view.shown, finding.place));
     // Without a message and without colour a label would not be drawn at all.
     let own = Label::new(here.clone()).with_color(colour).with_message(finding.code.headline());
     let mut labels = vec![((false, finding.place), own)];
     labels.extend(finding.related.iter().map(|related| {
-        let place = (related.place.file, clamped(&view.shown, related.place));
+        let place = (related.place.file, characters(&view.shown, related.place));
         let label = Label::new(place).with_color(Color::Blue).with_message(harmless(&related.message));
         ((related.place.file != finding.place.file, related.place), label)
     }));
@@ -117,6 +117,14 @@ fn clamped(shown: &Shown<'_>, place: Place) -> Range<usize> {
     let end = end.max(start);
     // A label must not end on a line's end.
     start..start + text[start..end].trim_end_matches(['\n', '\r']).len()
+}
+
+/// The characters of a place.
+fn characters(shown: &Shown<'_>, place: Place) -> Range<usize> {
+    let text = &shown.sources.get(place.file).text;
+    let range = clamped(shown, place);
+    let start = text[..range.start].chars().count();
+    start..start + text[range].chars().count()
 }
 
 /// Whether all lines to be shown are there and short enough.

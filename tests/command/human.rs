@@ -22,6 +22,21 @@ fn places_are_right_after_characters_of_several_bytes() {
 }
 
 #[test]
+fn places_in_other_files_are_right_after_characters_of_several_bytes() {
+    let project = Project::with_front(
+        &FRONT
+            .replace("revision \"A\"", "chamber heron")
+            .replace("99.6 nm", "99.65 nm")
+            .replace("material crown", "use heron from \"heron.coat\"\nmaterial crown"),
+    );
+    let chamber = "# ± ± ± ± ± ± ± ± ±\nuse magnesium_fluoride from handbook\nchamber heron {\n    resolution 0.5 nm\n    \
+                   deposit magnesium_fluoride { thickness varies ± 1 % each run }\n}\n";
+    project.write("heron.coat", chamber);
+    let run = project.run(&["check", "front.coat"]);
+    assert!(run.stdout.contains("[ heron.coat:4:5 ]"), "{}", run.stdout);
+}
+
+#[test]
 fn colour_comes_only_when_asked_for() {
     let project = Project::with_front(&FRONT.replace("<= 1.5 %", "<= 1.0 %"));
     assert!(!project.run(&["check"]).stdout.contains('\u{1b}'));
