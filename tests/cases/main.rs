@@ -3,6 +3,9 @@
 //! Each folder holds a recipe. `spectra.csv` and `requirements.csv` were computed from its text by the recursive Airy
 //! sum (G. B. Airy, Phil. Mag. 2, 20 (1833), applied film by film), written apart from the engine and its matrices.
 
+// In tests a panic is the report, in helpers too.
+#![allow(clippy::unwrap_used)]
+
 use std::path::{Path, PathBuf};
 use std::process::Command;
 
