@@ -41,7 +41,7 @@ fn a_millimetre_of_silver_reflects_as_a_bulk_does() {
 fn ten_thousand_films_have_a_response() {
     let (high, low) = (index(2.35, 0.0), index(1.38, 0.0));
     let film = |at: usize| {
-        let (index, n) = if at % 2 == 0 { (&high, 2.35) } else { (&low, 1.38) };
+        let (index, n) = if at.is_multiple_of(2) { (&high, 2.35) } else { (&low, 1.38) };
         Film { index: index.clone(), thickness_nm: 550.0 / 4.0 / n }
     };
     let stack = on_glass((0..10_000).map(film).collect());
