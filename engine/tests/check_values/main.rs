@@ -31,8 +31,10 @@ fn coated(incident: f64, films: &[(f64, f64, f64)], exit: (f64, f64)) -> Stack {
 /// Plates of (n, k, nm) in air, with gaps of air as thick as they are between them.
 fn plates(count: usize, (n, k): (f64, f64), thickness_nm: f64) -> Stack {
     let (glass, air) = (index(n, k), index(1.0, 0.0));
-    let body =
-        |at: usize| Body { index: if at.is_multiple_of(2) { glass.clone() } else { air.clone() }, thickness_nm };
+    let body = |at: usize| Body {
+        index: if at.is_multiple_of(2) { glass.clone() } else { air.clone() },
+        thickness_nm,
+    };
     let bodies: Vec<Body> = (0..2 * count - 1).map(body).collect();
     Stack { incident: air.clone(), coatings: vec![vec![]; bodies.len() + 1], bodies, exit: air.clone() }
 }
