@@ -26,7 +26,7 @@ mod response;
 mod stack;
 mod weight;
 
-pub use band::{Extreme, Extremes, Mean, extremes, extremes_over_angles, mean, value};
+pub use band::{Extreme, Extremes, Mean, extremes, extremes_over_angles, mean, means, value};
 pub use dispersion::{Index, MixingRule, Oscillator};
 pub use error::{IndexError, ModelError, OpticsError, WeightError};
 pub use num_complex::Complex64;

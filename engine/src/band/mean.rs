@@ -46,30 +46,37 @@ pub fn mean(
     bands_nm: &[(f64, f64)],
     weight: &SpectralWeight,
 ) -> Result<Mean, OpticsError> {
+    let means = means(stack, quantity, light, bands_nm, std::slice::from_ref(weight))?;
+    // One weight in, one mean out.
+    means.first().copied().ok_or(OpticsError::Band { band_nm: (f64::NAN, f64::NAN) })
+}
+
+/// The means of one quantity under several weights, in their order: the stack is evaluated once for all.
+///
+/// # Errors
+/// As [`mean`].
+pub fn means(
+    stack: &Stack,
+    quantity: &Quantity,
+    light: &Light,
+    bands_nm: &[(f64, f64)],
+    weights: &[SpectralWeight],
+) -> Result<Vec<Mean>, OpticsError> {
     let probe = Probe::new(stack, quantity, light)?;
     let bands = union(bands_nm)?;
-    for &band_nm in &bands {
+    for (&band_nm, weight) in bands.iter().flat_map(|band| weights.iter().map(move |weight| (band, weight))) {
         if let Some(range_nm) = weight.range_nm()
             && !(range_nm.0 <= band_nm.0 && band_nm.1 <= range_nm.1)
         {
             return Err(OpticsError::WeightOutside { band_nm, range_nm });
         }
     }
-    let sum = Sum::over(&probe, &bands, weight)?;
-    if sum.weight <= 0.0 {
-        let band_nm = (bands[0].0, bands[bands.len() - 1].1);
-        return Err(OpticsError::WeightZero { band_nm });
+    let width: f64 = bands.iter().map(|band| band.1 - band.0).sum();
+    let mut series = Vec::new();
+    for &band in &bands {
+        series.extend(panels(&probe, band, width)?);
     }
-    let mean = Mean { value: sum.product / sum.weight, error: sum.error / sum.weight };
-    if mean.error <= ACCURACY * mean.value.abs().max(1.0) {
-        Ok(mean)
-    } else {
-        Err(OpticsError::NotConverged {
-            estimate: mean.value,
-            error: mean.error,
-            wavelength_nm: sum.worst_nm,
-        })
-    }
+    weights.iter().map(|weight| Sum::over(&series, weight).mean(&bands)).collect()
 }
 
 /// The bands in order, those that touch or overlap joined.
@@ -100,18 +107,28 @@ struct Sum {
 }
 
 impl Sum {
-    fn over(probe: &Probe, bands: &[(f64, f64)], weight: &SpectralWeight) -> Result<Sum, OpticsError> {
+    fn over(series: &[Series], weight: &SpectralWeight) -> Sum {
         let mut sum = Sum { product: 0.0, weight: 0.0, error: 0.0, worst_nm: 0.0, worst: -1.0 };
         let knots = weight.knots_nm();
         // Exact for a panel's series times a straight line times a wavelength.
         let rule = gauss_legendre(DEGREE / 2 + 2);
-        let width: f64 = bands.iter().map(|band| band.1 - band.0).sum();
-        for &band in bands {
-            for series in panels(probe, band, width)? {
-                sum.add(&series, weight, &knots, &rule);
-            }
+        for series in series {
+            sum.add(series, weight, &knots, &rule);
         }
-        Ok(sum)
+        sum
+    }
+
+    fn mean(&self, bands: &[(f64, f64)]) -> Result<Mean, OpticsError> {
+        if self.weight <= 0.0 {
+            let band_nm = (bands[0].0, bands[bands.len() - 1].1);
+            return Err(OpticsError::WeightZero { band_nm });
+        }
+        let mean = Mean { value: self.product / self.weight, error: self.error / self.weight };
+        if mean.error <= ACCURACY * mean.value.abs().max(1.0) {
+            Ok(mean)
+        } else {
+            Err(OpticsError::NotConverged { estimate: mean.value, error: mean.error, wavelength_nm: self.worst_nm })
+        }
     }
 
     fn add(&mut self, series: &Series, weight: &SpectralWeight, knots: &[f64], rule: &[(f64, f64)]) {

@@ -12,5 +12,5 @@ mod search;
 
 pub use angles::extremes_over_angles;
 pub use extremes::{Extreme, Extremes, extremes};
-pub use mean::{Mean, mean};
+pub use mean::{Mean, mean, means};
 pub use probe::value;
