@@ -14,6 +14,7 @@
 mod band;
 mod bodies;
 mod coating;
+mod colour;
 mod constants;
 mod dispersion;
 mod error;
@@ -27,6 +28,7 @@ mod stack;
 mod weight;
 
 pub use band::{Extreme, Extremes, Mean, extremes, extremes_over_angles, mean, means, value};
+pub use colour::{Lab, Observer, VISIBLE_NM, ciede2000, colour};
 pub use dispersion::{Index, MixingRule, Oscillator};
 pub use error::{IndexError, ModelError, OpticsError, WeightError};
 pub use num_complex::Complex64;

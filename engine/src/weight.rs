@@ -80,6 +80,39 @@ impl SpectralWeight {
         Ok(SpectralWeight(Arc::new(Kind::Product { factors: factors.to_vec(), range_nm })))
     }
 
+    /// The product with another, wherever both have a value; where they have none in common it has no value at all.
+    pub fn times(&self, other: &SpectralWeight) -> SpectralWeight {
+        let factors = [self.clone(), other.clone()];
+        SpectralWeight::product(&factors).unwrap_or_else(|_| {
+            let range_nm = Some((f64::INFINITY, f64::NEG_INFINITY));
+            SpectralWeight(Arc::new(Kind::Product { factors: factors.to_vec(), range_nm }))
+        })
+    }
+
+    /// ∫ w dλ over bands of vacuum wavelengths in nm, in the unit of w times nm; exact for tables and their products.
+    /// `None` where it does not reach over a band.
+    pub fn integral(&self, bands_nm: &[(f64, f64)]) -> Option<f64> {
+        let knots = self.knots_nm();
+        let rule = crate::quadrature::gauss_legendre(8);
+        let mut total = 0.0;
+        for &(lo, hi) in bands_nm {
+            self.at(lo).and(self.at(hi))?;
+            let inside = knots.iter().copied().filter(|knot| lo < *knot && *knot < hi);
+            let mut ends: Vec<f64> = std::iter::once(lo).chain(inside).collect();
+            ends.push(hi);
+            for ends in ends.windows(2) {
+                // Smooth weights, such as a black body's, are cut where the wavelength has grown by a fiftieth.
+                let pieces = ((ends[1] / ends[0]).ln() / 0.02).ceil().max(1.0);
+                let half = 0.5 * (ends[1] - ends[0]) / pieces;
+                for piece in 0..pieces as usize {
+                    let middle = ends[0] + half * (2 * piece + 1) as f64;
+                    total += rule.iter().map(|&(x, share)| half * share * self.inside(middle + half * x)).sum::<f64>();
+                }
+            }
+        }
+        Some(total)
+    }
+
     /// The same times the wavelength in nm: proportional to the number of photons instead of their energy.
     pub fn photons(&self) -> SpectralWeight {
         let factors = vec![self.clone(), SpectralWeight(Arc::new(Kind::Wavelength))];
