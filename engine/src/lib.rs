@@ -27,7 +27,10 @@ mod response;
 mod stack;
 mod weight;
 
-pub use band::{Extreme, Extremes, Mean, extremes, extremes_over_angles, mean, means, value};
+pub use band::{
+    Crossing, Extreme, Extremes, Mean, crossings, extremes, extremes_against, extremes_over_angles, mean,
+    means, value,
+};
 pub use colour::{Lab, Observer, VISIBLE_NM, ciede2000, colour};
 pub use dispersion::{Index, MixingRule, Oscillator};
 pub use error::{IndexError, ModelError, OpticsError, WeightError};

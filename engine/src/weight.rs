@@ -106,7 +106,10 @@ impl SpectralWeight {
                 let half = 0.5 * (ends[1] - ends[0]) / pieces;
                 for piece in 0..pieces as usize {
                     let middle = ends[0] + half * (2 * piece + 1) as f64;
-                    total += rule.iter().map(|&(x, share)| half * share * self.inside(middle + half * x)).sum::<f64>();
+                    total += rule
+                        .iter()
+                        .map(|&(x, share)| half * share * self.inside(middle + half * x))
+                        .sum::<f64>();
                 }
             }
         }

@@ -54,6 +54,15 @@ pub(crate) fn check_band(band_nm: (f64, f64)) -> Result<(), OpticsError> {
 
 /// The same for a prepared stack.
 pub(crate) fn over_band(probe: &Probe, band_nm: (f64, f64)) -> Result<Extremes, OpticsError> {
+    let points = mesh_points(probe, band_nm)?;
+    let (min, max) = along(&points, |wavelength_nm| probe.at(wavelength_nm))?;
+    let angle_rad = probe.light.angle_rad;
+    let extreme = |point: Point| Extreme { value: point.y, wavelength_nm: point.x, angle_rad };
+    Ok(Extremes { min: extreme(min), max: extreme(max) })
+}
+
+/// The points that show a quantity's structure over a band, both ends among them, ascending.
+pub(super) fn mesh_points(probe: &Probe, band_nm: (f64, f64)) -> Result<Vec<f64>, OpticsError> {
     let mut points = Vec::new();
     for angle_rad in mesh_angles(probe) {
         let along = Along::Wavelength { angle_rad };
@@ -61,10 +70,7 @@ pub(crate) fn over_band(probe: &Probe, band_nm: (f64, f64)) -> Result<Extremes, 
     }
     points.sort_by(f64::total_cmp);
     points.dedup();
-    let (min, max) = along(&points, |wavelength_nm| probe.at(wavelength_nm))?;
-    let angle_rad = probe.light.angle_rad;
-    let extreme = |point: Point| Extreme { value: point.y, wavelength_nm: point.x, angle_rad };
-    Ok(Extremes { min: extreme(min), max: extreme(max) })
+    Ok(points)
 }
 
 /// The angles whose resonances shape a quantity: a cone blurs those of all its rays.

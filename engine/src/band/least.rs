@@ -90,13 +90,13 @@ fn least(
 }
 
 /// What may lie between two neighbours: the least value of the cubic, and how far that may be wrong.
-struct Bound {
-    least: f64,
-    slack: f64,
+pub(super) struct Bound {
+    pub(super) least: f64,
+    pub(super) slack: f64,
 }
 
 /// For each step of at least five points.
-fn bounds(values: &[Point]) -> Vec<Bound> {
+pub(super) fn bounds(values: &[Point]) -> Vec<Bound> {
     let last = values.len() - 1;
     let missed: Vec<f64> = (0..=last)
         .map(|at| {

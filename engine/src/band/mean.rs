@@ -127,7 +127,11 @@ impl Sum {
         if mean.error <= ACCURACY * mean.value.abs().max(1.0) {
             Ok(mean)
         } else {
-            Err(OpticsError::NotConverged { estimate: mean.value, error: mean.error, wavelength_nm: self.worst_nm })
+            Err(OpticsError::NotConverged {
+                estimate: mean.value,
+                error: mean.error,
+                wavelength_nm: self.worst_nm,
+            })
         }
     }
 

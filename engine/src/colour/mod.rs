@@ -43,7 +43,11 @@ impl Lab {
     pub fn shares(self) -> [f64; 3] {
         let y = (self.l + 16.0) / 116.0;
         [y + self.a / 500.0, y, y - self.b / 200.0].map(|root| {
-            if root > 6.0 / 29.0 { root.powi(3) } else { 3.0 * (6.0 / 29.0_f64).powi(2) * (root - 4.0 / 29.0) }
+            if root > 6.0 / 29.0 {
+                root.powi(3)
+            } else {
+                3.0 * (6.0 / 29.0_f64).powi(2) * (root - 4.0 / 29.0)
+            }
         })
     }
 }
