@@ -28,8 +28,8 @@ mod stack;
 mod weight;
 
 pub use band::{
-    Crossing, Extreme, Extremes, Mean, crossings, extremes, extremes_against, extremes_over_angles, mean,
-    means, value,
+    Crossing, Extreme, Extremes, Mean, crossings, extremes, extremes_against, extremes_over_angles,
+    hemispherical_mean, mean, means, value,
 };
 pub use colour::{Lab, Observer, VISIBLE_NM, ciede2000, colour};
 pub use dispersion::{Index, MixingRule, Oscillator};

@@ -203,7 +203,10 @@ impl Optics {
                     wavelength: *wavelength_nm,
                 })
             }
-            OpticsError::Dark { wavelength_nm } | OpticsError::NotFinite { wavelength_nm, .. } => {
+            OpticsError::Dark { wavelength_nm } => {
+                Trouble::Verdict(Verdict::NoLight { wavelength: Some(*wavelength_nm) })
+            }
+            OpticsError::NotFinite { wavelength_nm, .. } => {
                 Trouble::Verdict(not_settled(f64::INFINITY, *wavelength_nm))
             }
             _ => {

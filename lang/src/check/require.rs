@@ -47,14 +47,13 @@ pub(super) fn check(recipe: &Recipe, stack: &Stack, findings: &mut Vec<Finding>)
         match result {
             Ok(judged) => {
                 report.met = judged.margin >= 0.0;
-                report.value = Some(judged.value);
+                report.value = judged.value;
                 report.min = judged.min;
                 report.max = judged.max;
-                report.margin = Some(judged.margin);
+                report.margin = judged.value.map(|_| judged.margin);
                 report.at = judged.at;
-                findings.extend(
-                    judged.verdict(requirement).map(|verdict| Finding::new(tell(verdict), requirement.place)),
-                );
+                let verdict = judged.verdict(requirement);
+                findings.extend(verdict.map(|verdict| Finding::new(tell(verdict), requirement.place)));
             }
             Err(troubles) => {
                 for trouble in troubles {
@@ -95,58 +94,50 @@ fn blank(requirement: &Arc<Requirement>, asked_at: Place) -> RequirementReport {
 }
 
 /// A value with its bound.
-#[derive(Clone, Copy, Debug)]
+#[derive(Clone, Debug)]
 pub(super) struct Judged {
-    value: f64,
-    min: Option<f64>,
-    max: Option<f64>,
-    margin: f64,
-    at: At,
-}
-
-fn evaluate(asked: &Asked<'_>) -> Result<Judged, Vec<Trouble>> {
-    let gaps: Vec<OpticsFact> =
-        spans(asked.requirement).into_iter().flat_map(|band| asked.optics.gaps(band)).collect();
-    if !gaps.is_empty() {
-        return Err(gaps.into_iter().map(|gap| Trouble::Fact(Box::new(gap.into()))).collect());
-    }
-    let candidates = quantity::candidates(asked).map_err(|trouble| vec![trouble])?;
-    let Bound::Range { min, max } = asked.requirement.bound else {
-        let what = match asked.requirement.bound {
-            Bound::Crosses { .. } => "an edge",
-            Bound::NearColour { .. } => "a colour",
-            _ => "a bound from a mask",
-        };
-        return Err(vec![Trouble::Verdict(Verdict::NotEvaluated { what: what.to_owned() })]);
-    };
-    let worst = candidates
-        .into_iter()
-        .map(|candidate| judge(candidate, min, max))
-        .reduce(|worst, next| if next.margin < worst.margin { next } else { worst });
-    worst.ok_or_else(Vec::new)
-}
-
-/// Every stretch of wavelengths that a requirement looks at, nm.
-fn spans(requirement: &Requirement) -> Vec<(f64, f64)> {
-    let points = requirement.wavelengths.iter().map(|nm| (*nm, *nm));
-    requirement.bands.iter().copied().chain(points).collect()
-}
-
-fn judge(candidate: Candidate, min: Option<f64>, max: Option<f64>) -> Judged {
-    let below = max.map_or(f64::INFINITY, |max| max - candidate.value);
-    let above = min.map_or(f64::INFINITY, |min| candidate.value - min);
-    Judged { value: candidate.value, min, max, margin: below.min(above), at: candidate.at }
+    /// None where there is none, which breaks the bound: a curve that has no edge.
+    pub(super) value: Option<f64>,
+    pub(super) min: Option<f64>,
+    pub(super) max: Option<f64>,
+    pub(super) margin: f64,
+    pub(super) at: At,
+    /// What is to be said of it where it breaks its bound, if not simply by how much.
+    pub(super) missed: Option<Verdict>,
 }
 
 impl Judged {
+    /// A candidate against a range.
+    pub(super) fn within(candidate: Candidate, min: Option<f64>, max: Option<f64>) -> Judged {
+        let below = max.map_or(f64::INFINITY, |max| max - candidate.value);
+        let above = min.map_or(f64::INFINITY, |min| candidate.value - min);
+        Judged {
+            value: Some(candidate.value),
+            min,
+            max,
+            margin: below.min(above),
+            at: candidate.at,
+            missed: None,
+        }
+    }
+
+    /// The one of several that is nearest to breaking its bound, or furthest beyond.
+    pub(super) fn worst(all: impl IntoIterator<Item = Judged>) -> Option<Judged> {
+        all.into_iter().reduce(|worst, next| if next.margin < worst.margin { next } else { worst })
+    }
+
     /// What is to be said of it, if anything.
-    fn verdict(&self, requirement: &Requirement) -> Option<Verdict> {
+    fn verdict(self, requirement: &Requirement) -> Option<Verdict> {
+        let (at, margin) = (self.at, self.margin);
+        if margin < 0.0 && self.missed.is_some() {
+            return self.missed;
+        }
+        let value = self.value?;
         let least = match (self.min, self.max) {
-            (Some(min), Some(max)) => self.value - min < max - self.value,
+            (Some(min), Some(max)) => value - min < max - value,
             (min, _) => min.is_some(),
         };
         let bound = if least { self.min? } else { self.max? };
-        let (value, at, margin) = (self.value, self.at, self.margin);
         if margin < 0.0 {
             return Some(Verdict::Missed { value, bound, least, at });
         }
@@ -158,6 +149,15 @@ impl Judged {
         };
         (margin < room / 10.0).then_some(Verdict::Thin { value, bound, least, margin, at })
     }
+}
+
+fn evaluate(asked: &Asked<'_>) -> Result<Judged, Vec<Trouble>> {
+    let spans = quantity::spans(asked.requirement);
+    let gaps: Vec<OpticsFact> = spans.into_iter().flat_map(|band| asked.optics.gaps(band)).collect();
+    if !gaps.is_empty() {
+        return Err(gaps.into_iter().map(|gap| Trouble::Fact(Box::new(gap.into()))).collect());
+    }
+    quantity::judge(asked).map_err(|trouble| vec![trouble])
 }
 
 fn is_share(quantity: &Quantity) -> bool {

@@ -36,10 +36,37 @@ pub enum Verdict {
     EdgeMisplaced {
         /// nm.
         found: Option<f64>,
+        /// Where it must lie, nm.
+        window: (f64, f64),
         /// The band searched, nm.
         searched: (f64, f64),
         /// Where it was looked for.
         at: At,
+    },
+    /// The colour is too far from its aim.
+    ColourOff {
+        /// L*, a*, b* of the part.
+        seen: [f64; 3],
+        /// L*, a*, b* of the aim.
+        aim: [f64; 3],
+        /// How far apart they are, CIEDE2000.
+        difference: f64,
+        /// How far they may be.
+        most: f64,
+        /// Where.
+        at: At,
+    },
+    /// No light comes out that could have a colour or a density.
+    NoLight {
+        /// nm; none for the visible as a whole.
+        wavelength: Option<f64>,
+    },
+    /// A photocurrent under a light of unknown strength.
+    NoIrradiance {
+        /// The spectrum.
+        name: String,
+        /// Where it is defined.
+        defined: Place,
     },
     /// Met, but within a tenth of the bound.
     Thin {
@@ -104,10 +131,12 @@ pub enum Verdict {
         /// nm.
         asked: (f64, f64),
     },
-    /// A mask that says nothing in any of the bands or at any of the wavelengths.
+    /// A mask that says nothing of part of what is asked for.
     MaskApart {
         /// The file as written.
         path: String,
+        /// What is asked for, nm.
+        asked: (f64, f64),
         /// What the mask covers, nm.
         covers: (f64, f64),
     },

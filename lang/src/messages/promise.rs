@@ -51,14 +51,55 @@ fn verdict(fact: &PromiseFact) -> Words {
                 ),
             )
         }
-        Verdict::EdgeMisplaced { found, searched, at } => {
-            let what = name(requirement);
+        Verdict::EdgeMisplaced { found, window, searched, at } => {
+            let (what, window) = (name(requirement), band(*window));
             let message = match found {
-                Some(nm) => format!("in `{recipe}`, the edge of {what} lies at {}{}, outside its window", wavelength(*nm), beam(at)),
-                None => format!("in `{recipe}`, {what} has no such edge in {}{}", band(*searched), beam(at)),
+                Some(nm) => format!(
+                    "in `{recipe}`, the edge of {what} lies at {}{}, and must lie in {window}",
+                    wavelength(*nm),
+                    beam(at)
+                ),
+                None => format!(
+                    "in `{recipe}`, {what} has no such edge{} in {}; it must lie in {window}",
+                    beam(at),
+                    band(*searched)
+                ),
             };
             Words::new(Code::EdgeMisplaced, message)
         }
+        Verdict::ColourOff { seen, aim, difference, most, at } => {
+            let lab = |[l, a, b]: [f64; 3]| {
+                format!("lab({}, {}, {})", number::rounded(l, 1), number::rounded(a, 1), number::rounded(b, 1))
+            };
+            let digits = apart(*difference, *most);
+            Words::new(
+                Code::ColourOff,
+                format!(
+                    "in `{recipe}`, the {} is {}{}, {} from the aim {}, and {} is allowed",
+                    name(requirement),
+                    lab(*seen),
+                    beam(at),
+                    significant(*difference, digits),
+                    lab(*aim),
+                    significant(*most, digits)
+                ),
+            )
+        }
+        Verdict::NoLight { wavelength: nm } => {
+            let place = nm.map_or("in the visible".to_owned(), |nm| format!("at {}", wavelength(nm)));
+            Words::new(
+                Code::InvalidValue,
+                format!("in `{recipe}`, {} has no value {place}: no light comes that way", name(requirement)),
+            )
+        }
+        Verdict::NoIrradiance { name, defined } => Words::new(
+            Code::InvalidValue,
+            format!(
+                "in `{recipe}`, a photocurrent under `{name}` has no value: how strong that light is is not known; take \
+                 `am15g`, `am15d`, `am0` or a table with `irradiance W/m2`"
+            ),
+        )
+        .related(*defined, format!("`{name}` is defined here")),
         Verdict::NotEvaluated { what } => Words::new(
             Code::NotEvaluated,
             format!("in `{recipe}`, this requirement is not evaluated: this version does not work out {what}"),
@@ -101,9 +142,9 @@ fn verdict(fact: &PromiseFact) -> Words {
         Verdict::SpectrumDark { name, asked } => {
             Words::new(Code::InvalidValue, format!("`{name}` is dark all over {}, so that there is no mean", band(*asked)))
         }
-        Verdict::MaskApart { path, covers } => Words::new(
-            Code::InvalidValue,
-            format!("\"{path}\" covers {}, and says nothing of any wavelength asked for", band(*covers)),
+        Verdict::MaskApart { path, asked, covers } => Words::new(
+            Code::OutsideData,
+            format!("\"{path}\" covers {}, and says nothing of part of {}", band(*covers), band(*asked)),
         ),
     }
 }

@@ -1,50 +1,58 @@
-//! Reflectance, transmittance and absorptance: at wavelengths, over bands, and their means.
+//! Reflectance, transmittance, absorptance and optical density: at wavelengths, over bands, and their means.
 
-use crate::check::optics::{Trouble, weight};
-use crate::check::require::{Asked, Candidate};
+use super::super::optics::{Trouble, weight};
+use super::super::require::{Asked, Candidate};
+use super::angles;
 use crate::finding::Verdict;
-use crate::model::{Angles, Element, Quantity};
+use crate::model::{Angles, Element, Quantity, Target};
 use crate::report::At;
 use overcoat_engine::{self as engine, Extremes, Light, OpticsError, SpectralWeight};
 
-/// At how many angles a mean over a range of angles is looked at before its extremes are closed in on.
-const ANGLES: usize = 32;
-
 pub(super) fn candidates(asked: &Asked<'_>) -> Result<Vec<Candidate>, Trouble> {
     let quantity = engine_quantity(asked)?;
-    let result = if asked.requirement.mean { means(asked, &quantity) } else { extremes(asked, &quantity) };
-    result.map_err(|error| asked.optics.explain(&error, asked.requirement, asked.stack))
+    if asked.requirement.mean {
+        return means(asked, &quantity);
+    }
+    extremes(asked, &quantity).map_err(|error| explain(asked, &error))
+}
+
+/// What the engine's error means for a requirement.
+pub(super) fn explain(asked: &Asked<'_>, error: &OpticsError) -> Trouble {
+    asked.optics.explain(error, asked.requirement, asked.stack)
 }
 
 /// The quantity as the engine has it; a name that stands for nothing in the stack is reported.
-fn engine_quantity(asked: &Asked<'_>) -> Result<engine::Quantity, Trouble> {
+pub(super) fn engine_quantity(asked: &Asked<'_>) -> Result<engine::Quantity, Trouble> {
     match &asked.requirement.quantity {
         Quantity::Transmittance => Ok(engine::Quantity::Transmittance),
         Quantity::Absorptance => Ok(engine::Quantity::Absorptance),
-        Quantity::AbsorptanceIn(target) => {
-            asked.optics.target(asked.stack, target, asked.requirement.from_exit).ok_or_else(|| {
-                let names: Vec<String> = asked.stack.elements.iter().flat_map(names).collect();
-                let near = crate::nearest(&target.name, names.iter().map(String::as_str));
-                Trouble::Verdict(Verdict::UnknownTarget { name: target.name.clone(), near })
-            })
-        }
+        Quantity::AbsorptanceIn(target) => absorptance_in(asked, target),
+        Quantity::OpticalDensity => Ok(engine::Quantity::OpticalDensity),
         _ => Ok(engine::Quantity::Reflectance),
     }
 }
 
+/// The absorptance in what a name stands for.
+pub(super) fn absorptance_in(asked: &Asked<'_>, target: &Target) -> Result<engine::Quantity, Trouble> {
+    asked.optics.target(asked.stack, target, asked.requirement.from_exit).ok_or_else(|| {
+        let names: Vec<String> = asked.stack.elements.iter().flat_map(names).collect();
+        let near = crate::nearest(&target.name, names.iter().map(String::as_str));
+        Trouble::Verdict(Verdict::UnknownTarget { name: target.name.clone(), near })
+    })
+}
+
 fn names(element: &Element) -> Vec<String> {
     match element {
-        Element::Layer(layer) => layer
-            .name
-            .iter()
-            .cloned()
-            .chain(layer.material.materials().map(|material| material.name.clone()))
-            .collect(),
+        Element::Layer(layer) => {
+            let materials = layer.material.materials().map(|material| material.name.clone());
+            layer.name.iter().cloned().chain(materials).collect()
+        }
         Element::Body(body) => vec![body.material.name.clone()],
     }
 }
 
-fn light(asked: &Asked<'_>, angle: f64) -> Light {
+/// The requirement's beam at an angle.
+pub(super) fn light(asked: &Asked<'_>, angle: f64) -> Light {
     Light {
         polarisation: asked.requirement.polarisation,
         angle_rad: angle,
@@ -63,13 +71,12 @@ fn extremes(asked: &Asked<'_>, quantity: &engine::Quantity) -> Result<Vec<Candid
         match &requirement.angles {
             Angles::List(angles) => {
                 for angle in angles {
-                    let over = engine::extremes(stack, quantity, &light(asked, *angle), band)?;
-                    keep(asked, over, &mut found);
+                    keep(asked, engine::extremes(stack, quantity, &light(asked, *angle), band)?, &mut found);
                 }
             }
             Angles::Range(from, to) => {
-                let over =
-                    engine::extremes_over_angles(stack, quantity, &light(asked, *from), band, (*from, *to))?;
+                let light = light(asked, *from);
+                let over = engine::extremes_over_angles(stack, quantity, &light, band, (*from, *to))?;
                 keep(asked, over, &mut found);
             }
         }
@@ -88,58 +95,22 @@ fn keep(asked: &Asked<'_>, over: Extremes, found: &mut Vec<Candidate>) {
     }
 }
 
-/// The mean over the bands at every angle; over a range of angles its least and its greatest value.
-fn means(asked: &Asked<'_>, quantity: &engine::Quantity) -> Result<Vec<Candidate>, OpticsError> {
-    let requirement = asked.requirement;
-    let weight = weight(requirement.under.as_ref()).unwrap_or_else(SpectralWeight::constant);
-    let stack = asked.optics.facing(requirement.from_exit);
-    let mean = |angle: f64| -> Result<Candidate, OpticsError> {
-        let mean = engine::mean(stack, quantity, &light(asked, angle), &requirement.bands, &weight)?;
-        let at = At { wavelength: None, angle, polarisation: requirement.polarisation };
-        Ok(Candidate { value: mean.value, at })
-    };
-    match &requirement.angles {
-        Angles::List(angles) => angles.iter().map(|angle| mean(*angle)).collect(),
-        Angles::Range(from, to) => {
-            // A mean over a band runs smoothly with the angle: the fringes that move are averaged out.
-            let angles = (0..=ANGLES).map(|step| from + (to - from) * step as f64 / ANGLES as f64);
-            let mut found: Vec<Candidate> = angles.map(mean).collect::<Result<_, _>>()?;
-            for sign in [1.0, -1.0] {
-                let best = (0..=ANGLES).reduce(|best, next| {
-                    if sign * found[next].value < sign * found[best].value { next } else { best }
-                });
-                let Some(best) = best else { continue };
-                let low = found[best.saturating_sub(1)].at.angle;
-                let high = found[(best + 1).min(ANGLES)].at.angle;
-                found.push(closed_in(&mean, sign, low, high)?);
-            }
-            Ok(found)
-        }
-    }
+/// The mean over the bands at every angle.
+fn means(asked: &Asked<'_>, quantity: &engine::Quantity) -> Result<Vec<Candidate>, Trouble> {
+    let weight = weight(asked.requirement.under.as_ref()).unwrap_or_else(SpectralWeight::constant);
+    mean_over_angles(asked, quantity, &asked.requirement.bands, &weight)
 }
 
-/// The least of sign × f between two angles, by golden sections.
-///
-/// Source: J. Kiefer, Proc. Am. Math. Soc. 4, 502 (1953).
-fn closed_in(
-    f: &dyn Fn(f64) -> Result<Candidate, OpticsError>,
-    sign: f64,
-    mut low: f64,
-    mut high: f64,
-) -> Result<Candidate, OpticsError> {
-    let ratio = (5f64.sqrt() - 1.0) / 2.0;
-    let mut a = f(high - ratio * (high - low))?;
-    let mut b = f(low + ratio * (high - low))?;
-    while high - low > 1e-6 {
-        if sign * a.value <= sign * b.value {
-            high = b.at.angle;
-            b = a;
-            a = f(high - ratio * (high - low))?;
-        } else {
-            low = a.at.angle;
-            a = b;
-            b = f(low + ratio * (high - low))?;
-        }
-    }
-    Ok(if sign * a.value <= sign * b.value { a } else { b })
+/// The mean of a quantity under a weight at every angle of the requirement.
+pub(super) fn mean_over_angles(
+    asked: &Asked<'_>,
+    quantity: &engine::Quantity,
+    bands: &[(f64, f64)],
+    weight: &SpectralWeight,
+) -> Result<Vec<Candidate>, Trouble> {
+    let stack = asked.optics.facing(asked.requirement.from_exit);
+    angles::over(asked, &|angle| {
+        let mean = engine::mean(stack, quantity, &light(asked, angle), bands, weight);
+        mean.map(|mean| mean.value).map_err(|error| explain(asked, &error))
+    })
 }
