@@ -1,5 +1,7 @@
 //! Edges and masks over whole bands.
 
+#![allow(clippy::unwrap_used, reason = "in a test a panic is the report")]
+
 use overcoat_engine::{
     Film, Index, Light, Quantity, SpectralWeight, Stack, crossings, extremes, extremes_against, value,
 };
