@@ -5,7 +5,6 @@
 
 // In tests a panic is the report, in helpers too.
 #![allow(clippy::unwrap_used)]
-#![allow(clippy::unwrap_used, reason = "in a test a panic is the report")]
 
 use std::path::{Path, PathBuf};
 use std::process::Command;
