@@ -6,6 +6,7 @@
 pub mod ast;
 mod balance;
 mod decode;
+mod format;
 pub mod keywords;
 mod lexeme;
 mod lexer;
@@ -19,6 +20,7 @@ pub mod tokens;
 mod words;
 
 pub use decode::decode;
+pub use format::{FormatFault, format};
 pub use keywords::KEYWORDS;
 
 use crate::finding::{Fact, Finding, FormFact};
