@@ -85,6 +85,11 @@ pub(crate) enum Command {
     /// incident power. Each number is the shortest that reads back as the same double.
     #[command(after_help = SPECTRUM_EXAMPLES)]
     Spectrum(Spectrum),
+    /// Lay recipes out in the one layout.
+    ///
+    /// Comments stay where they are and the meaning never changes. A file with syntax errors is reported and
+    /// left as it is.
+    Fmt(Fmt),
     /// Explain a code of the checker's messages, for example `layer_too_thin`.
     ///
     /// Without a code, lists all codes.
@@ -177,6 +182,16 @@ pub(crate) enum From {
     Incident,
     /// The side of `exit`, or of the substrate where that is a half-space.
     Exit,
+}
+
+#[derive(Debug, Args)]
+pub(crate) struct Fmt {
+    /// Files, or folders whose `.coat` files are laid out; `-` for the standard input.
+    #[arg(default_value = ".", value_name = "PATH")]
+    pub(crate) paths: Vec<PathBuf>,
+    /// Change nothing: list the files that are laid out otherwise, and end with status 1 if there is one.
+    #[arg(long)]
+    pub(crate) check: bool,
 }
 
 #[derive(Debug, Args)]

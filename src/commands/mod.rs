@@ -3,6 +3,7 @@
 mod check;
 mod completions;
 mod explain;
+mod fmt;
 mod handbook;
 mod spectrum;
 
@@ -17,6 +18,7 @@ pub(crate) fn run(cli: Cli) -> Result<Status, Failure> {
     match cli.command {
         Command::Check(arguments) => check::run(&arguments, global),
         Command::Spectrum(arguments) => spectrum::run(&arguments, global),
+        Command::Fmt(arguments) => fmt::run(&arguments, global),
         Command::Explain(arguments) => explain::run(&arguments),
         Command::Handbook(arguments) => handbook::run(&arguments),
         Command::Completions(arguments) => completions::run(&arguments),

@@ -5,6 +5,7 @@
 
 mod bad_input;
 mod check;
+mod fmt;
 mod formats;
 mod human;
 mod paths;
