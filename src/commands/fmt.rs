@@ -1,6 +1,6 @@
 //! `overcoat fmt`: recipes in the one layout.
 
-use super::{Opened, open};
+use super::open;
 use crate::Status;
 use crate::cli::{Colour, Fmt, Global};
 use crate::disk::relative;
@@ -11,8 +11,10 @@ use overcoat_lang::finding::Finding;
 use overcoat_lang::messages::render;
 use overcoat_lang::source::{Source, Sources, Span};
 use overcoat_lang::syntax::{decode, format, parse};
+use std::collections::BTreeMap;
 use std::io::Read;
 use std::path::Path;
+use std::rc::Rc;
 
 /// What became of one text.
 struct Laid {
@@ -34,18 +36,26 @@ impl Laid {
 pub(super) fn run(arguments: &Fmt, global: &Global) -> Result<Status, Failure> {
     if arguments.paths.iter().any(|path| path == Path::new("-")) {
         if arguments.paths.len() > 1 {
-            return Err(Failure::message("`-` stands for the standard input and can't be named with other paths"));
+            return Err(Failure::message(
+                "`-` stands for the standard input and can't be named with other paths",
+            ));
         }
         return standard_input(arguments.check, global.color);
     }
-    let opened = open(&arguments.paths, global.root.as_deref())?;
+    // Laying a file out needs no other file, so each path may belong to a project of its own.
+    let mut files = BTreeMap::new();
+    for path in &arguments.paths {
+        let opened = Rc::new(open(std::slice::from_ref(path), global.root.as_deref())?);
+        for file in walk::asked(&opened.root, &opened.settings)? {
+            files.insert(opened.root.folder.join(&file), (opened.clone(), file));
+        }
+    }
     let mut status = Status::Met;
-    let mut otherwise = Vec::new();
-    for path in walk::asked(&opened.root, &opened.settings)? {
-        let full = opened.root.folder.join(&path);
-        let name = relative(&opened.here, &full);
-        let laid = match opened.files.read(&path) {
-            Ok(bytes) => laid_out(&path, bytes)?,
+    let mut otherwise = String::new();
+    for (full, (opened, file)) in &files {
+        let name = relative(&opened.here, full);
+        let laid = match opened.files.read(file) {
+            Ok(bytes) => laid_out(file, bytes)?,
             Err(error) => {
                 output::complain(global.color, &std::format!("`{name}` {}", why(error)));
                 status = Status::NotUnderstood;
@@ -54,18 +64,23 @@ pub(super) fn run(arguments: &Fmt, global: &Global) -> Result<Status, Failure> {
         };
         if laid.changed() {
             if let (false, Some(text)) = (arguments.check, &laid.text) {
-                output::replace(&full, text)?;
+                output::replace(full, text)?;
             }
-            otherwise.push((name, laid_difference(&laid)));
+            otherwise.push_str(&difference(&name, &laid));
         }
         if !laid.findings.is_empty() {
-            complain(&laid, &opened, global.color);
+            views::complain_of(
+                &laid.sources,
+                rendered(&laid),
+                &opened.root.folder,
+                &opened.here,
+                global.color,
+            );
             status = Status::NotUnderstood;
         }
     }
     if arguments.check && !otherwise.is_empty() {
-        let lines = otherwise.iter().map(|(name, line)| std::format!("{name}:{line}: laid out otherwise from here\n"));
-        output::print(&lines.collect::<String>())?;
+        output::print(&otherwise)?;
         status = status.max(Status::Missed);
     }
     Ok(status)
@@ -79,7 +94,7 @@ fn standard_input(check: bool, colour: Colour) -> Result<Status, Failure> {
     let mut status = Status::Met;
     if check {
         if laid.changed() {
-            output::print(&std::format!("-:{}: laid out otherwise from here\n", laid_difference(&laid)))?;
+            output::print(&difference("-", &laid))?;
             status = Status::Missed;
         }
     } else {
@@ -105,7 +120,9 @@ fn laid_out(path: &str, before: Vec<u8>) -> Result<Laid, Failure> {
         }
     };
     let fault = |_| {
-        Failure::Fault(std::format!("`{path}` was left alone: laid out, it would say something else; please report this"))
+        Failure::Fault(std::format!(
+            "`{path}` was left alone: laid out, it would say something else; please report this"
+        ))
     };
     let laid = format(&text).map_err(fault)?;
     let file = sources.add(Source::new(path, text.as_str()));
@@ -113,20 +130,16 @@ fn laid_out(path: &str, before: Vec<u8>) -> Result<Laid, Failure> {
     Ok(Laid { text: Some(laid), before, sources, findings })
 }
 
-/// The first line that is laid out otherwise, from 1.
-fn laid_difference(laid: &Laid) -> usize {
+/// A line that says where a text is first laid out otherwise.
+fn difference(name: &str, laid: &Laid) -> String {
     let before = String::from_utf8_lossy(&laid.before);
     let after = laid.text.as_deref().unwrap_or("");
     let same = before.split('\n').zip(after.split('\n')).take_while(|(before, after)| before == after);
-    same.count() + 1
+    std::format!("{name}:{}: laid out otherwise from here\n", same.count() + 1)
 }
 
 fn rendered(laid: &Laid) -> Vec<overcoat_lang::diagnostic::Diagnostic> {
     laid.findings.iter().map(|finding| render(finding, &laid.sources)).collect()
-}
-
-fn complain(laid: &Laid, opened: &Opened, colour: Colour) {
-    views::complain_of(&laid.sources, rendered(laid), &opened.root.folder, &opened.here, colour);
 }
 
 /// Why a file could not be read, as the end of a sentence.

@@ -41,6 +41,18 @@ fn files_are_laid_out_in_place_and_then_stay() {
 }
 
 #[test]
+fn files_of_several_projects_are_laid_out_at_once() {
+    let parent = Project::new();
+    parent.write("a/front.coat", UNTIDY);
+    parent.write("b/overcoat.toml", "");
+    parent.write("b/front.coat", UNTIDY);
+    let run = parent.run(&["fmt", "a", "b", "a/front.coat"]);
+    assert_eq!(run.status, Some(0), "{run:?}");
+    assert_eq!(parent.read("a/front.coat"), parent.read("b/front.coat"));
+    assert_eq!(parent.run(&["fmt", "--check", "a", "b"]).status, Some(0));
+}
+
+#[test]
 fn a_file_that_is_laid_out_is_not_touched() {
     let project = Project::with_front(UNTIDY);
     project.run(&["fmt"]);
