@@ -8,6 +8,7 @@ HERE = Path(__file__).resolve().parent
 DATA = HERE / "data"
 HANDBOOK = HERE.parent.parent / "lang" / "handbook"
 
+TABLE = re.compile(r"\btable\s*\{")
 ROW = re.compile(r"^\s*([0-9.e+-]+) nm((?: [0-9.e+-]+)+),?\s*$")
 
 
@@ -18,7 +19,7 @@ def handbook_rows(name):
     for line in (HANDBOOK / f"{name}.coat").read_text(encoding="utf-8").splitlines():
         if line.lstrip().startswith("#"):
             continue
-        if "table {" in line:
+        if TABLE.search(line):
             inside = True
         elif inside and "}" in line:
             break

@@ -65,7 +65,7 @@ fn the_readme_shows_an_example_and_what_is_really_printed() {
         }
     }
     fs::write(folder.path().join("overcoat.toml"), "").unwrap();
-    let wrong = recipe.replace("layer nitride 76 nm", "layer nitride 82 nm");
+    let wrong = recipe.replace("nitride 76 nm", "nitride 82 nm");
     assert_ne!(wrong, *recipe);
     fs::write(folder.path().join("examples/recipes/cell_front.coat"), wrong).unwrap();
     let output = std::process::Command::new(env!("CARGO_BIN_EXE_overcoat"))
