@@ -127,7 +127,6 @@ fn unknown(kind: &str, name: &str, near: &[String], import: Option<&str>, place:
         "oscillator" => format!("there is no oscillator `{name}`"),
         "mixing rule" => format!("there is no mixing rule `{name}`"),
         "handbook entry" => format!("the handbook has no `{name}`"),
-        "let" => format!("no value is named `{name}`"),
         kind => format!("no {kind} is named `{name}`"),
     };
     if let (Some(from), true) = (import, near.is_empty()) {

@@ -31,7 +31,7 @@ fn verdict(fact: &PromiseFact) -> Words {
                     name(requirement),
                     show(*value),
                     place_of(at),
-                    shown(requirement, (value - bound).abs(), 3),
+                    apart_by(requirement, (value - bound).abs()),
                     show(*bound)
                 ),
             )
@@ -46,7 +46,7 @@ fn verdict(fact: &PromiseFact) -> Words {
                     name(requirement),
                     shown(requirement, *value, digits),
                     place_of(at),
-                    shown(requirement, *margin, 3),
+                    apart_by(requirement, *margin),
                     shown(requirement, *bound, digits)
                 ),
             )
@@ -171,6 +171,15 @@ fn shown(requirement: &Requirement, number: f64, digits: usize) -> String {
         Quantity::GroupDelay(_) => format!("{} fs", significant(number, digits)),
         Quantity::GroupDelayDispersion(_) => format!("{} fs^2", significant(number, digits)),
         _ => ratio(number, digits),
+    }
+}
+
+/// A difference of two values: of shares in points of a per cent, since 1 % of 2 % could mean two things.
+fn apart_by(requirement: &Requirement, difference: f64) -> String {
+    let text = shown(requirement, difference, 3);
+    match text.strip_suffix(" %") {
+        Some(points) => format!("{points} points"),
+        None => text,
     }
 }
 

@@ -371,8 +371,9 @@ impl Resolver<'_> {
             None => 0.0,
         };
         if clauses.cone.is_some_and(|cone| cone + axis >= FRAC_PI_2 - 1e-12) {
-            let shown = self.written(module, span);
-            self.invalid(module, span, "the cone with its angle", &shown, "less than 90 deg at its edge");
+            let degrees = |angle: f64| super::quantity::rounded(angle.to_degrees());
+            let shown = format!("{} deg about {} deg", degrees(clauses.cone.unwrap_or(0.0)), degrees(axis));
+            self.invalid(module, span, "the cone", &shown, "less than 90 deg at its edge");
             return None;
         }
         Some(clauses)

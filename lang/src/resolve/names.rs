@@ -57,7 +57,7 @@ pub(super) enum Kind {
 impl Kind {
     pub(super) fn word(self) -> &'static str {
         match self {
-            Kind::Let => "let",
+            Kind::Let => "value",
             Kind::Material => "material",
             Kind::Spectrum => "spectrum",
             Kind::Chamber => "chamber",

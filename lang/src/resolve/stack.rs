@@ -312,7 +312,7 @@ impl Resolver<'_> {
                 reading.keep(layer.map(Element::Layer));
             }
             StackStatement::Repeat { count, body } => {
-                let times = self.count(module, count, "the number of repeats", 1e12);
+                let times = self.count(module, count, "the number of repeats", MOST_FILMS as f64);
                 let Some(times) = times else {
                     reading.sound = false;
                     return;

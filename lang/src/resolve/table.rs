@@ -127,7 +127,12 @@ impl Resolver<'_> {
             let least = 1 + shape.columns.len() - shape.optional;
             if cells.len() < least || cells.len() > 1 + shape.columns.len() {
                 let wanted = shape.columns.join(" and ");
-                let problem = format!("has {} numbers; a wavelength and {wanted} are needed", cells.len());
+                let count = if cells.len() == 1 {
+                    "one number".to_owned()
+                } else {
+                    format!("{} numbers", cells.len())
+                };
+                let problem = format!("has {count}; a wavelength and {wanted} are needed");
                 self.report(module, whole, malformed(None, problem));
                 sound = false;
                 continue;

@@ -37,7 +37,10 @@ impl Resolver<'_> {
                     }
                     kind => {
                         let Some((Kind::Let, name)) = defines(kind) else { continue };
-                        let sound = matches!(self.lets.get(&(id, index)), Some(State::Done(Some(_))));
+                        let told =
+                            self.findings.iter().any(|finding| finding.place == name.span.at(module.file));
+                        let sound =
+                            !told && matches!(self.lets.get(&(id, index)), Some(State::Done(Some(_))));
                         if sound && !self.used.contains(&(id, name.text.clone())) {
                             unused.push(Unused {
                                 name: name.text.clone(),

@@ -359,7 +359,7 @@ impl<'a> Lexer<'a> {
                 self.push(TokenKind::Date, range);
             }
             Some(_) => {
-                let must = "exist in the calendar".to_owned();
+                let must = "a day of the calendar".to_owned();
                 let value = written.to_owned();
                 self.report(range.clone(), FormFact::InvalidValue { what: "a date".into(), value, must });
                 self.push(TokenKind::Bad, range);
