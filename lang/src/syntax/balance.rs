@@ -4,6 +4,7 @@
 //! a missing `}` is put in where the layout shows that the block has ended, a stray one is set aside, and
 //! each is reported once. The parser then only ever sees balanced blocks, and may skip over one as a whole.
 
+use super::ENOUGH;
 use super::keywords::BlockKind;
 use super::lexeme::Lexeme;
 use super::tokens::TokenKind;
@@ -167,6 +168,9 @@ impl<'a> Balancer<'a> {
     }
 
     fn stray(&mut self, lexeme: &Lexeme<'a>) {
+        if self.findings.len() > ENOUGH {
+            return;
+        }
         let hint = Some("no block is open here".to_owned());
         let fact = FormFact::Syntax {
             expected: vec![BlockKind::Module.label().to_owned()],

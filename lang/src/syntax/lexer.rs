@@ -3,6 +3,7 @@
 //! Two things depend on what stands before and are cut by hand from the rest of the text: units after a
 //! number, and a date after `until`.
 
+use super::ENOUGH;
 use super::keywords;
 use super::near::near;
 use super::slips;
@@ -226,6 +227,9 @@ impl<'a> Lexer<'a> {
     }
 
     fn report(&mut self, range: std::ops::Range<usize>, fact: FormFact) {
+        if self.findings.len() > ENOUGH {
+            return;
+        }
         self.findings.push(Finding::new(fact, Span::new(range.start, range.end).at(self.file)));
     }
 

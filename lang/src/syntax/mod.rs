@@ -31,6 +31,8 @@ use tokens::Token;
 
 /// How many syntax errors of one file are told; more would help nobody.
 const ERROR_BOUND: usize = 100;
+/// How many each stage collects, so that a file of rubbish costs no more than its reading.
+const ENOUGH: usize = 1000;
 
 /// What a text was understood to be.
 #[derive(Clone, Debug, Default)]
@@ -67,7 +69,8 @@ pub fn parse(text: &str, file: FileId) -> Parsed {
     let (lexemes, unbalanced) = balance::balance(lexemes, file);
     let (mut module, problems) = parser::module(&lexemes);
     let mut findings = lexed.findings;
-    findings.extend(problems.into_iter().filter_map(|problem| words::finding(problem, &lexemes, file)));
+    let told = problems.into_iter().filter_map(|problem| words::finding(problem, &lexemes, file));
+    findings.extend(told.take(ENOUGH));
     let (strays, unclosed): (Vec<Finding>, Vec<Finding>) = unbalanced.into_iter().partition(stray);
     findings.extend(unclosed);
     if findings.is_empty() {
@@ -91,14 +94,12 @@ fn stray(finding: &Finding) -> bool {
 fn presented(mut findings: Vec<Finding>) -> Vec<Finding> {
     findings.sort_by_key(|finding| finding.place);
     findings.dedup_by_key(|finding| finding.place);
-    let count = findings.len();
-    if count > ERROR_BOUND {
+    if findings.len() > ERROR_BOUND {
         findings.truncate(ERROR_BOUND);
         if let Some(Fact::Form(FormFact::Syntax { hint, .. })) =
             findings.last_mut().map(|last| &mut last.fact)
         {
-            let more = count - ERROR_BOUND;
-            *hint = Some(format!("{more} more errors of this file are not shown"));
+            *hint = Some(format!("the file has more errors than these {ERROR_BOUND}"));
         }
     }
     findings

@@ -1,6 +1,6 @@
 //! Broken texts: what is said, where, and what is still understood.
 
-use super::{handbook, told};
+use super::{EVERYTHING, handbook, told};
 use crate::source::FileId;
 use crate::syntax::ast::Item;
 use crate::syntax::parse;
@@ -22,4 +22,12 @@ fn the_handbook_has_no_errors() {
         assert_eq!(parsed.findings, [], "{path}");
         assert_eq!(parsed.module.items.len(), 1, "{path}");
     }
+}
+
+#[test]
+fn every_construct_is_read() {
+    let expected: [&str; 0] = [];
+    assert_eq!(told(EVERYTHING), expected);
+    assert_eq!(told(&EVERYTHING.replace('\n', "\r\n")), expected);
+    assert_eq!(parse(EVERYTHING, FileId(0)).module.items.len(), 21);
 }

@@ -1,11 +1,15 @@
 //! Tests of the parser as a whole.
 
 mod broken;
+mod torture;
 
 use crate::finding::{Fact, FormFact};
 use crate::source::{FileId, Source};
 use crate::syntax::parse;
 use std::path::Path;
+
+/// A text that uses every construct, formatted.
+const EVERYTHING: &str = include_str!("everything.coat");
 
 /// Every finding of a text as a line: place, covered text, what is said.
 fn told(text: &str) -> Vec<String> {
