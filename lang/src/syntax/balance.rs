@@ -81,7 +81,8 @@ pub(super) fn balance<'a>(lexemes: Vec<Lexeme<'a>>, file: FileId) -> (Vec<Lexeme
 
 /// The lexemes from here to the next item.
 fn item_length(lexemes: &[Lexeme<'_>]) -> usize {
-    let column = lexemes.first().map_or(0, |first| first.column);
+    // Where an item stands in the middle of a line says nothing of the layout.
+    let column = lexemes.first().filter(|first| first.first_on_line).map_or(0, |first| first.column);
     let mut depth = 0_usize;
     for (index, lexeme) in lexemes.iter().enumerate() {
         match lexeme.kind {

@@ -71,16 +71,24 @@ fn align(class: Class, group: &[Entry<'_>], out: &mut [Padding], indent: usize) 
         }
         Class::Requirement => {
             column(group, out, |_| Some(0), bound);
+            let quantities = out.to_vec();
             column(group, out, bound, clause);
-            let fits = group.iter().zip(out.iter()).all(|(entry, padding)| {
-                let extra: usize = padding.iter().map(|(_, blanks)| blanks).sum();
-                flat(entry, &[]).is_none_or(|line| indent + line.chars().count() + extra <= WIDTH)
-            });
-            if !fits {
+            // Where one long sentence would push the others past the edge, fewer columns align.
+            if !fit(group, out, indent) {
+                out.clone_from_slice(&quantities);
+            }
+            if !fit(group, out, indent) {
                 out.iter_mut().for_each(Vec::clear);
             }
         }
     }
+}
+
+/// Whether no padded line is too long.
+fn fit(group: &[Entry<'_>], out: &[Padding], indent: usize) -> bool {
+    group.iter().zip(out).all(|(entry, padding)| {
+        flat(entry, padding).is_none_or(|line| indent + line.chars().count() <= WIDTH)
+    })
 }
 
 /// Makes the parts `to` of a group start in one column, `from` doing so already.

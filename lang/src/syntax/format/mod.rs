@@ -24,7 +24,7 @@ const WIDTH: usize = 100;
 pub struct FormatFault;
 
 /// The text in the one layout. Statements with syntax errors stay as typed; a text that can't be read at all
-/// comes back unchanged.
+/// comes back unchanged, and so does a broken one of which a new layout would change what is understood.
 ///
 /// # Errors
 ///
@@ -39,7 +39,8 @@ pub fn format(text: &str) -> Result<String, FormatFault> {
     let mut formatted = print::print(body, &entries);
     let after = parse(&formatted, FileId(0));
     if !same(body, &before, &formatted, &after) {
-        return Err(FormatFault);
+        // What a broken text means hangs on where its lines break: it is left as typed altogether.
+        return if before.findings.is_empty() { Err(FormatFault) } else { Ok(text.to_owned()) };
     }
     if body.find('\n').is_some_and(|at| body[..at].ends_with('\r')) {
         formatted = formatted.replace('\n', "\r\n");

@@ -80,7 +80,7 @@ impl Spacing {
         let breakable = gap > 0
             && self.count > 1
             && (clause
-                || kind == Text
+                || kind == Text && !self.keyword_before
                 || self.previous == Some(Comma)
                 || matches!(kind, AtMost | AtLeast)
                 || kind.operator() && !unary);

@@ -1,6 +1,7 @@
 //! Tests of the parser as a whole.
 
 mod broken;
+mod layout;
 mod torture;
 
 use crate::finding::{Fact, FormFact};

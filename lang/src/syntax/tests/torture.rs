@@ -102,7 +102,7 @@ fn every_text_that_lacks_a_token_is_read() {
 }
 
 /// Words and marks of the language, and some that are not.
-fn piece() -> impl Strategy<Value = String> {
+pub(super) fn piece() -> impl Strategy<Value = String> {
     let words = crate::syntax::KEYWORDS
         .iter()
         .flat_map(|(_, words)| *words)
