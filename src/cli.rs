@@ -206,6 +206,9 @@ pub(crate) struct Handbook {
     /// The entry.
     #[arg(value_name = "NAME")]
     pub(crate) name: Option<String>,
+    /// List the entries that hold all of these words, or beginnings of words, in their name, description or source.
+    #[arg(long, value_name = "WORD", num_args = 1.., conflicts_with = "name")]
+    pub(crate) search: Vec<String>,
     /// Wavelengths at which to print the optical constants, for example 550nm; several with commas.
     #[arg(long, value_name = "WAVELENGTH", value_delimiter = ',', requires = "name")]
     pub(crate) at: Vec<String>,

@@ -1,6 +1,7 @@
 //! The views of one report: nothing is said in one of them only.
 
 pub(crate) mod amount;
+pub(crate) mod chart;
 pub(crate) mod human;
 pub(crate) mod json;
 pub(crate) mod junit;

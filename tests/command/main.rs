@@ -7,6 +7,7 @@ mod bad_input;
 mod check;
 mod fmt;
 mod formats;
+mod handbook;
 mod human;
 mod paths;
 mod pipes;
