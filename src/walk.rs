@@ -21,16 +21,25 @@ pub(crate) struct Found {
     pub(crate) whole: bool,
 }
 
+/// Whether Markdown documents with recipes in them are wanted beside the recipe files.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum Documents {
+    /// Yes: their blocks are checked.
+    Too,
+    /// No.
+    Not,
+}
+
 /// Finds the files asked for and those of the whole project.
 pub(crate) fn find(root: &Root, settings: &Settings) -> Result<Found, Failure> {
-    let asked = asked(root, settings)?;
+    let asked = asked(root, settings, Documents::Too)?;
     let covered = root.asked.contains(&root.folder);
     let mut all: Vec<String> = asked.iter().cloned().collect();
     let mut whole = covered;
     // Without a mark nobody said that the files around the one asked for belong to it.
     if !covered && root.marked {
         let mut found = BTreeSet::new();
-        let within = walk(root, &root.folder, settings, &mut found, WHOLE)?;
+        let within = walk(root, &root.folder, settings, Documents::Too, &mut found, WHOLE)?;
         if within {
             all.extend(found.into_iter().filter(|path| !asked.contains(path)));
             whole = true;
@@ -40,11 +49,15 @@ pub(crate) fn find(root: &Root, settings: &Settings) -> Result<Found, Failure> {
 }
 
 /// The files asked for alone.
-pub(crate) fn asked(root: &Root, settings: &Settings) -> Result<BTreeSet<String>, Failure> {
+pub(crate) fn asked(
+    root: &Root,
+    settings: &Settings,
+    documents: Documents,
+) -> Result<BTreeSet<String>, Failure> {
     let mut found = BTreeSet::new();
     for path in &root.asked {
         if path.is_dir() {
-            walk(root, path, settings, &mut found, usize::MAX)?;
+            walk(root, path, settings, documents, &mut found, usize::MAX)?;
         } else {
             found.insert(below(root, path)?);
         }
@@ -52,11 +65,12 @@ pub(crate) fn asked(root: &Root, settings: &Settings) -> Result<BTreeSet<String>
     Ok(found)
 }
 
-/// Adds the `.coat` files below a folder; whether there were at most `most`.
+/// Adds the recipe files below a folder; whether there were at most `most`.
 fn walk(
     root: &Root,
     folder: &Path,
     settings: &Settings,
+    documents: Documents,
     found: &mut BTreeSet<String>,
     most: usize,
 ) -> Result<bool, Failure> {
@@ -65,7 +79,7 @@ fn walk(
     walker.require_git(false).ignore(false).git_global(false).overrides(excluded(&root.folder, settings)?);
     for entry in walker.build() {
         let entry = entry.map_err(|error| Failure::message(format!("a folder can't be read: {error}")))?;
-        if taken(root, &entry) {
+        if taken(root, &entry, documents) {
             if found.len() >= most {
                 return Ok(false);
             }
@@ -77,14 +91,22 @@ fn walk(
 
 /// Whether an entry is a recipe file. A link counts where it leads out of the project, so that it is told; one that
 /// stays inside leads to a file that is found by itself.
-fn taken(root: &Root, entry: &DirEntry) -> bool {
-    let coat = entry.path().extension().is_some_and(|extension| extension == "coat");
+fn taken(root: &Root, entry: &DirEntry, documents: Documents) -> bool {
+    let path = entry.path();
+    let coat = path.extension().is_some_and(|extension| extension == "coat")
+        || documents == Documents::Too && has_recipes(path);
     let Some(kind) = entry.file_type() else { return false };
     if kind.is_symlink() {
         let inside = entry.path().canonicalize().is_ok_and(|real| real.starts_with(&root.folder));
         return coat && !inside;
     }
     coat && !kind.is_dir()
+}
+
+/// Whether a file is a Markdown document with blocks of recipes in it.
+fn has_recipes(path: &Path) -> bool {
+    path.extension().is_some_and(|extension| extension == "md")
+        && std::fs::read_to_string(path).is_ok_and(|text| overcoat_lang::markdown::recipes(&text).is_some())
 }
 
 fn excluded(root: &Path, settings: &Settings) -> Result<Override, Failure> {

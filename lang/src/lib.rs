@@ -9,6 +9,7 @@ pub mod diagnostic;
 pub mod files;
 pub mod finding;
 pub mod handbook;
+pub mod markdown;
 pub mod messages;
 pub mod model;
 mod near;

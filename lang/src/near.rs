@@ -3,6 +3,10 @@
 /// The nearest of `candidates` to `word`, best first, at most three: those that are equal but for case, then those
 /// within an edit distance of a third of the word's length (at least one).
 pub fn nearest<'c>(word: &str, candidates: impl IntoIterator<Item = &'c str>) -> Vec<String> {
+    // Nobody mistypes so long a word, and the distance is quadratic.
+    if word.len() > 80 {
+        return Vec::new();
+    }
     let lower = word.to_lowercase();
     let most = (word.chars().count() / 3).max(1);
     let mut found: Vec<(usize, &str)> = candidates
@@ -14,7 +18,7 @@ pub fn nearest<'c>(word: &str, candidates: impl IntoIterator<Item = &'c str>) ->
                 if other == lower { 0 } else { strsim::damerau_levenshtein(&lower, &other).max(1) };
             (distance, candidate)
         })
-        .filter(|(distance, _)| *distance <= most)
+        .filter(|(distance, candidate)| *distance <= most && *distance < candidate.chars().count())
         .collect();
     found.sort();
     found.dedup();

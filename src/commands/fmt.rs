@@ -46,7 +46,7 @@ pub(super) fn run(arguments: &Fmt, global: &Global) -> Result<Status, Failure> {
     let mut files = BTreeMap::new();
     for path in &arguments.paths {
         let opened = Rc::new(open(std::slice::from_ref(path), global.root.as_deref())?);
-        for file in walk::asked(&opened.root, &opened.settings)? {
+        for file in walk::asked(&opened.root, &opened.settings, walk::Documents::Not)? {
             files.insert(opened.root.folder.join(&file), (opened.clone(), file));
         }
     }

@@ -35,7 +35,8 @@ pub(super) fn run(arguments: &Spectrum, global: &Global) -> Result<Status, Failu
         return Err(Failure::message(format!("`{file}` is a folder; name one file")));
     }
     let opened = open(std::slice::from_ref(&arguments.file), global.root.as_deref())?;
-    let paths: Vec<String> = walk::asked(&opened.root, &opened.settings)?.into_iter().collect();
+    let paths: Vec<String> =
+        walk::asked(&opened.root, &opened.settings, walk::Documents::Not)?.into_iter().collect();
     let project = load(&opened.files, &paths);
     let first = project.modules.iter().find(|module| {
         module.file.is_some_and(|file| paths.first() == Some(&project.sources.get(file).path))

@@ -112,3 +112,20 @@ fn paths_of_two_projects_are_told_apart() {
     let run = parent.run(&["check", "--root", ".", "a", "b"]);
     assert_eq!(run.status, Some(0), "{run:?}");
 }
+
+#[test]
+fn blocks_of_recipes_in_process_documents_are_checked_at_their_place() {
+    let project = Project::new();
+    project.write("house.coat", "material crown { source \"melt sheet\"  index 1.52 }\n");
+    project.write(
+        "process.md",
+        "# Process notes\n\nThe part as it is made:\n\n```coat\nuse crown from \"house.coat\"\nrecipe bare {\n    stack { incident air  substrate crown }\n    require reflectance <= 1 % at 550 nm\n}\n```\n",
+    );
+    project.write("plain.md", "Nothing to check here: `coat`.\n");
+    let output = project.run(&["check", ".", "--format", "json"]);
+    let report: serde_json::Value = serde_json::from_str(&output.stdout).unwrap();
+    assert_eq!(report["summary"]["recipes"], 1);
+    assert_eq!(report["diagnostics"][0]["file"], "process.md");
+    assert_eq!(report["diagnostics"][0]["line"], 9);
+    assert_eq!(report["diagnostics"][0]["column"], 5);
+}

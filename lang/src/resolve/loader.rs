@@ -60,7 +60,10 @@ impl Resolver<'_> {
         let source = Source::new(path, text);
         let text = source.text.clone();
         let file = self.sources.add(source);
-        let parsed = parse(&text, file);
+        let parsed = match path.ends_with(".md") {
+            true => parse(&crate::markdown::recipes(&text).unwrap_or_default(), file),
+            false => parse(&text, file),
+        };
         self.findings.extend(parsed.findings);
         let id = ModuleId(self.modules.len());
         let syntax = Arc::new(parsed.module);

@@ -2,7 +2,7 @@
 
 use super::expression::DEEPEST;
 use super::names::Kind;
-use super::{ItemId, ModuleId, Resolver, State, table};
+use super::{ItemId, ModuleId, Resolver, State, all, table};
 use crate::finding::FormFact;
 use crate::model::{Material, Origin};
 use crate::source::Span;
@@ -54,14 +54,7 @@ impl Resolver<'_> {
         let statements = &written.body.statements;
         macro_rules! once {
             ($word:literal, $pattern:pat => $value:expr) => {
-                self.once(
-                    module,
-                    $word,
-                    statements.iter().filter_map(|statement| match &statement.kind {
-                        $pattern => Some((statement.keyword, $value)),
-                        _ => None,
-                    }),
-                )
+                self.once(module, $word, all!(statements, $pattern => $value))
             };
         }
         let source = once!("source", MaterialStatement::Source(text) => text);

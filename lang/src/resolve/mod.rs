@@ -7,6 +7,7 @@
 mod chamber;
 mod clause;
 mod expression;
+mod layer;
 mod loader;
 mod material;
 mod names;
@@ -41,6 +42,17 @@ pub fn load(files: &dyn Files, paths: &[String]) -> Project {
     }
     resolver.finish()
 }
+
+/// The statements of one kind with their keywords: `all!(statements, Pattern(value) => value)`.
+macro_rules! all {
+    ($statements:expr, $pattern:pat => $value:expr) => {
+        $statements.iter().filter_map(|statement| match &statement.kind {
+            $pattern => Some((statement.keyword, $value)),
+            _ => None,
+        })
+    };
+}
+use all;
 
 /// A module by its number in [`Resolver::modules`].
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]

@@ -1,7 +1,7 @@
 //! Recipes.
 
 use super::names::Kind;
-use super::{ModuleId, Resolver};
+use super::{ModuleId, Resolver, all};
 use crate::code::Code;
 use crate::finding::FormFact;
 use crate::model::{Recipe, Reference, Waiver};
@@ -19,14 +19,7 @@ impl Resolver<'_> {
         let statements = &written.body.statements;
         macro_rules! once {
             ($word:literal, $pattern:pat => $value:expr) => {
-                self.once(
-                    module,
-                    $word,
-                    statements.iter().filter_map(|statement| match &statement.kind {
-                        $pattern => Some((statement.keyword, $value)),
-                        _ => None,
-                    }),
-                )
+                self.once(module, $word, all!(statements, $pattern => $value))
             };
         }
         let revision = once!("revision", RecipeStatement::Revision(text) => text);

@@ -5,10 +5,10 @@
 
 use super::ENOUGH;
 use super::keywords;
-use super::near::near;
 use super::slips;
 use super::tokens::{Token, TokenKind};
 use crate::finding::{Fact, Finding, FormFact};
+use crate::near::nearest;
 use crate::source::{FileId, Span};
 use crate::units;
 use logos::Logos;
@@ -330,12 +330,12 @@ impl<'a> Lexer<'a> {
             let keywords = keywords::KEYWORDS.iter().flat_map(|(_, words)| *words).chain(keywords::CLAUSES);
             if rest.trim_start_matches([' ', '\t']).starts_with(['\n', '\r'])
                 || keywords::known(word)
-                || (word.len() > 3 && !near(word, keywords.copied()).is_empty())
+                || (word.len() > 3 && !nearest(word, keywords.copied()).is_empty())
             {
                 return 0;
             }
         }
-        let near = near(written, units::all()).into_iter().map(str::to_owned).collect();
+        let near = nearest(written, units::all());
         let name = written.to_owned();
         self.report(start..start + length, FormFact::UnknownName { kind: "unit", name, near, import: None });
         self.push(TokenKind::Bad, start..start + length);

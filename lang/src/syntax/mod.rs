@@ -10,7 +10,6 @@ mod format;
 pub mod keywords;
 mod lexeme;
 mod lexer;
-mod near;
 mod parser;
 mod problem;
 mod slips;

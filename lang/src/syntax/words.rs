@@ -2,11 +2,11 @@
 
 use super::keywords::{self, BlockKind};
 use super::lexeme::Lexeme;
-use super::near::near;
 use super::problem::Problem;
 use super::slips::quoted;
 use super::tokens::TokenKind;
 use crate::finding::{Finding, FormFact};
+use crate::near::nearest;
 use crate::source::{FileId, Span};
 use crate::units;
 
@@ -96,7 +96,7 @@ fn misspelt(at: usize, lexemes: &[Lexeme<'_>], file: FileId) -> Option<Finding> 
         return None;
     }
     let starters = lexeme.block.starters();
-    let best = near(lexeme.text, starters.iter().copied()).into_iter().next()?;
+    let best = nearest(lexeme.text, starters.iter().copied()).into_iter().next()?;
     let fact = FormFact::Syntax {
         expected: vec![lexeme.block.label().to_owned()],
         found: Some(quoted(lexeme.text)),
@@ -177,6 +177,6 @@ fn word_hint(found: &Lexeme<'_>, expected: &[&'static str]) -> Option<String> {
     }
     let clauses = keywords::CLAUSES.iter().chain(found.block.starters()).copied();
     let words = expected.iter().copied().filter(|label| !label.contains([' ', '`'])).chain(clauses);
-    let best = near(found.text, words).into_iter().next()?;
+    let best = nearest(found.text, words).into_iter().next()?;
     Some(format!("`{best}` is probably meant"))
 }

@@ -3,9 +3,9 @@
 use super::super::optics::Trouble;
 use super::super::require::{Asked, Judged};
 use super::power::{engine_quantity, explain, light};
-use super::{angles, not_evaluated};
+use super::{angles, curve, not_evaluated};
 use crate::finding::Verdict;
-use crate::model::{Angles, Quantity, Requirement};
+use crate::model::{Angles, Requirement};
 use crate::report::At;
 use overcoat_engine as engine;
 
@@ -28,14 +28,7 @@ pub(super) fn judge(
     rising: bool,
     within: Option<(f64, f64)>,
 ) -> Result<Judged, Trouble> {
-    if !matches!(
-        asked.requirement.quantity,
-        Quantity::Reflectance
-            | Quantity::Transmittance
-            | Quantity::Absorptance
-            | Quantity::AbsorptanceIn(_)
-            | Quantity::OpticalDensity
-    ) {
+    if !curve(&asked.requirement.quantity) {
         return Err(not_evaluated("an edge of this quantity"));
     }
     let bands = searched(asked.requirement, within);

@@ -3,9 +3,9 @@
 use super::super::optics::Trouble;
 use super::super::require::{Asked, Candidate, Judged};
 use super::power::{engine_quantity, explain, light};
-use super::{angles, not_evaluated};
+use super::{angles, curve, not_evaluated};
 use crate::finding::Verdict;
-use crate::model::{Angles, Mask, Quantity, Requirement};
+use crate::model::{Angles, Mask, Requirement};
 use crate::report::At;
 use overcoat_engine as engine;
 
@@ -23,16 +23,7 @@ fn covers(mask: &Mask) -> (f64, f64) {
 
 /// The place where the quantity is nearest to its mask, or furthest beyond.
 pub(super) fn judge(asked: &Asked<'_>, mask: &Mask, most: bool) -> Result<Judged, Trouble> {
-    if asked.requirement.mean
-        || !matches!(
-            asked.requirement.quantity,
-            Quantity::Reflectance
-                | Quantity::Transmittance
-                | Quantity::Absorptance
-                | Quantity::AbsorptanceIn(_)
-                | Quantity::OpticalDensity
-        )
-    {
+    if asked.requirement.mean || !curve(&asked.requirement.quantity) {
         return Err(not_evaluated("a mask for this quantity"));
     }
     let covers = covers(mask);

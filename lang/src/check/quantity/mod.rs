@@ -49,6 +49,12 @@ fn candidates(asked: &Asked<'_>) -> Result<Vec<Candidate>, Trouble> {
     }
 }
 
+/// Whether a quantity is a curve against wavelength that the engine has.
+fn curve(quantity: &Quantity) -> bool {
+    use Quantity::*;
+    matches!(quantity, Reflectance | Transmittance | Absorptance | AbsorptanceIn(_) | OpticalDensity)
+}
+
 fn not_evaluated(what: &str) -> Trouble {
     Trouble::Verdict(Verdict::NotEvaluated { what: what.to_owned() })
 }

@@ -6,11 +6,11 @@
 use super::super::ast::{Block, Statement};
 use super::super::keywords::{self, BlockKind};
 use super::super::lexeme::Lexeme;
-use super::super::near::near;
 use super::super::problem::Tokens;
 use super::super::tokens::TokenKind;
 use super::pieces::{extent, lexeme};
 use super::{Extra, Rule};
+use crate::near::nearest;
 use chumsky::prelude::*;
 
 /// A statement of one line: its keyword, its body, and then nothing but the next statement or the end.
@@ -94,5 +94,5 @@ fn resumes(lexeme: &Lexeme<'_>, block: BlockKind) -> bool {
         || lexeme.first_on_line
             && (keywords::starts_some(lexeme.text)
                 || !keywords::reserved(lexeme.text)
-                    && !near(lexeme.text, block.starters().iter().copied()).is_empty())
+                    && !nearest(lexeme.text, block.starters().iter().copied()).is_empty())
 }
