@@ -15,7 +15,7 @@ pub fn nearest<'c>(word: &str, candidates: impl IntoIterator<Item = &'c str>) ->
         .map(|candidate| {
             let other = candidate.to_lowercase();
             let distance =
-                if other == lower { 0 } else { strsim::damerau_levenshtein(&lower, &other).max(1) };
+                if other == lower { 0 } else { strsim::damerau_levenshtein(word, candidate).max(1) };
             (distance, candidate)
         })
         .filter(|(distance, candidate)| *distance <= most && *distance < candidate.chars().count())
