@@ -202,6 +202,12 @@ pub enum OpticsError {
         /// The wavelength, nm.
         wavelength_nm: f64,
     },
+    /// A phase that has no meaning.
+    #[error("there is no phase: {why}")]
+    NoPhase {
+        /// Why.
+        why: &'static str,
+    },
     /// The result did not settle to the accuracy promised.
     #[error("the result did not settle: {estimate} within {error}, near {wavelength_nm} nm")]
     NotConverged {

@@ -20,11 +20,13 @@ mod dispersion;
 mod error;
 mod matrix;
 mod number;
+mod phase;
 mod plan;
 mod quadrature;
 mod quantity;
 mod response;
 mod stack;
+mod taylor;
 mod weight;
 
 pub use band::{
@@ -35,7 +37,7 @@ pub use colour::{Lab, Observer, VISIBLE_NM, ciede2000, colour};
 pub use dispersion::{Index, MixingRule, Oscillator};
 pub use error::{IndexError, ModelError, OpticsError, WeightError};
 pub use num_complex::Complex64;
-pub use quantity::{Light, Quantity};
+pub use quantity::{Light, Outgoing, PhaseKind, Quantity};
 pub use response::{Absorption, Polarisation, Response};
 pub use stack::{Body, Film, Stack};
 pub use weight::SpectralWeight;

@@ -6,7 +6,7 @@ use crate::plan::{Plan, Tilted};
 use crate::response::Polarisation;
 
 /// A quantity that a stack has at every wavelength and angle.
-#[derive(Clone, Debug, PartialEq, Eq)]
+#[derive(Clone, Debug, PartialEq)]
 pub enum Quantity {
     /// R.
     Reflectance,
@@ -25,6 +25,32 @@ pub enum Quantity {
     },
     /// −log₁₀ T.
     OpticalDensity,
+    /// The phase of the reflected or the transmitted amplitude, or a derivative of it in the angular frequency; of one
+    /// coating in a parallel beam of one polarisation (at normal incidence s and p are one).
+    Phase(Outgoing, PhaseKind),
+}
+
+/// Which light.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Outgoing {
+    /// What comes back.
+    Reflected,
+    /// What goes through.
+    Transmitted,
+}
+
+/// The phase or one of its derivatives.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum PhaseKind {
+    /// φ in rad, on the branch within half a turn of the aim.
+    Phase {
+        /// rad.
+        aim_rad: f64,
+    },
+    /// dφ/dω in fs.
+    Delay,
+    /// d²φ/dω² in fs².
+    Dispersion,
 }
 
 /// A beam: its polarisation, its angle of incidence, and the cone that it fills.
@@ -107,6 +133,8 @@ impl Quantity {
                 Quantity::Reflectance => plain(chain.response().reflectance),
                 Quantity::Transmittance => plain(chain.response().transmittance),
                 Quantity::Absorptance => plain(chain.response().absorptance),
+                // Phases do not add up; the probe works them out without a tally.
+                Quantity::Phase(..) => Tally::NONE,
                 Quantity::OpticalDensity => Tally { value: 1.0, ln_scale: chain.response().ln_transmittance },
                 Quantity::AbsorptanceIn { films, bodies, exit } => {
                     let absorption = chain.absorption();

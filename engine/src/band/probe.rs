@@ -7,6 +7,7 @@ use num_complex::Complex64;
 use super::cone::{Cone, Stretch};
 use super::mesh::{Along, Mesh};
 use crate::error::OpticsError;
+use crate::phase::phase;
 use crate::plan::Plan;
 use crate::quadrature::gauss_legendre;
 use crate::quantity::{Light, Quantity, Tally};
@@ -59,6 +60,9 @@ impl Probe {
 
     /// The value at a vacuum wavelength in nm.
     pub(crate) fn at(&self, wavelength_nm: f64) -> Result<f64, OpticsError> {
+        if let Quantity::Phase(outgoing, kind) = self.quantity {
+            return phase(&self.plan, &self.light, outgoing, kind, wavelength_nm);
+        }
         let indices = self.plan.indices(wavelength_nm)?;
         let Some(cone) = &self.cone else {
             let tilted = self.plan.tilted(&indices, wavelength_nm, self.light.angle_rad)?;

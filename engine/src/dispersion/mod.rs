@@ -17,6 +17,8 @@ pub use oscillator::Oscillator;
 
 use crate::constants::EV_NM;
 use crate::error::{IndexError, ModelError};
+use crate::number::Number;
+use crate::taylor::Taylor;
 use model::{Model, Photon};
 
 /// How many models may be built on one another.
@@ -53,6 +55,17 @@ impl Index {
             return Err(IndexError::Outside { wavelength_nm, range_nm });
         }
         self.evaluate(&Photon::<Complex64>::of_wavelength(wavelength_nm))
+    }
+
+    /// The index with its first two derivatives in the angular frequency ω in rad/fs, at the vacuum wavelength that
+    /// belongs to ω; where the constants are not smooth, those towards longer wavelengths.
+    pub(crate) fn series(&self, wavelength_nm: f64, omega: f64) -> Result<Taylor, IndexError> {
+        // The plain evaluation has every check.
+        self.at(wavelength_nm)?;
+        let cycle = wavelength_nm * omega;
+        let energy_ev = Taylor::variable(omega, EV_NM / cycle);
+        let wavelength_nm = Taylor::real(cycle) / Taylor::variable(omega, 1.0);
+        self.evaluate(&Photon { wavelength_nm, energy_ev })
     }
 
     /// The range of vacuum wavelengths in nm that the constants hold for; `None` is everywhere.

@@ -203,6 +203,7 @@ impl Optics {
                     wavelength: *wavelength_nm,
                 })
             }
+            OpticsError::NoPhase { why } => Trouble::Verdict(Verdict::NoPhase { why }),
             OpticsError::Dark { wavelength_nm } => {
                 Trouble::Verdict(Verdict::NoLight { wavelength: Some(*wavelength_nm) })
             }

@@ -61,6 +61,11 @@ pub enum Verdict {
         /// nm; none for the visible as a whole.
         wavelength: Option<f64>,
     },
+    /// A phase that has no meaning, and why.
+    NoPhase {
+        /// Why.
+        why: &'static str,
+    },
     /// A photocurrent under a light of unknown strength.
     NoIrradiance {
         /// The spectrum.

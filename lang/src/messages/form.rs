@@ -41,9 +41,9 @@ pub(super) fn words(fact: &FormFact, place: Place, sources: &Sources) -> Words {
         .related(*first, "the first one is here"),
         FormFact::UnitMismatch { role, needed: wanted, found, suggestion } => {
             let message = if role == wanted {
-                format!("this must be {}, and is {found}", needed(wanted))
+                format!("this must be {}, and is {found}", needed(wanted, suggestion.as_deref()))
             } else {
-                format!("{role} must be {}, and this is {found}", needed(wanted))
+                format!("{role} must be {}, and this is {found}", needed(wanted, suggestion.as_deref()))
             };
             let words = Words::new(Code::UnitMismatch, message);
             match suggestion {

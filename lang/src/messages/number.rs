@@ -102,7 +102,10 @@ fn list(names: &[String], word: &str) -> String {
 }
 
 /// The dimension's phrase with a unit, for what was needed: "a length, for example in `nm`".
-pub(super) fn needed(phrase: &str) -> String {
+pub(super) fn needed(phrase: &str, unit: Option<&str>) -> String {
+    if let Some(unit) = unit {
+        return format!("{phrase}, for example in `{unit}`");
+    }
     let all = [
         Dimension::Length,
         Dimension::Energy,

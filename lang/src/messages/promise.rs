@@ -92,6 +92,14 @@ fn verdict(fact: &PromiseFact) -> Words {
                 format!("in `{recipe}`, {} has no value {place}: no light comes that way", name(requirement)),
             )
         }
+        Verdict::NoPhase { why } => Words::new(
+            Code::InvalidValue,
+            format!(
+                "in `{recipe}`, {} has no meaning: {why}; promise it of one coating on a half-space, in a parallel beam that is \
+                 `polarised s` or `polarised p` or meets it at 0 deg",
+                name(requirement)
+            ),
+        ),
         Verdict::NoIrradiance { name, defined } => Words::new(
             Code::InvalidValue,
             format!(

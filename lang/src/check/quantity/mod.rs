@@ -4,6 +4,7 @@ mod angles;
 mod colour;
 mod edge;
 mod mask;
+mod phase;
 mod power;
 mod weighted;
 
@@ -20,6 +21,9 @@ pub(super) fn judge(asked: &Asked<'_>) -> Result<Judged, Trouble> {
         Bound::AtMostMask(curve) => return mask::judge(asked, curve, true),
         Bound::AtLeastMask(curve) => return mask::judge(asked, curve, false),
         Bound::NearColour { difference, aim } => return colour::judge(asked, *difference, *aim),
+        Bound::Range { min, max } if is_phase(&asked.requirement.quantity) => {
+            phase::judge(asked, *min, *max)?
+        }
         Bound::Range { min, max } => {
             let candidates = candidates(asked)?;
             Judged::worst(candidates.into_iter().map(|candidate| Judged::within(candidate, *min, *max)))
@@ -41,12 +45,14 @@ fn candidates(asked: &Asked<'_>) -> Result<Vec<Candidate>, Trouble> {
         Photocurrent(_) | PhotocurrentLoss(_) => weighted::photocurrent(asked),
         Emittance => weighted::emittance(asked),
         Colour(_) => Err(not_evaluated("a colour without an aim")),
-        Phase(_) => Err(not_evaluated("a phase")),
-        GroupDelay(_) => Err(not_evaluated("a group delay")),
-        GroupDelayDispersion(_) => Err(not_evaluated("a group-delay dispersion")),
+        Phase(_) | GroupDelay(_) | GroupDelayDispersion(_) => Err(not_evaluated("a phase in this form")),
         PeakField => Err(not_evaluated("a peak field")),
         Yield => Err(not_evaluated("a yield")),
     }
+}
+
+fn is_phase(quantity: &Quantity) -> bool {
+    matches!(quantity, Quantity::Phase(_) | Quantity::GroupDelay(_) | Quantity::GroupDelayDispersion(_))
 }
 
 /// Whether a quantity is a curve against wavelength that the engine has.

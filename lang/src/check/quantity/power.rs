@@ -9,11 +9,18 @@ use crate::report::At;
 use overcoat_engine::{self as engine, Extremes, Light, OpticsError, SpectralWeight};
 
 pub(super) fn candidates(asked: &Asked<'_>) -> Result<Vec<Candidate>, Trouble> {
-    let quantity = engine_quantity(asked)?;
+    quantity_candidates(asked, &engine_quantity(asked)?)
+}
+
+/// The values of one of the engine's quantities at the requirement's wavelengths and angles, or its means over the bands.
+pub(super) fn quantity_candidates(
+    asked: &Asked<'_>,
+    quantity: &engine::Quantity,
+) -> Result<Vec<Candidate>, Trouble> {
     if asked.requirement.mean {
-        return means(asked, &quantity);
+        return means(asked, quantity);
     }
-    extremes(asked, &quantity).map_err(|error| explain(asked, &error))
+    extremes(asked, quantity).map_err(|error| explain(asked, &error))
 }
 
 /// What the engine's error means for a requirement.
