@@ -202,6 +202,12 @@ pub enum OpticsError {
         /// The wavelength, nm.
         wavelength_nm: f64,
     },
+    /// A field inside the films that has no meaning.
+    #[error("there is no one field: {why}")]
+    NoField {
+        /// Why.
+        why: &'static str,
+    },
     /// A phase that has no meaning.
     #[error("there is no phase: {why}")]
     NoPhase {

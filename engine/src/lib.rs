@@ -18,6 +18,7 @@ mod colour;
 mod constants;
 mod dispersion;
 mod error;
+mod field;
 mod matrix;
 mod number;
 mod phase;
@@ -36,6 +37,7 @@ pub use band::{
 pub use colour::{Lab, Observer, VISIBLE_NM, ciede2000, colour};
 pub use dispersion::{Index, MixingRule, Oscillator};
 pub use error::{IndexError, ModelError, OpticsError, WeightError};
+pub use field::{Peak, peak_field};
 pub use num_complex::Complex64;
 pub use quantity::{Light, Outgoing, PhaseKind, Quantity};
 pub use response::{Absorption, Polarisation, Response};

@@ -28,6 +28,8 @@ pub enum Quantity {
     /// The phase of the reflected or the transmitted amplitude, or a derivative of it in the angular frequency; of one
     /// coating in a parallel beam of one polarisation (at normal incidence s and p are one).
     Phase(Outgoing, PhaseKind),
+    /// The greatest |E/E₀|² inside the films, of a stack without thick bodies.
+    PeakField,
 }
 
 /// Which light.
@@ -133,8 +135,8 @@ impl Quantity {
                 Quantity::Reflectance => plain(chain.response().reflectance),
                 Quantity::Transmittance => plain(chain.response().transmittance),
                 Quantity::Absorptance => plain(chain.response().absorptance),
-                // Phases do not add up; the probe works them out without a tally.
-                Quantity::Phase(..) => Tally::NONE,
+                // These do not add up; the probe works them out without a tally.
+                Quantity::Phase(..) | Quantity::PeakField => Tally::NONE,
                 Quantity::OpticalDensity => Tally { value: 1.0, ln_scale: chain.response().ln_transmittance },
                 Quantity::AbsorptanceIn { films, bodies, exit } => {
                     let absorption = chain.absorption();

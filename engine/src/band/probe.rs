@@ -7,6 +7,7 @@ use num_complex::Complex64;
 use super::cone::{Cone, Stretch};
 use super::mesh::{Along, Mesh};
 use crate::error::OpticsError;
+use crate::field::peak;
 use crate::phase::phase;
 use crate::plan::Plan;
 use crate::quadrature::gauss_legendre;
@@ -62,6 +63,9 @@ impl Probe {
     pub(crate) fn at(&self, wavelength_nm: f64) -> Result<f64, OpticsError> {
         if let Quantity::Phase(outgoing, kind) = self.quantity {
             return phase(&self.plan, &self.light, outgoing, kind, wavelength_nm);
+        }
+        if self.quantity == Quantity::PeakField {
+            return Ok(peak(&self.plan, &self.light, wavelength_nm)?.value);
         }
         let indices = self.plan.indices(wavelength_nm)?;
         let Some(cone) = &self.cone else {

@@ -203,7 +203,9 @@ impl Optics {
                     wavelength: *wavelength_nm,
                 })
             }
-            OpticsError::NoPhase { why } => Trouble::Verdict(Verdict::NoPhase { why }),
+            OpticsError::NoPhase { why } | OpticsError::NoField { why } => {
+                Trouble::Verdict(Verdict::Meaningless { why })
+            }
             OpticsError::Dark { wavelength_nm } => {
                 Trouble::Verdict(Verdict::NoLight { wavelength: Some(*wavelength_nm) })
             }

@@ -56,13 +56,26 @@ pub enum Verdict {
         /// Where.
         at: At,
     },
+    /// The field inside a film is too strong.
+    FieldHigh {
+        /// |E/E₀|².
+        value: f64,
+        /// The greatest allowed.
+        most: f64,
+        /// The film.
+        layer: String,
+        /// nm below the face that the light meets first.
+        depth: f64,
+        /// Where.
+        at: At,
+    },
     /// No light comes out that could have a colour or a density.
     NoLight {
         /// nm; none for the visible as a whole.
         wavelength: Option<f64>,
     },
-    /// A phase that has no meaning, and why.
-    NoPhase {
+    /// A phase or a field that has no meaning, and why.
+    Meaningless {
         /// Why.
         why: &'static str,
     },

@@ -85,6 +85,20 @@ fn verdict(fact: &PromiseFact) -> Words {
                 ),
             )
         }
+        Verdict::FieldHigh { value, most, layer, depth, at } => {
+            let digits = apart(*value, *most);
+            Words::new(
+                Code::RequirementMissed,
+                format!(
+                    "in `{recipe}`, peak_field is {}{}, {} above the {} that is allowed: in {layer}, {} nm below its front face",
+                    significant(*value, digits),
+                    place_of(at),
+                    significant(value - most, 3),
+                    significant(*most, digits),
+                    number::rounded(*depth, 1)
+                ),
+            )
+        }
         Verdict::NoLight { wavelength: nm } => {
             let place = nm.map_or("in the visible".to_owned(), |nm| format!("at {}", wavelength(nm)));
             Words::new(
@@ -92,14 +106,19 @@ fn verdict(fact: &PromiseFact) -> Words {
                 format!("in `{recipe}`, {} has no value {place}: no light comes that way", name(requirement)),
             )
         }
-        Verdict::NoPhase { why } => Words::new(
-            Code::InvalidValue,
-            format!(
-                "in `{recipe}`, {} has no meaning: {why}; promise it of one coating on a half-space, in a parallel beam that is \
-                 `polarised s` or `polarised p` or meets it at 0 deg",
-                name(requirement)
-            ),
-        ),
+        Verdict::Meaningless { why } => {
+            let beam = match requirement.quantity {
+                Quantity::PeakField => "",
+                _ => " that is `polarised s` or `polarised p` or meets it at 0 deg",
+            };
+            Words::new(
+                Code::InvalidValue,
+                format!(
+                    "in `{recipe}`, {} has no meaning: {why}; promise it of one coating on a half-space, in a parallel beam{beam}",
+                    name(requirement)
+                ),
+            )
+        }
         Verdict::NoIrradiance { name, defined } => Words::new(
             Code::InvalidValue,
             format!(

@@ -3,6 +3,7 @@
 mod angles;
 mod colour;
 mod edge;
+mod field;
 mod mask;
 mod phase;
 mod power;
@@ -23,6 +24,9 @@ pub(super) fn judge(asked: &Asked<'_>) -> Result<Judged, Trouble> {
         Bound::NearColour { difference, aim } => return colour::judge(asked, *difference, *aim),
         Bound::Range { min, max } if is_phase(&asked.requirement.quantity) => {
             phase::judge(asked, *min, *max)?
+        }
+        Bound::Range { min, max } if matches!(asked.requirement.quantity, Quantity::PeakField) => {
+            field::judge(asked, *min, *max)?
         }
         Bound::Range { min, max } => {
             let candidates = candidates(asked)?;
@@ -46,7 +50,7 @@ fn candidates(asked: &Asked<'_>) -> Result<Vec<Candidate>, Trouble> {
         Emittance => weighted::emittance(asked),
         Colour(_) => Err(not_evaluated("a colour without an aim")),
         Phase(_) | GroupDelay(_) | GroupDelayDispersion(_) => Err(not_evaluated("a phase in this form")),
-        PeakField => Err(not_evaluated("a peak field")),
+        PeakField => Err(not_evaluated("a peak field in this form")),
         Yield => Err(not_evaluated("a yield")),
     }
 }
