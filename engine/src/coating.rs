@@ -47,7 +47,9 @@ impl Coating {
         let flux_out = pair.flux().max(0.0);
         let mut faces: Vec<(f64, f64)> = Vec::new();
         let mut lossless: Vec<bool> = Vec::new();
+        let mut all_lossless = entry.permittivity.im == 0.0;
         for step in steps.rev() {
+            all_lossless &= step.is_lossless();
             if detail == Detail::ByFilm {
                 faces.push((pair.flux(), pair.ln_scale));
                 lossless.push(step.is_lossless());
@@ -71,9 +73,13 @@ impl Coating {
             coating.films = vec![0.0; faces.len()];
             return coating;
         }
-        coating.reflectance = difference.norm_sqr() / sum.norm_sqr();
+        // Without absorption |D|² = |N|² + 4 × both power flows, and in this form no rounding, not even at a
+        // resonance finer than any number, can make R + T other than 1.
+        let passed = 4.0 * flux_in * flux_out * (-2.0 * front.ln_scale).exp();
+        let whole = if all_lossless { difference.norm_sqr() + passed } else { sum.norm_sqr() };
+        coating.reflectance = difference.norm_sqr() / whole;
         // The power flow of a field in the stack over that of the arriving wave alone.
-        let share = 4.0 * (arriving.b * arriving.c).norm_sqr() / (flux_in * sum.norm_sqr());
+        let share = 4.0 * (arriving.b * arriving.c).norm_sqr() / (flux_in * whole);
         if flux_out > 0.0 {
             coating.ln_transmittance = (share * flux_out).ln() - 2.0 * front.ln_scale;
             coating.transmittance = share * flux_out * (-2.0 * front.ln_scale).exp();

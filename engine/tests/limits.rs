@@ -166,3 +166,22 @@ fn a_table_that_does_not_reach_names_its_material() {
     let dark = mean(&stack, &Quantity::Reflectance, &Light::normal(), &[(450.0, 500.0)], &nothing);
     assert!(matches!(dark, Err(OpticsError::WeightZero { .. })));
 }
+
+#[test]
+fn a_resonance_finer_than_any_number_keeps_the_balance() {
+    // A cavity between 40 and 40 pairs: the resonance is narrower than the spacing of numbers near its wavelength.
+    let index = |n: f64| Index::constant(n, 0.0).expect("an index");
+    let quarter = |n: f64| Film { index: index(n), thickness_nm: 1000.0 / (4.0 * n) };
+    let mut films: Vec<Film> = (0..40).flat_map(|_| [quarter(2.35), quarter(1.38)]).collect();
+    let back: Vec<Film> = films.iter().rev().cloned().collect();
+    films.push(Film { index: index(2.35), thickness_nm: 1000.0 / 2.35 });
+    films.extend(back);
+    let stack = Stack { incident: index(1.0), coatings: vec![films], bodies: vec![], exit: index(1.0) };
+    for wavelength in [999.999, 1000.0 - 1e-12, 1000.0, 1000.0 + 2e-13, 1000.001] {
+        let response = stack.response(wavelength, 0.0, Polarisation::S).expect("a response");
+        assert!(
+            (response.reflectance + response.transmittance - 1.0).abs() < 1e-12,
+            "{wavelength} {response:?}"
+        );
+    }
+}
