@@ -99,8 +99,9 @@ impl Optics {
     /// nothing in this stack.
     pub(super) fn target(&self, stack: &Stack, target: &Target, from_exit: bool) -> Option<Quantity> {
         let named = |name: &Option<String>| {
+            // `flash` is every copy of that layer, `flash[3]` the third.
             let base = name.as_ref().map(|name| name.split('[').next().unwrap_or(name));
-            base == Some(target.name.as_str())
+            base == Some(target.name.as_str()) || name.as_ref() == Some(&target.name)
         };
         let by_name = stack.layers().any(|layer| named(&layer.name));
         let chosen = |element: &Element| match element {

@@ -106,7 +106,9 @@ fn expired(waiver: &Waiver, today: Date) -> bool {
 }
 
 fn covers(waiver: &Waiver, code: Code, fact: &Fact) -> bool {
-    waiver.code == code && waiver.on.as_ref().is_none_or(|on| about(fact).iter().any(|name| name == on))
+    // A finding speaks for all copies of a layer in a repeat, so a waiver on one of them covers it.
+    let base = waiver.on.as_ref().map(|on| on.split('[').next().unwrap_or(on));
+    waiver.code == code && base.is_none_or(|on| about(fact).iter().any(|name| name == on))
 }
 
 /// The names that a finding is about: what may follow `on`.

@@ -17,7 +17,7 @@ use logos::Logos;
 #[derive(Logos, Clone, Copy, Debug, PartialEq)]
 #[logos(skip r"[ \t\r\n\x0C]+")]
 enum Raw {
-    #[regex(r"[A-Za-z_][A-Za-z0-9_]*", priority = 5)]
+    #[regex(r"[A-Za-z_][A-Za-z0-9_]*(\[[0-9]+\])?", priority = 5)]
     Word,
     /// Letters that no name may hold.
     #[regex(r"[\p{XID_Start}_][\p{XID_Continue}]*", priority = 3)]

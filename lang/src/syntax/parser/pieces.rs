@@ -50,6 +50,14 @@ pub(super) fn definition<'a>(label: &'static str) -> Rule<'a, Name> {
                 let name = lexeme.text.to_owned();
                 emitter.emit(Problem::fact(lexeme.span, FormFact::KeywordAsName { name }));
             }
+            if lexeme.text.ends_with(']') {
+                let fact = FormFact::InvalidValue {
+                    what: "a name".to_owned(),
+                    value: format!("`{}`", lexeme.text),
+                    must: "be free of an index: only a repeat numbers its layers".to_owned(),
+                };
+                emitter.emit(Problem::fact(lexeme.span, fact));
+            }
             as_name(&lexeme)
         })
         .labelled(label)
