@@ -141,6 +141,10 @@ impl Judged {
         if margin < 0.0 {
             return Some(Verdict::Missed { value, bound, least, at });
         }
+        // A share of the light can't be less than nothing or more than all of it.
+        if is_share(&requirement.quantity) && (bound == 0.0 || bound == 1.0) {
+            return None;
+        }
         let room = match (self.min, self.max) {
             (Some(min), Some(max)) => (max - min) / 2.0,
             // A share of the light has as much room as the nearer of 0 and 1 leaves it.
