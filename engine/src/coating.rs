@@ -22,6 +22,9 @@ pub(crate) struct Coating {
     pub(crate) ln_scale: f64,
 }
 
+/// An excess of R + T over 1 that tells that a resonance was lost in rounding: an error, not a result.
+const LOST: f64 = 1e-10;
+
 /// Which results are wanted beyond R and T.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(crate) enum Detail {
@@ -34,7 +37,7 @@ impl Coating {
     /// medium over what the arriving wave alone carries.
     ///
     /// Where the entry medium carries no power (a thick body in total reflection) all powers are zero: no
-    /// light arrives there.
+    /// light arrives there. A reflectance that is not a number stands for one lost in rounding.
     pub(crate) fn solve<'a>(
         steps: impl DoubleEndedIterator<Item = &'a Step<Complex64>>,
         entry: &Medium<Complex64>,
@@ -83,6 +86,9 @@ impl Coating {
         if flux_out > 0.0 {
             coating.ln_transmittance = (share * flux_out).ln() - 2.0 * front.ln_scale;
             coating.transmittance = share * flux_out * (-2.0 * front.ln_scale).exp();
+        }
+        if entry.permittivity.im == 0.0 && coating.reflectance + coating.transmittance > 1.0 + LOST {
+            coating.reflectance = f64::NAN;
         }
         if detail == Detail::ByFilm {
             faces.push((front.flux(), front.ln_scale));

@@ -1,5 +1,7 @@
 //! Optical constants: the refractive index N = n + ik of one material against the vacuum wavelength.
 
+#[cfg(test)]
+mod derivative;
 mod derived;
 mod formula;
 mod mixture;
