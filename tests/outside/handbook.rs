@@ -108,8 +108,8 @@ fn measured_materials_have_their_sources_rows() {
     comparison.finish(28);
 }
 
-/// The catalogue's index at the helium d line and its k at two of its wavelengths. SCHOTT AG, optical glass
-/// catalogue (2017), N-BK7: n_d = 1.51680.
+/// The catalogue's index at the helium d line and its k at two of its wavelengths. Optical glass catalogue,
+/// issue of 20 January 2017, glass 517642: n_d = 1.51680.
 #[test]
 fn crown_glass_has_the_catalogues_figures() {
     let crown = index("crown_517642");

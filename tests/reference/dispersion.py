@@ -62,7 +62,7 @@ def make():
         )
         if mpf(wavelength) >= mpf("0.3"):
             rows.append(
-                row("crown_517642", "SCHOTT AG, optical glass catalogue (2017), N-BK7", nm,
+                row("crown_517642", "optical glass catalogue, issue of 20 January 2017, glass 517642", nm,
                     sellmeier(catalogue, wavelength), k_too=False)
             )
     for wavelength in ("400", "550", "1000"):

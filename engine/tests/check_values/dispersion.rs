@@ -13,9 +13,9 @@ fn sellmeier(terms: &[(f64, f64)]) -> Index {
 
 #[test]
 fn sellmeier_glasses_and_crystals() {
-    // (B, C in µm): I. H. Malitson, J. Opt. Soc. Am. 55, 1205 (1965); SCHOTT data sheets, whose C are in µm²;
+    // (B, C in µm): I. H. Malitson, J. Opt. Soc. Am. 55, 1205 (1965); an optical glass catalogue's data sheets, whose C are in µm²;
     // I. H. Malitson and M. J. Dodge, J. Opt. Soc. Am. 62, 1405 (1972); I. H. Malitson, Appl. Opt. 2, 1103
-    // (1963). Catalogues print N-BK7 as 1.51680, 64.17; SF11 as 1.78472, 25.76.
+    // (1963). Catalogues print glass 517642 as 1.51680, 64.17; 785258 as 1.78472, 25.76.
     let root = |terms: [(f64, f64); 3]| terms.map(|(strength, square): (f64, f64)| (strength, square.sqrt()));
     let materials = [
         (
