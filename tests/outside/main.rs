@@ -4,6 +4,7 @@
 //! each test names the published source. Facts of the trade without a source are marked as common practice.
 
 mod closed_forms;
+mod colours;
 mod cones;
 mod data;
 mod dispersion;
@@ -11,6 +12,7 @@ mod extremes;
 mod handbook;
 mod means;
 mod neutron;
+mod phases;
 mod spectra;
 mod stacks;
 mod tables;

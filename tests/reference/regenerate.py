@@ -25,6 +25,8 @@ SCRIPTS = [
     "means",
     "extremes",
     "cone",
+    "colours",
+    "phases",
 ]
 
 
