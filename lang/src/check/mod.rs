@@ -1,5 +1,6 @@
 //! From the resolved project to a report: requirements evaluated, process limits compared, waivers applied.
 
+mod films;
 mod house;
 mod optics;
 mod process;

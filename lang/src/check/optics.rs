@@ -1,5 +1,6 @@
 //! The model's stack as the engine has it, and what the engine says of it in the shop's names.
 
+use super::films;
 use crate::finding::{Fact, OpticsFact, Verdict};
 use crate::model::{Element, LayerMaterial, Material, Requirement, SpectrumKind, Stack, Target, Weighting};
 use overcoat_engine::{self as engine, Index, IndexError, OpticsError, Quantity, SpectralWeight};
@@ -20,7 +21,8 @@ pub(super) struct Optics {
 /// Where the engine has an element.
 #[derive(Clone, Copy)]
 enum Seat {
-    Film(usize, usize),
+    /// Coating, first film, number of films.
+    Films(usize, usize, usize),
     Body(usize),
 }
 
@@ -48,8 +50,8 @@ pub(super) fn beyond(stack: &Stack) -> Option<&'static str> {
     if stack.layers().any(|layer| matches!(layer.material, LayerMaterial::Graded(_))) {
         return Some("a stack with a graded layer");
     }
-    if stack.layers().any(|layer| layer.rough.is_some_and(|(rms, _)| rms > 0.0)) {
-        return Some("a stack with a rough interface");
+    if films::too_rough(stack) {
+        return Some("an interface as rough as the film beside it is thick");
     }
     let textured = stack.exit.textured.is_some() || stack.incident.textured.is_some();
     let textured = textured
@@ -66,13 +68,14 @@ impl Optics {
         let mut coatings: Vec<Vec<engine::Film>> = vec![Vec::new()];
         let mut bodies = Vec::new();
         let mut seats = Vec::with_capacity(stack.elements.len());
-        for element in &stack.elements {
+        for (element, pieces) in stack.elements.iter().zip(films::pieces(stack)?) {
             match element {
-                Element::Layer(layer) => {
-                    let index = layer.material.materials().next()?.index.clone()?;
+                Element::Layer(_) => {
                     let coating = coatings.len() - 1;
-                    seats.push(Seat::Film(coating, coatings[coating].len()));
-                    coatings[coating].push(engine::Film { index, thickness_nm: layer.thickness });
+                    seats.push(Seat::Films(coating, coatings[coating].len(), pieces.len()));
+                    let films =
+                        pieces.into_iter().map(|(index, thickness_nm)| engine::Film { index, thickness_nm });
+                    coatings[coating].extend(films);
                 }
                 Element::Body(body) => {
                     seats.push(Seat::Body(bodies.len()));
@@ -118,11 +121,14 @@ impl Optics {
         for (element, seat) in stack.elements.iter().zip(&self.seats) {
             if chosen(element) {
                 match *seat {
-                    Seat::Film(coating, film) if from_exit => {
+                    Seat::Films(coating, first, count) if from_exit => {
                         let last = self.forward.coatings.len() - 1;
-                        films.push((last - coating, self.forward.coatings[coating].len() - 1 - film));
+                        let end = self.forward.coatings[coating].len() - 1;
+                        films.extend((first..first + count).map(|film| (last - coating, end - film)));
                     }
-                    Seat::Film(coating, film) => films.push((coating, film)),
+                    Seat::Films(coating, first, count) => {
+                        films.extend((first..first + count).map(|film| (coating, film)));
+                    }
                     Seat::Body(body) if from_exit => bodies.push(self.forward.bodies.len() - 1 - body),
                     Seat::Body(body) => bodies.push(body),
                 }
@@ -132,6 +138,20 @@ impl Optics {
         let exit = !by_name && target.material.as_ref().is_some_and(|of| of.is(behind));
         let nothing = films.is_empty() && bodies.is_empty() && !exit;
         (!nothing).then_some(Quantity::AbsorptanceIn { films, bodies, exit })
+    }
+
+    /// The element of the model's stack that a film of the first coating belongs to, as the light of a requirement counts.
+    pub(super) fn element_of(&self, film: usize, from_exit: bool) -> Option<usize> {
+        let coatings = &self.forward.coatings;
+        let (wanted, film) = if from_exit {
+            let last = coatings.len() - 1;
+            (last, (coatings[last].len() - 1).checked_sub(film)?)
+        } else {
+            (0, film)
+        };
+        self.seats.iter().position(|seat| {
+            matches!(*seat, Seat::Films(coating, first, count) if coating == wanted && (first..first + count).contains(&film))
+        })
     }
 
     /// The materials without constants somewhere in a band, nm.

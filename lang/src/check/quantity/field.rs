@@ -27,8 +27,6 @@ fn place(asked: &Asked<'_>, judged: &Judged) -> Option<Verdict> {
     let from_exit = asked.requirement.from_exit;
     let peak = engine::peak_field(asked.optics.facing(from_exit), &light(asked, judged.at.angle), wavelength)
         .ok()?;
-    let layers: Vec<_> = asked.stack.layers().collect();
-    let index = if from_exit { layers.len().checked_sub(1 + peak.film)? } else { peak.film };
-    let layer = layers.get(index)?.call();
+    let layer = asked.stack.layer(asked.optics.element_of(peak.film, from_exit)?)?.call();
     (value > most).then_some(Verdict::FieldHigh { value, most, layer, depth: peak.depth_nm, at: judged.at })
 }
