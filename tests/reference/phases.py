@@ -11,6 +11,9 @@ from common import document, double
 
 TOLERANCE = 0
 
+# Set here and not in make() alone: a constant has the digits of the moment at which it is read.
+mp.dps = 50
+
 LIGHT = mpf("299.792458")  # nm/fs
 
 
