@@ -217,6 +217,12 @@ pub fn wavelength_nm(value: f64, dimension: Dimension) -> Option<f64> {
     (nm.is_finite() && nm > 0.0).then_some(nm)
 }
 
+/// Whether a text is a number and nothing else: a unit can be written behind it.
+pub fn is_bare(text: &str) -> bool {
+    let digits = text.strip_prefix('-').unwrap_or(text).replace('_', "");
+    digits.starts_with(|first: char| first.is_ascii_digit()) && digits.parse::<f64>().is_ok()
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -235,6 +241,16 @@ mod tests {
         assert_eq!(canonical("µm"), Some("um"));
         assert_eq!(canonical("°"), Some("deg"));
         assert_eq!(canonical("parsec"), None);
+    }
+
+    #[test]
+    fn only_a_bare_number_takes_a_unit() {
+        assert!(["62", "-5", "1.5e3", "2_000"].into_iter().all(is_bare));
+        assert!(
+            ["5 %", "62 nm", "nan", "inf", "(5)", "5 + 1", "design", "- ", ""]
+                .into_iter()
+                .all(|text| !is_bare(text))
+        );
     }
 
     #[test]

@@ -5,6 +5,7 @@ use super::number::{needed, or_list, text};
 use crate::code::Code;
 use crate::finding::FormFact;
 use crate::source::{Place, Sources, Span};
+use crate::units::is_bare;
 
 pub(super) fn words(fact: &FormFact, place: Place, sources: &Sources) -> Words {
     match fact {
@@ -46,12 +47,13 @@ pub(super) fn words(fact: &FormFact, place: Place, sources: &Sources) -> Words {
                 format!("{role} must be {}, and this is {found}", needed(wanted, suggestion.as_deref()))
             };
             let words = Words::new(Code::UnitMismatch, message);
+            let number = text(place, sources);
             match suggestion {
-                Some(unit) => {
-                    let number = text(place, sources);
+                // Behind a share, a name or a calculation a unit would not mend anything.
+                Some(unit) if is_bare(&number) => {
                     words.fix(format!("write `{number} {unit}`"), place, format!("{number} {unit}"))
                 }
-                None => words,
+                _ => words,
             }
         }
         FormFact::MissingStatement { what, of, hint } => {
@@ -101,12 +103,12 @@ fn syntax(expected: &[String], found: Option<&str>, hint: Option<&str>) -> Words
     let found = found.map_or("the text ends".to_owned(), |found| format!("{found} can't stand"));
     let message = match expected.split_last() {
         None => format!("{found} here"),
-        Some((last, [])) => format!("{found} here; {last} is expected"),
+        Some((last, [])) => format!("{found} here; {}is expected", before_verb(last)),
         Some((last, rest)) => {
             // More than a handful of possibilities help nobody.
             let shown: Vec<&str> = rest.iter().map(String::as_str).take(4).collect();
             let others = if rest.len() > shown.len() { "something else" } else { last.as_str() };
-            format!("{found} here; {} or {others} is expected", shown.join(", "))
+            format!("{found} here; {} or {}is expected", shown.join(", "), before_verb(others))
         }
     };
     let words = Words::new(Code::Syntax, message);
@@ -114,6 +116,12 @@ fn syntax(expected: &[String], found: Option<&str>, hint: Option<&str>) -> Words
         Some(hint) => words.note(hint),
         None => words,
     }
+}
+
+/// A phrase with what parts it from its verb: an example at its end is closed by a comma.
+fn before_verb(phrase: &str) -> String {
+    let comma = if phrase.contains(", for example") { "," } else { "" };
+    format!("{phrase}{comma} ")
 }
 
 fn unknown(kind: &str, name: &str, near: &[String], import: Option<&str>, place: Place) -> Words {

@@ -1,6 +1,7 @@
 //! Chambers: sources, limits, variation.
 
 use super::names::Kind;
+use super::quantity::Wanted;
 use super::{ItemId, ModuleId, Resolver};
 use crate::finding::FormFact;
 use crate::model::{Chamber, Deposit, Forbid, Limit, LimitKind, LimitRange, Material, Spread, Variation};
@@ -264,12 +265,13 @@ impl Resolver<'_> {
         module: ModuleId,
         aim: &Expr,
         tolerance: &Expr,
-        dimension: Dimension,
+        wanted: impl Into<Wanted>,
         role: &str,
     ) -> Option<(f64, f64)> {
+        let wanted = wanted.into();
         let values = self.list(module, &[aim, tolerance]);
-        let middle = self.expect(module, aim.span, values[0]?, dimension, role);
-        let width = self.expect(module, tolerance.span, values[1]?, dimension, "a tolerance");
+        let middle = self.expect(module, aim.span, values[0]?, wanted, role);
+        let width = self.expect(module, tolerance.span, values[1]?, wanted, "a tolerance");
         let (middle, width) = (middle?, width?);
         if width < 0.0 {
             let shown = self.written(module, tolerance.span);

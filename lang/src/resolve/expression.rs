@@ -292,7 +292,7 @@ impl Resolver<'_> {
             }
             "sin" | "cos" | "tan" => {
                 if first.dimension != Dimension::Angle {
-                    let suggestion = (first.dimension == Dimension::Ratio).then_some("deg");
+                    // No unit is suggested: a bare number may be degrees or radians.
                     let role = format!("the argument of `{name}`");
                     self.mismatch(
                         module,
@@ -300,7 +300,7 @@ impl Resolver<'_> {
                         &role,
                         "an angle",
                         first.dimension.phrase(),
-                        suggestion,
+                        None,
                     );
                     return None;
                 }

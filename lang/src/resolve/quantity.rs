@@ -6,10 +6,23 @@ use crate::finding::{FormFact, OpticsFact};
 use crate::model::Material;
 use crate::source::Span;
 use crate::syntax::ast::{Expr, ExprKind, Range, Unit};
-use crate::units::{self, Dimension};
+use crate::units::{self, Dimension, is_bare};
 use num_complex::Complex64;
 use overcoat_engine::IndexError;
 use std::sync::Arc;
+
+/// The dimension that a place needs, with the unit that its messages name.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Wanted {
+    pub(super) dimension: Dimension,
+    pub(super) unit: &'static str,
+}
+
+impl From<Dimension> for Wanted {
+    fn from(dimension: Dimension) -> Wanted {
+        Wanted { dimension, unit: dimension.usual_unit() }
+    }
+}
 
 impl Resolver<'_> {
     /// A value of one dimension, in its base unit.
@@ -17,11 +30,11 @@ impl Resolver<'_> {
         &mut self,
         module: ModuleId,
         expr: &Expr,
-        dimension: Dimension,
+        wanted: impl Into<Wanted>,
         role: &str,
     ) -> Option<f64> {
         let value = self.value(module, expr)?;
-        self.expect(module, expr.span, value, dimension, role)
+        self.expect(module, expr.span, value, wanted, role)
     }
 
     /// The number of a value if it has this dimension; otherwise says so.
@@ -30,20 +43,32 @@ impl Resolver<'_> {
         module: ModuleId,
         span: Span,
         value: Value,
-        dimension: Dimension,
+        wanted: impl Into<Wanted>,
         role: &str,
     ) -> Option<f64> {
+        let Wanted { dimension, unit } = wanted.into();
         if value.dimension == dimension {
             return Some(value.number);
         }
-        let suggestion = (value.dimension == Dimension::Ratio).then(|| dimension.usual_unit());
-        let found = if value.dimension == Dimension::Ratio {
+        let found = self.found(module, span, value);
+        if value.dimension == Dimension::Ratio {
+            self.mismatch(module, span, role, dimension.phrase(), found, Some(unit));
+        } else if unit == dimension.usual_unit() {
+            self.mismatch(module, span, role, dimension.phrase(), found, None);
+        } else {
+            let needed = format!("{}, for example in `{unit}`", dimension.phrase());
+            self.mismatch(module, span, role, &needed, found, None);
+        }
+        None
+    }
+
+    /// What a value of the wrong dimension is called: `5 %` and a named ratio are ratios, `5` only lacks its unit.
+    fn found(&self, module: ModuleId, span: Span, value: Value) -> &'static str {
+        if value.dimension == Dimension::Ratio && is_bare(&self.written(module, span)) {
             "a number without a unit"
         } else {
             value.dimension.phrase()
-        };
-        self.mismatch(module, span, role, dimension.phrase(), found, suggestion);
-        None
+        }
     }
 
     /// A value that must be greater than zero (or not negative), in its base unit.
@@ -91,11 +116,7 @@ impl Resolver<'_> {
     ) -> Option<f64> {
         if !value.dimension.spectral() {
             let suggestion = (value.dimension == Dimension::Ratio).then_some("nm");
-            let found = if value.dimension == Dimension::Ratio {
-                "a number without a unit"
-            } else {
-                value.dimension.phrase()
-            };
+            let found = self.found(module, span, value);
             self.mismatch(module, span, role, "a wavelength", found, suggestion);
             return None;
         }
@@ -159,12 +180,13 @@ impl Resolver<'_> {
         &mut self,
         module: ModuleId,
         range: &Range,
-        dimension: Dimension,
+        wanted: impl Into<Wanted>,
         role: &str,
     ) -> Option<(f64, f64)> {
+        let wanted = wanted.into();
         let (low, high) = self.ends(module, range)?;
-        let low = self.expect(module, range.low.span, low, dimension, role);
-        let high = self.expect(module, range.high.span, high, dimension, role);
+        let low = self.expect(module, range.low.span, low, wanted, role);
+        let high = self.expect(module, range.high.span, high, wanted, role);
         let (low, high) = (low?, high?);
         if low > high {
             self.reversed(module, range, role);

@@ -1,6 +1,7 @@
 //! Requirements: what is promised, how much, where and under what.
 
 use super::names::Kind;
+use super::quantity::Wanted;
 use super::{ItemId, ModuleId, Resolver, table};
 use crate::finding::FormFact;
 use crate::model::{Angles, Beam, Bound, Mask, Observer, Quantity, Requirement, Side, Specification, Target};
@@ -186,7 +187,7 @@ impl Resolver<'_> {
     }
 
     fn bound(&mut self, module: ModuleId, bound: &ast::Bound, quantity: &Quantity) -> Option<Bound> {
-        let (dimension, role) = measures(quantity);
+        let (wanted, role) = measures(quantity);
         let is_colour = matches!(quantity, Quantity::Colour(_));
         let colour_bound = matches!(bound.kind, BoundKind::NearColour { .. });
         if is_colour != colour_bound {
@@ -202,30 +203,30 @@ impl Resolver<'_> {
         let range = |min, max| Some(Bound::Range { min, max });
         match &bound.kind {
             BoundKind::AtMost(expr) => {
-                let value = self.quantity(module, expr, dimension, role)?;
+                let value = self.quantity(module, expr, wanted, role)?;
                 self.share(module, expr.span, quantity, value)?;
                 range(None, Some(value))
             }
             BoundKind::AtLeast(expr) => {
-                let value = self.quantity(module, expr, dimension, role)?;
+                let value = self.quantity(module, expr, wanted, role)?;
                 self.share(module, expr.span, quantity, value)?;
                 range(Some(value), None)
             }
             BoundKind::Between(written) => {
-                let (low, high) = self.range(module, written, dimension, role)?;
+                let (low, high) = self.range(module, written, wanted, role)?;
                 self.share(module, written.low.span, quantity, low)?;
                 self.share(module, written.high.span, quantity, high)?;
                 range(Some(low), Some(high))
             }
             BoundKind::Around { aim, tolerance } => {
-                let (low, high) = self.around(module, aim, tolerance, dimension, role)?;
+                let (low, high) = self.around(module, aim, tolerance, wanted, role)?;
                 self.share(module, aim.span, quantity, (low + high) / 2.0)?;
                 range(Some(low), Some(high))
             }
             BoundKind::AtMostMask(path) => Some(Bound::AtMostMask(self.mask(module, path)?)),
             BoundKind::AtLeastMask(path) => Some(Bound::AtLeastMask(self.mask(module, path)?)),
             BoundKind::Crosses { level, rising, within } => {
-                let value = self.quantity(module, level, dimension, role);
+                let value = self.quantity(module, level, wanted, role);
                 let within = match within {
                     Some(range) => Some(self.band(module, range, "where an edge must lie")?),
                     None => None,
@@ -319,9 +320,9 @@ fn without_comment(line: &str) -> &str {
 }
 
 /// The dimension of a quantity's bound, and what to call a value of it.
-fn measures(quantity: &Quantity) -> (Dimension, &'static str) {
+fn measures(quantity: &Quantity) -> (Wanted, &'static str) {
     use Quantity::*;
-    match quantity {
+    let (dimension, role) = match quantity {
         Reflectance => (Dimension::Ratio, "a reflectance"),
         Transmittance => (Dimension::Ratio, "a transmittance"),
         Absorptance | AbsorptanceIn(_) => (Dimension::Ratio, "an absorptance"),
@@ -336,5 +337,11 @@ fn measures(quantity: &Quantity) -> (Dimension, &'static str) {
         PeakField => (Dimension::Ratio, "a peak field"),
         Emittance => (Dimension::Ratio, "an emittance"),
         Yield => (Dimension::Ratio, "a yield"),
-    }
+    };
+    let wanted = match quantity {
+        // The same dimension as the minutes of a run, and fifteen powers of ten from them.
+        GroupDelay(_) => Wanted { dimension, unit: "fs" },
+        _ => dimension.into(),
+    };
+    (wanted, role)
 }

@@ -26,8 +26,10 @@ pub(super) fn finding(problem: Problem, lexemes: &[Lexeme<'_>], file: FileId) ->
     }
     // What lacks its end is shown at its end, not on the line after.
     let ended = found.is_none_or(|found| found.text.is_empty() || found.first_on_line);
+    // Where only words could have followed, the statement was whole, and the keyword of another block starts the next.
+    let whole = !expected(&problem.expected, found).iter().any(|label| label.contains(' '));
     let misplaced = found.is_some_and(|found| {
-        found.first_on_line && keywords::starts_some(found.text) && !found.starts(found.block)
+        (found.first_on_line || whole) && keywords::starts_some(found.text) && !found.starts(found.block)
     });
     let span = match (found, before) {
         (_, Some(before)) if ended && !misplaced && !at_start(problem.at, lexemes) => before.span,
