@@ -153,4 +153,17 @@ macro_rules! suites {
     };
 }
 
-suites!(chambers, expressions, house, imports, materials, requirements, stacks, tables, text, waivers);
+suites!(
+    chambers,
+    expressions,
+    house,
+    imports,
+    materials,
+    quantities,
+    requirements,
+    spectra,
+    stacks,
+    tables,
+    text,
+    waivers
+);

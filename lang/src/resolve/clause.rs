@@ -30,6 +30,8 @@ pub(super) struct Clauses {
     pub(super) observer: Option<Observer>,
     pub(super) parts: Option<u32>,
     pub(super) nominal: bool,
+    /// What each clause sets, and where it stands.
+    pub(super) places: Vec<(&'static str, Span)>,
 }
 
 impl Resolver<'_> {
@@ -41,18 +43,17 @@ impl Resolver<'_> {
         quantity: Option<&Quantity>,
     ) -> Option<Clauses> {
         let mut clauses = Clauses::default();
-        let mut seen: Vec<(&'static str, Span)> = Vec::new();
         let mut sound = true;
         for clause in &written.clauses {
             let (word, understood) = self.clause(module, clause, quantity, &mut clauses);
             sound &= understood;
-            match seen.iter().find(|(other, _)| *other == word) {
+            match clauses.places.iter().find(|(other, _)| *other == word) {
                 Some((_, first)) => {
                     let first = self.place(module, *first);
                     self.report(module, clause.span, FormFact::Repeated { what: word.to_owned(), first });
                     sound = false;
                 }
-                None => seen.push((word, clause.span)),
+                None => clauses.places.push((word, clause.span)),
             }
         }
         sound.then_some(clauses)
@@ -252,15 +253,18 @@ impl Resolver<'_> {
             clauses.temperature = Some(self.kelvin(module, exprs[0].span, first.number)?);
             return Some("at … K");
         }
-        if first.dimension == Dimension::Ratio {
-            self.mismatch(
-                module,
-                exprs[0].span,
-                "what `at` takes",
-                "a wavelength or an angle",
-                "a number without a unit",
-                Some("deg"),
-            );
+        if first.dimension != Dimension::Angle {
+            let emittance = matches!(quantity, Some(Quantity::Emittance));
+            let needed = if emittance { "a temperature or an angle" } else { "a wavelength or an angle" };
+            // From 90 up it can't be an angle of incidence; below, an angle is likelier than anything else.
+            let unit = match (first.number < 90.0, emittance) {
+                (true, _) => "deg",
+                (false, true) => "K",
+                (false, false) => "nm",
+            };
+            let suggestion = (first.dimension == Dimension::Ratio).then_some(unit);
+            let found = self.found(module, exprs[0].span, first);
+            self.mismatch(module, exprs[0].span, "what `at` takes", needed, found, suggestion);
             return None;
         }
         let angles: Vec<Option<f64>> = values
@@ -283,6 +287,9 @@ impl Resolver<'_> {
         span: Span,
     ) -> Option<Clauses> {
         use Quantity::*;
+        if !self.all_apply(module, written, quantity, bound, &clauses) {
+            return None;
+        }
         let of = "the requirement";
         let standard = match quantity {
             Luminous(_) | Colour(_) => Some("d65"),
@@ -297,8 +304,18 @@ impl Resolver<'_> {
         if matches!(quantity, Solar(_) | SolarAbsorptance) && clauses.bands.is_empty() {
             clauses.bands.push(SOLAR_BAND);
         }
-        let plain =
-            matches!(quantity, Reflectance | Transmittance | Absorptance | AbsorptanceIn(_) | OpticalDensity);
+        let plain = matches!(
+            quantity,
+            Reflectance
+                | Transmittance
+                | Absorptance
+                | AbsorptanceIn(_)
+                | OpticalDensity
+                | Phase(_)
+                | GroupDelay(_)
+                | GroupDelayDispersion(_)
+                | PeakField
+        );
         if let (true, None, Some(under)) = (plain, written.mean, &clauses.under) {
             let (span, name) = (under.place.span, format!("`under {}`", under.spectrum.name));
             let must = "with `mean`: light weights a mean, and a bound at every wavelength needs no weight";

@@ -4,6 +4,7 @@
 //! item that is met again while it is being resolved closes a cycle. A wrong statement is reported once, at
 //! its place, and what rests on it is left out silently: causes, not consequences.
 
+mod applies;
 mod chamber;
 mod clause;
 mod expression;
@@ -178,7 +179,8 @@ impl<'a> Resolver<'a> {
         self.findings.push(Finding::new(fact, place));
     }
 
-    /// Reports every statement that may stand once and stands again; returns the first of the kind.
+    /// Reports every statement that may stand once and stands again; returns the first of the kind. Without a name in
+    /// `what`, each is called as it is written.
     fn once<'s, T>(
         &mut self,
         module: ModuleId,
@@ -189,7 +191,8 @@ impl<'a> Resolver<'a> {
         let first = found.next()?;
         let first_place = self.place(module, first.0);
         for (span, _) in found {
-            let fact = crate::finding::FormFact::Repeated { what: what.to_owned(), first: first_place };
+            let what = if what.is_empty() { self.written(module, span) } else { what.to_owned() };
+            let fact = crate::finding::FormFact::Repeated { what, first: first_place };
             self.report(module, span, fact);
         }
         Some(first)

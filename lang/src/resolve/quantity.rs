@@ -63,7 +63,7 @@ impl Resolver<'_> {
     }
 
     /// What a value of the wrong dimension is called: `5 %` and a named ratio are ratios, `5` only lacks its unit.
-    fn found(&self, module: ModuleId, span: Span, value: Value) -> &'static str {
+    pub(super) fn found(&self, module: ModuleId, span: Span, value: Value) -> &'static str {
         if value.dimension == Dimension::Ratio && is_bare(&self.written(module, span)) {
             "a number without a unit"
         } else {
@@ -198,12 +198,13 @@ impl Resolver<'_> {
     /// A band in nm, short end first. A band in energies, wavenumbers or frequencies runs the other way.
     pub(super) fn band(&mut self, module: ModuleId, range: &Range, role: &str) -> Option<(f64, f64)> {
         let (low, high) = self.ends(module, range)?;
-        let a = self.as_wavelength(module, range.low.span, low, role);
-        let b = self.as_wavelength(module, range.high.span, high, role);
+        let end = format!("an end of {role}");
+        let a = self.as_wavelength(module, range.low.span, low, &end);
+        let b = self.as_wavelength(module, range.high.span, high, &end);
         let (a, b) = (a?, b?);
         if low.dimension != high.dimension {
             let (needed, found) = (high.dimension.phrase(), low.dimension.phrase());
-            self.mismatch(module, range.low.span, role, needed, found, None);
+            self.mismatch(module, range.low.span, &end, needed, found, None);
             return None;
         }
         if low.number >= high.number {

@@ -228,7 +228,7 @@ impl Resolver<'_> {
             BoundKind::Crosses { level, rising, within } => {
                 let value = self.quantity(module, level, wanted, role);
                 let within = match within {
-                    Some(range) => Some(self.band(module, range, "where an edge must lie")?),
+                    Some(range) => Some(self.band(module, range, "the window of an edge")?),
                     None => None,
                 };
                 self.share(module, level.span, quantity, value?)?;

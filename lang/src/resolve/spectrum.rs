@@ -2,6 +2,7 @@
 
 use super::expression::DEEPEST;
 use super::names::Kind;
+use super::quantity::Wanted;
 use super::{ItemId, Resolver, State, table};
 use crate::model::{Origin, Spectrum, SpectrumKind};
 use crate::syntax::ast::{Item, SpectrumStatement};
@@ -63,7 +64,7 @@ impl Resolver<'_> {
             | SpectrumStatement::Product(_)) => Some((statement.keyword, kind)),
             _ => None,
         });
-        let kind = match self.once(module, "the spectrum's values", kinds) {
+        let kind = match self.once(module, "", kinds) {
             Some((span, kind)) => self.spectrum_kind(module, span, kind),
             None => {
                 if !written.body.broken {
@@ -109,7 +110,12 @@ impl Resolver<'_> {
                 Some(SpectrumKind::Table(rows))
             }
             SpectrumStatement::Blackbody(expr) => {
-                let celsius = self.quantity(module, expr, Dimension::Temperature, "a temperature")?;
+                let celsius = self.quantity(
+                    module,
+                    expr,
+                    Wanted { dimension: Dimension::Temperature, unit: "K" },
+                    "a body's temperature",
+                )?;
                 let kelvin = self.kelvin(module, expr.span, celsius)?;
                 Some(SpectrumKind::Blackbody(kelvin))
             }

@@ -45,7 +45,7 @@ pub(super) fn judge(
     };
     let one = |angle: f64, found: Option<f64>| {
         let at = At { wavelength: found, angle, polarisation: asked.requirement.polarisation };
-        let searched = (bands[0].0, bands[bands.len() - 1].1);
+        let searched = bands.first().zip(bands.last()).map_or(window, |(first, last)| (first.0, last.1));
         Judged {
             value: found,
             min: Some(window.0),
