@@ -33,7 +33,7 @@ impl Resolver<'_> {
                 LayerOptionKind::Spread(spread) => {
                     variation = self.spread(module, spread, Dimension::Length, Each::Layer, option.span);
                     sound &= variation.is_some();
-                    "a variation"
+                    "± …"
                 }
                 LayerOptionKind::Fixed => {
                     fixed = true;

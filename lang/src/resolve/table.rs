@@ -244,6 +244,19 @@ fn read_csv(bytes: &[u8]) -> Result<Csv, CsvProblem> {
         Ok(header) => header.iter().map(str::to_owned).collect(),
         Err(error) => return Err((None, None, format!("can't be read: {error}"))),
     };
+    if let ([only], Some(mark)) =
+        (columns.as_slice(), columns.first().and_then(|name| name.find([';', '\t'])))
+    {
+        let mark = if only[mark..].starts_with(';') { "`;`" } else { "tabs" };
+        return Err((
+            None,
+            None,
+            format!("parts its cells by {mark}; part them by `,` and write decimals with `.`"),
+        ));
+    }
+    if let Some(twice) = columns.iter().enumerate().find(|(at, name)| columns[..*at].contains(name)) {
+        return Err((None, Some(twice.1.clone()), "is the name of two columns; keep one".to_owned()));
+    }
     if columns.len() < 2 || columns.len() > MOST_COLUMNS {
         return Err((
             None,

@@ -159,6 +159,8 @@ fn hint(
         TokenKind::Text if expected.iter().any(|label| label.starts_with("the name of")) => {
             Some("names are written without quotes".to_owned())
         }
+        // Where a value lacks, as in `min()`, the parenthesis is not what is wrong.
+        TokenKind::RightParenthesis if expected.iter().any(|label| label.contains(", for example")) => None,
         TokenKind::RightParenthesis => Some("no parenthesis is open here".to_owned()),
         TokenKind::PlusMinus => Some("a variation or a tolerance has one value after the `±`".to_owned()),
         _ => None,
