@@ -76,11 +76,11 @@ impl Resolver<'_> {
         &mut self,
         module: ModuleId,
         expr: &Expr,
-        dimension: Dimension,
+        wanted: impl Into<Wanted>,
         role: &str,
         zero_too: bool,
     ) -> Option<f64> {
-        let number = self.quantity(module, expr, dimension, role)?;
+        let number = self.quantity(module, expr, wanted, role)?;
         if number > 0.0 || (zero_too && number == 0.0) {
             return Some(number);
         }

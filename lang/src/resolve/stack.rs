@@ -1,5 +1,6 @@
 //! Stacks: read as written from either end, turned into the light's order, repeats counted out.
 
+use super::quantity::Wanted;
 use super::{ModuleId, Resolver};
 use crate::finding::FormFact;
 use crate::model::{Body, BodyKind, Element, Layer, LayerMaterial, Material, Medium, Reference, Stack};
@@ -284,7 +285,9 @@ impl Resolver<'_> {
             );
             return None;
         };
-        let thickness = self.positive(module, written, Dimension::Length, "a thickness", false);
+        // A bare 3 behind a thick piece is no 3 nm.
+        let wanted = Wanted { dimension: Dimension::Length, unit: "mm" };
+        let thickness = self.positive(module, written, wanted, "a thickness", false);
         Some(Body {
             material: material?,
             thickness: thickness?,
