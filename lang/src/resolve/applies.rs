@@ -4,6 +4,7 @@ use super::clause::Clauses;
 use super::{ModuleId, Resolver};
 use crate::model::{Bound, Quantity};
 use crate::syntax::ast::Require;
+use overcoat_engine::VISIBLE_NM;
 
 impl Resolver<'_> {
     /// Reports every clause that the quantity or its bound has no use for; whether there was none.
@@ -67,6 +68,7 @@ fn useless(
         ("at … deg" | "cone" | "polarised", Emittance) if clauses.hemispherical => {
             Some("`hemispherical` takes in every angle and both polarisations")
         }
+        ("over", Luminous(_) | Colour(_)) if clauses.bands == [VISIBLE_NM] => None,
         ("over", Luminous(_) | Colour(_)) => Some("its band is the visible, 380 .. 780 nm"),
         ("at … nm", Luminous(_) | Colour(_)) => Some("it is one number for the whole visible"),
         ("at … nm", Solar(_) | SolarAbsorptance | Photocurrent(_) | PhotocurrentLoss(_) | Emittance) => {
