@@ -3,6 +3,7 @@
 use num_complex::Complex64;
 
 use crate::matrix::{Medium, Mode, Step};
+use crate::response::ln_mean;
 
 /// What a coating does to a wave that arrives in one of the two media about it. Powers refer to the
 /// arriving wave's.
@@ -101,6 +102,17 @@ impl Coating {
             coating.films = flows.windows(2).zip(lossless.iter().rev()).map(share).collect();
         }
         coating
+    }
+
+    /// The powers of unpolarised light from those of s and p.
+    pub(crate) fn mean(&self, p: &Coating) -> Coating {
+        Coating {
+            reflectance: 0.5 * (self.reflectance + p.reflectance),
+            transmittance: 0.5 * (self.transmittance + p.transmittance),
+            ln_transmittance: ln_mean(self.ln_transmittance, p.ln_transmittance),
+            films: self.films.iter().zip(&p.films).map(|(s, p)| 0.5 * (s + p)).collect(),
+            ..*self
+        }
     }
 
     /// Whether every number is one.

@@ -129,6 +129,18 @@ pub enum WeightError {
 /// Why a stack could not be evaluated.
 #[derive(Clone, Debug, Error)]
 pub enum OpticsError {
+    /// An angle that facets of upright pyramids can't have.
+    #[error("facets of {facets_rad} rad: the angle must lie between 0 and π/2")]
+    Facets {
+        /// What was given, rad.
+        facets_rad: f64,
+    },
+    /// Light that does not fall along the axes of the pyramids of a textured half-space.
+    #[error("a textured half-space is evaluated at normal incidence, not at {angle_rad} rad")]
+    Textured {
+        /// What was asked for, rad.
+        angle_rad: f64,
+    },
     /// A material of the stack has no optical constants at a wavelength.
     #[error("{cause}")]
     Material {

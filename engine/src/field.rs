@@ -32,14 +32,24 @@ pub struct Peak {
 /// # Errors
 /// As [`value`](crate::value); [`OpticsError::NoField`] for a stack with a thick body, without films, or under a cone.
 pub fn peak_field(stack: &Stack, light: &Light, wavelength_nm: f64) -> Result<Peak, OpticsError> {
-    peak(&Plan::new(stack)?, light, wavelength_nm)
+    peak(&plan(stack)?, light, wavelength_nm)
 }
 
-/// The same of a prepared stack.
+/// A stack prepared for fields, with steps through smooth profiles fine enough to see every crest.
+pub(crate) fn plan(stack: &Stack) -> Result<Plan, OpticsError> {
+    Plan::new(&stack.refined(8))
+}
+
+/// The same of a stack prepared for fields.
 pub(crate) fn peak(plan: &Plan, light: &Light, wavelength_nm: f64) -> Result<Peak, OpticsError> {
     if !plan.bodies.is_empty() {
         return Err(OpticsError::NoField {
             why: "behind a thick piece the waves add in power, not in amplitude",
+        });
+    }
+    if plan.is_textured() {
+        return Err(OpticsError::NoField {
+            why: "on a textured face every ray has met facets at its own places",
         });
     }
     if light.cone_half_angle_rad > 0.0 {
@@ -49,11 +59,27 @@ pub(crate) fn peak(plan: &Plan, light: &Light, wavelength_nm: f64) -> Result<Pea
     plan.at(wavelength_nm, light.angle_rad)?;
     let inside = Inside::new(plan, light, wavelength_nm)?;
     let mut best: Option<Peak> = None;
-    for film in 0..plan.coatings[0].len() {
-        let found = inside.peak(film)?;
-        if best.is_none_or(|best| found.value > best.value) {
-            best = Some(found);
+    let mut at = 0;
+    for layers in plan.coatings[0].chunk_by(|one, next| one.film == next.film) {
+        let film = layers[0].film;
+        // The depth below the film's front face.
+        let mut front = 0.0;
+        let mut found = Vec::new();
+        if plan.is_smooth(&layers[0]) {
+            found.push(inside.crest(at..at + layers.len()));
+        } else {
+            for (place, layer) in layers.iter().enumerate() {
+                let peak = inside.peak(at + place)?;
+                found.push((front + peak.0, peak.1));
+                front += layer.thickness_nm;
+            }
         }
+        for (depth_nm, value) in found {
+            if best.is_none_or(|best| value > best.value) {
+                best = Some(Peak { value, film, depth_nm });
+            }
+        }
+        at += layers.len();
     }
     let best = best.ok_or(OpticsError::NoField { why: "there is no film to have one" })?;
     if best.value.is_finite() {
@@ -66,6 +92,7 @@ pub(crate) fn peak(plan: &Plan, light: &Light, wavelength_nm: f64) -> Result<Pea
 /// The fields at the back faces of all films.
 struct Inside<'a> {
     plan: &'a Plan,
+    indices: Vec<Complex64>,
     media: Vec<Medium<Complex64>>,
     alpha: Complex64,
     wave_number: f64,
@@ -78,9 +105,7 @@ impl Inside<'_> {
     fn new<'a>(plan: &'a Plan, light: &Light, wavelength_nm: f64) -> Result<Inside<'a>, OpticsError> {
         let indices = plan.indices(wavelength_nm)?;
         let alpha = indices[0] * light.angle_rad.sin();
-        let mut media: Vec<Medium<Complex64>> =
-            indices.iter().map(|index| Medium::new(*index, &alpha)).collect();
-        media[0].normal_squared = indices[0] * indices[0] * light.angle_rad.cos().powi(2);
+        let media = plan.tilted_media(&indices, light.angle_rad);
         let wave_number = std::f64::consts::TAU / wavelength_nm;
         let mut modes = Vec::new();
         for (mode, share) in [Mode::S, Mode::P].into_iter().zip(light.polarisation.shares()) {
@@ -101,46 +126,75 @@ impl Inside<'_> {
             let amplitude = sum / (2.0 * arriving.b * arriving.c);
             modes.push((mode, share / amplitude.norm_sqr(), pair.ln_scale, backs));
         }
-        Ok(Inside { plan, media, alpha, wave_number, modes })
+        Ok(Inside { plan, indices, media, alpha, wave_number, modes })
     }
 
     /// |E/E₀|² at a depth in nm below a film's front face.
-    fn square(&self, film: usize, depth_nm: f64) -> f64 {
-        let layer = &self.plan.coatings[0][film];
+    fn square(&self, layer: usize, depth_nm: f64) -> f64 {
+        let (film, layer) = (layer, &self.plan.coatings[0][layer]);
         let medium = &self.media[layer.material];
         let rest = Complex64::new(self.wave_number * (layer.thickness_nm - depth_nm).max(0.0), 0.0);
         let step = Step::new(medium, &rest);
+        let share = if layer.thickness_nm > 0.0 { depth_nm / layer.thickness_nm } else { 0.0 };
+        let permittivity = self.plan.permittivity(layer, &self.indices, share);
         let of = |(mode, share, ln_scale, backs): &(Mode, f64, f64, Vec<Pair<Complex64>>)| {
             let pair = step.carry(&backs[film], *mode);
             let across = match mode {
                 Mode::S => 0.0,
-                Mode::P => (self.alpha * pair.c / medium.permittivity).norm_sqr(),
+                Mode::P => (self.alpha * pair.c / permittivity).norm_sqr(),
             };
             share * (pair.b.norm_sqr() + across) * (2.0 * (pair.ln_scale - ln_scale)).exp()
         };
         self.modes.iter().map(of).sum()
     }
 
-    fn peak(&self, film: usize) -> Result<Peak, OpticsError> {
-        let layer = &self.plan.coatings[0][film];
+    /// The depth in nm and the height of the greatest field in a smooth profile.
+    ///
+    /// Only at the ends of whole steps, each of two layers, are the fields as exact as everywhere else; between them a parabola
+    /// runs through three.
+    fn crest(&self, layers: std::ops::Range<usize>) -> (f64, f64) {
+        let mut samples = Vec::new();
+        let mut depth = 0.0;
+        for step in layers.clone().step_by(2) {
+            samples.push((depth, self.square(step, 0.0)));
+            depth += 2.0 * self.plan.coatings[0][step].thickness_nm;
+        }
+        let last = layers.end - 1;
+        samples.push((depth, self.square(last, self.plan.coatings[0][last].thickness_nm)));
+        let best = (0..samples.len()).max_by(|&a, &b| samples[a].1.total_cmp(&samples[b].1)).unwrap_or(0);
+        let (Some(before), Some(after)) = (best.checked_sub(1), samples.get(best + 1)) else {
+            return samples[best];
+        };
+        let ((x, y), left, right) = (samples[best], samples[before].1, after.1);
+        let bend = left - 2.0 * y + right;
+        if bend >= 0.0 {
+            return (x, y);
+        }
+        let slope = 0.5 * (right - left);
+        (x - slope / bend * (after.0 - x), y - 0.5 * slope * slope / bend)
+    }
+
+    /// The depth in nm and the height of the greatest field in a layer of one material.
+    fn peak(&self, layer: usize) -> Result<(f64, f64), OpticsError> {
+        let (film, layer) = (layer, &self.plan.coatings[0][layer]);
         let waves = layer.thickness_nm * self.wave_number * self.media[layer.material].normal().re
             / std::f64::consts::TAU;
         let steps = (32.0 * waves).ceil().clamp(8.0, 1e6) as usize;
         let at = |step: usize| layer.thickness_nm * step as f64 / steps as f64;
         let values: Vec<f64> = (0..=steps).map(|step| self.square(film, at(step))).collect();
         let greatest = values.iter().copied().fold(0.0, f64::max);
-        let mut best = Peak { value: -1.0, film, depth_nm: 0.0 };
+        let mut best = (0.0, -1.0);
         for (step, &value) in values.iter().enumerate() {
-            if value > best.value {
-                best = Peak { value, film, depth_nm: at(step) };
+            if value > best.1 {
+                best = (at(step), value);
             }
             let inner = step > 0 && step < steps && value >= values[step - 1] && value >= values[step + 1];
             // Between samples a crest is at most a fiftieth higher than its nearest sample.
             if inner && value > 0.9 * greatest {
                 let (lo, hi) = (at(step - 1), at(step + 1));
                 let (depth_nm, least) = minimum_between(lo, hi, |depth| Ok(-self.square(film, depth)))?;
-                if -least > best.value {
-                    best = Peak { value: -least, film, depth_nm };
+                if -least > best.1 {
+                    best = (depth_nm, -least);
                 }
             }
         }

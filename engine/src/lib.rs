@@ -18,7 +18,9 @@ mod colour;
 mod constants;
 mod dispersion;
 mod error;
+mod facets;
 mod field;
+mod graded;
 mod matrix;
 mod number;
 mod phase;
@@ -28,6 +30,7 @@ mod quantity;
 mod response;
 mod stack;
 mod taylor;
+mod tilted;
 mod weight;
 
 pub use band::{
@@ -38,6 +41,7 @@ pub use colour::{Lab, Observer, VISIBLE_NM, ciede2000, colour};
 pub use dispersion::{Index, MixingRule, Oscillator};
 pub use error::{IndexError, ModelError, OpticsError, WeightError};
 pub use field::{Peak, peak_field};
+pub use graded::{Gradient, Profile, Steps};
 pub use num_complex::Complex64;
 pub use quantity::{Light, Outgoing, PhaseKind, Quantity};
 pub use response::{Absorption, Polarisation, Response};

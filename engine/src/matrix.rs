@@ -37,6 +37,11 @@ pub(crate) struct Medium<N> {
     pub(crate) permittivity: N,
     /// q² = N² − α².
     pub(crate) normal_squared: N,
+    /// q²/N².
+    pub(crate) ratio: N,
+    /// For p the squared normal component is the product of N² and `ratio`; given where that is not q², as in the mean of
+    /// two media.
+    p_squared: Option<N>,
 }
 
 impl<N: Number> Medium<N> {
@@ -45,7 +50,33 @@ impl<N: Number> Medium<N> {
         let permittivity = index.clone() * index.clone();
         // A product of sum and difference keeps the digits of q² near the critical angle.
         let normal_squared = (index.clone() - alpha.clone()) * (index.clone() + alpha.clone());
-        Medium { index, permittivity, normal_squared }
+        Medium::with_normal(index, permittivity, normal_squared)
+    }
+
+    /// The medium of incidence, whose q = N cos θ is known without the loss of digits near grazing incidence.
+    pub(crate) fn of_incidence(index: N, angle_rad: f64) -> Self {
+        let permittivity = index.clone() * index.clone();
+        let normal_squared = permittivity.scale(angle_rad.cos().powi(2));
+        Medium::with_normal(index, permittivity, normal_squared)
+    }
+
+    fn with_normal(index: N, permittivity: N, normal_squared: N) -> Self {
+        let ratio = normal_squared.clone() / permittivity.clone();
+        Medium { index, permittivity, normal_squared, ratio, p_squared: None }
+    }
+
+    /// The mean of two media, as a step of fourth order through a profile asks for: of ε along the film, of 1/ε across it.
+    pub(crate) fn mean(one: &Self, share: f64, other: &Self) -> Self {
+        let mean = |a: &N, b: &N| a.scale(share) + b.scale(1.0 - share);
+        let permittivity = mean(&one.permittivity, &other.permittivity);
+        let ratio = mean(&one.ratio, &other.ratio);
+        Medium {
+            index: permittivity.sqrt(),
+            normal_squared: mean(&one.normal_squared, &other.normal_squared),
+            p_squared: Some(permittivity.clone() * ratio.clone()),
+            permittivity,
+            ratio,
+        }
     }
 
     /// q, the normal component of the wave vector in units of k₀.
@@ -64,33 +95,44 @@ impl<N: Number> Medium<N> {
     }
 }
 
-/// A film's matrix without what the polarisation decides; s and p share the sine and the cosine.
+/// A film's matrix without what the polarisation decides; but in the mean of two media s and p share the sine and the cosine.
 #[derive(Clone, Debug)]
 pub(crate) struct Step<N> {
-    cos: N,
-    /// −i k₀ d sin δ/δ.
-    lift: N,
+    turn: Turn<N>,
+    p_turn: Option<Turn<N>>,
     /// q².
     normal_squared: N,
     /// N².
     permittivity: N,
     /// q²/N².
     ratio: N,
+}
+
+#[derive(Clone, Debug)]
+struct Turn<N> {
+    cos: N,
+    /// −i k₀ d sin δ/δ.
+    lift: N,
     ln_scale: f64,
+}
+
+impl<N: Number> Turn<N> {
+    fn new(normal_squared: &N, depth: &N) -> Self {
+        let squared = normal_squared.clone() * depth.clone() * depth.clone();
+        let (cos, sinc, ln_scale) = N::cos_sinc(&squared);
+        Turn { cos, lift: N::constant(-Complex64::I) * depth.clone() * sinc, ln_scale }
+    }
 }
 
 impl<N: Number> Step<N> {
     /// The matrix of a film, from k₀ d.
     pub(crate) fn new(medium: &Medium<N>, depth: &N) -> Self {
-        let squared = medium.normal_squared.clone() * depth.clone() * depth.clone();
-        let (cos, sinc, ln_scale) = N::cos_sinc(&squared);
         Step {
-            cos,
-            lift: N::constant(-Complex64::I) * depth.clone() * sinc,
+            turn: Turn::new(&medium.normal_squared, depth),
+            p_turn: medium.p_squared.as_ref().map(|squared| Turn::new(squared, depth)),
             normal_squared: medium.normal_squared.clone(),
             permittivity: medium.permittivity.clone(),
-            ratio: medium.normal_squared.clone() / medium.permittivity.clone(),
-            ln_scale,
+            ratio: medium.ratio.clone(),
         }
     }
 
@@ -102,14 +144,17 @@ impl<N: Number> Step<N> {
     /// The fields at the film's front from those at its back.
     pub(crate) fn carry(&self, behind: &Pair<N>, mode: Mode) -> Pair<N> {
         let (b, c) = (behind.b.clone(), behind.c.clone());
-        let (over, times) = match mode {
-            Mode::S => (c.clone(), self.normal_squared.clone() * b.clone()),
-            Mode::P => (self.ratio.clone() * c.clone(), self.permittivity.clone() * b.clone()),
+        let (turn, over, times) = match mode {
+            Mode::S => (&self.turn, c.clone(), self.normal_squared.clone() * b.clone()),
+            Mode::P => {
+                let turn = self.p_turn.as_ref().unwrap_or(&self.turn);
+                (turn, self.ratio.clone() * c.clone(), self.permittivity.clone() * b.clone())
+            }
         };
         let front = Pair {
-            b: self.cos.clone() * b + self.lift.clone() * over,
-            c: self.lift.clone() * times + self.cos.clone() * c,
-            ln_scale: behind.ln_scale + self.ln_scale,
+            b: turn.cos.clone() * b + turn.lift.clone() * over,
+            c: turn.lift.clone() * times + turn.cos.clone() * c,
+            ln_scale: behind.ln_scale + turn.ln_scale,
         };
         front.in_range()
     }

@@ -11,7 +11,7 @@
 use num_complex::Complex64;
 
 use crate::error::OpticsError;
-use crate::matrix::{Medium, Mode, Step};
+use crate::matrix::{Mode, Step};
 use crate::number::Number;
 use crate::plan::Plan;
 use crate::quantity::{Light, Outgoing, PhaseKind};
@@ -56,6 +56,9 @@ fn mode(plan: &Plan, light: &Light) -> Result<Mode, OpticsError> {
     if !plan.bodies.is_empty() {
         return refuse("reflections at the two sides of a thick piece add in power, not in amplitude");
     }
+    if plan.is_textured() {
+        return refuse("on a textured face every ray has met facets at its own places");
+    }
     if light.cone_half_angle_rad > 0.0 {
         return refuse("the rays of a cone have phases of their own");
     }
@@ -82,9 +85,8 @@ fn amplitude(
         let at = |cause| OpticsError::Material { index: index.clone(), cause };
         indices.push(index.series(wavelength_nm, omega).map_err(at)?);
     }
-    let alpha = indices[0].scale(angle_rad.sin());
-    let mut media: Vec<Medium<Taylor>> = indices.iter().map(|index| Medium::new(*index, &alpha)).collect();
-    media[0].normal_squared = (indices[0] * indices[0]).scale(angle_rad.cos().powi(2));
+    plan.mix(&mut indices, wavelength_nm)?;
+    let media = plan.tilted_media(&indices, angle_rad);
     let wave_number = Taylor::variable(omega, 1.0 / LIGHT_NM_FS);
     let exit = media[plan.exit].wave(mode);
     let arriving = media[0].wave(mode);

@@ -7,28 +7,57 @@ use std::f64::consts::TAU;
 
 use num_complex::Complex64;
 
-use crate::bodies::{Chain, Link};
-use crate::coating::{Coating, Detail};
-use crate::dispersion::Index;
+use crate::dispersion::{Index, MixingRule, mix};
 use crate::error::{IndexError, OpticsError};
-use crate::matrix::{Medium, Mode, Step};
+use crate::facets::{Bounce, bounces};
+use crate::graded::{Gradient, Profile, Steps};
+use crate::matrix::{Medium, Step};
+use crate::number::Number;
 use crate::response::{Absorption, Polarisation, Response};
-use crate::stack::Stack;
+use crate::stack::{Film, Stack};
+use crate::tilted::{Facet, Tilted};
 
-/// A layer of a prepared stack: the number of its material, its thickness in nm.
+/// A layer of a prepared stack.
 #[derive(Clone, Copy, Debug)]
 pub(crate) struct Layer {
+    /// The number of its medium: a material, then a mixture, then a mean.
     pub(crate) material: usize,
     pub(crate) thickness_nm: f64,
+    /// The film of the stack that it belongs to.
+    pub(crate) film: usize,
+}
+
+/// A medium that a graded film is of at one depth.
+#[derive(Clone, Copy, Debug)]
+struct Mixture {
+    rule: MixingRule,
+    front: usize,
+    back: usize,
+    /// Of the back material.
+    share: f64,
+}
+
+/// The mean of two media with the share of the first, which may lie beyond 1.
+#[derive(Clone, Copy, Debug)]
+struct Mean {
+    one: usize,
+    share: f64,
+    other: usize,
+    /// The share of the back material at the two faces of the layer that it stands for.
+    faces: (f64, f64),
 }
 
 /// A well-formed stack. Material 0 is the incident medium's.
 #[derive(Clone, Debug)]
 pub(crate) struct Plan {
     pub(crate) materials: Vec<Index>,
+    mixtures: Vec<Mixture>,
+    means: Vec<Mean>,
     pub(crate) coatings: Vec<Vec<Layer>>,
     pub(crate) bodies: Vec<Layer>,
     pub(crate) exit: usize,
+    /// The facets of the exit half-space that light meets, where it is textured.
+    bounces: Option<Vec<Bounce>>,
 }
 
 impl Plan {
@@ -37,44 +66,82 @@ impl Plan {
         if coatings != bodies + 1 {
             return Err(OpticsError::Shape { coatings, bodies });
         }
-        let mut materials: Vec<Index> = Vec::new();
-        let mut known: HashMap<usize, usize> = HashMap::new();
-        let mut number = |index: &Index| {
-            *known.entry(index.id()).or_insert_with(|| {
-                materials.push(index.clone());
-                materials.len() - 1
-            })
-        };
-        number(&stack.incident);
-        let mut layer = |index: &Index, thickness_nm: f64| {
-            if thickness_nm.is_finite() && thickness_nm >= 0.0 {
-                Ok(Layer { material: number(index), thickness_nm })
-            } else {
-                Err(OpticsError::Thickness { thickness_nm })
-            }
-        };
-        let mut coatings = Vec::with_capacity(bodies + 1);
-        for films in &stack.coatings {
-            let films: Result<Vec<Layer>, _> =
-                films.iter().map(|film| layer(&film.index, film.thickness_nm)).collect();
-            coatings.push(films?);
+        if let Some(facets_rad) = stack.facets_rad.filter(|angle| !(*angle > 0.0 && *angle < FRAC_PI_2)) {
+            return Err(OpticsError::Facets { facets_rad });
         }
-        let bodies: Result<Vec<Layer>, _> =
-            stack.bodies.iter().map(|body| layer(&body.index, body.thickness_nm)).collect();
-        let bodies = bodies?;
-        let exit = layer(&stack.exit, 0.0)?.material;
-        Ok(Plan { materials, coatings, bodies, exit })
+        let mut draft = Draft::default();
+        draft.material(&stack.incident);
+        // Every material has its number before the first mixture gets one.
+        stack.materials().for_each(|index| _ = draft.material(index));
+        let first_mean = draft.materials.len() + mixtures(stack);
+        let mut planned = Vec::with_capacity(bodies + 1);
+        for films in &stack.coatings {
+            let mut layers = Vec::with_capacity(films.len());
+            for (number, film) in films.iter().enumerate() {
+                draft.film(number, film, first_mean, &mut layers)?;
+            }
+            planned.push(layers);
+        }
+        let mut thick = Vec::with_capacity(bodies);
+        for body in &stack.bodies {
+            let thickness_nm = checked(body.thickness_nm)?;
+            thick.push(Layer { material: draft.material(&body.index), thickness_nm, film: 0 });
+        }
+        let exit = draft.material(&stack.exit);
+        let bounces = stack.facets_rad.map(bounces);
+        let Draft { materials, mixtures, means, .. } = draft;
+        Ok(Plan { materials, mixtures, means, coatings: planned, bodies: thick, exit, bounces })
     }
 
-    /// All materials at one vacuum wavelength in nm.
+    /// All media at one vacuum wavelength in nm: the materials, the mixtures, the means.
     pub(crate) fn indices(&self, wavelength_nm: f64) -> Result<Vec<Complex64>, OpticsError> {
-        let mut indices = Vec::with_capacity(self.materials.len());
+        let mut indices = Vec::with_capacity(self.materials.len() + self.mixtures.len());
         for index in &self.materials {
             let at = |cause: IndexError| OpticsError::Material { index: index.clone(), cause };
             indices.push(index.at(wavelength_nm).map_err(at)?);
         }
         let k = indices[0].im;
-        if k > 0.0 { Err(OpticsError::AbsorbingIncident { wavelength_nm, k }) } else { Ok(indices) }
+        if k > 0.0 {
+            return Err(OpticsError::AbsorbingIncident { wavelength_nm, k });
+        }
+        self.mix(&mut indices, wavelength_nm)?;
+        Ok(indices)
+    }
+
+    /// The indices with the mixtures' after the materials'.
+    pub(crate) fn mix<N: Number>(&self, indices: &mut Vec<N>, wavelength_nm: f64) -> Result<(), OpticsError> {
+        for mixture in &self.mixtures {
+            let square = |index: &N| index.clone() * index.clone();
+            let (front, back) = (square(&indices[mixture.front]), square(&indices[mixture.back]));
+            let parts = [(front, 1.0 - mixture.share), (back, mixture.share)];
+            let index = mix(mixture.rule, &parts).sqrt();
+            let value = index.value();
+            if !value.is_finite() || value.re <= 0.0 || value.im < -1e-13 * value.re {
+                let (index, (n, k)) = (self.materials[mixture.front].clone(), (value.re, value.im));
+                let cause = IndexError::NotPhysical { wavelength_nm, n, k };
+                return Err(OpticsError::Material { index, cause });
+            }
+            // A k that is zero but for the last digit of the arithmetic is zero.
+            indices.push(if value.im < 0.0 { index.re() } else { index });
+        }
+        Ok(())
+    }
+
+    /// All media from the indices of materials and mixtures, for light of α = N sin θ.
+    pub(crate) fn media<N: Number>(&self, indices: &[N], alpha: &N) -> Vec<Medium<N>> {
+        let mut media: Vec<Medium<N>> =
+            indices.iter().map(|index| Medium::new(index.clone(), alpha)).collect();
+        for mean in &self.means {
+            media.push(Medium::mean(&media[mean.one], mean.share, &media[mean.other]));
+        }
+        media
+    }
+
+    /// The same for light that comes from the incident medium at an angle in rad.
+    pub(crate) fn tilted_media<N: Number>(&self, indices: &[N], angle_rad: f64) -> Vec<Medium<N>> {
+        let mut media = self.media(indices, &indices[0].scale(angle_rad.sin()));
+        media[0] = Medium::of_incidence(indices[0].clone(), angle_rad);
+        media
     }
 
     /// The stack at one wavelength and one angle of incidence in rad, from the materials' indices there.
@@ -87,23 +154,57 @@ impl Plan {
         if !(0.0..FRAC_PI_2).contains(&angle_rad) {
             return Err(OpticsError::Angle { angle_rad });
         }
-        let incident = indices[0];
-        let alpha = incident * angle_rad.sin();
-        let mut media: Vec<Medium<Complex64>> =
-            indices.iter().map(|&index| Medium::new(index, &alpha)).collect();
-        // The incident medium's own is known without the loss of digits near grazing incidence.
-        media[0].normal_squared = incident * incident * angle_rad.cos().powi(2);
-        let wave_number = TAU / wavelength_nm;
-        let step = |film: &Layer| {
-            Step::new(&media[film.material], &Complex64::new(wave_number * film.thickness_nm, 0.0))
+        let media = self.tilted_media(indices, angle_rad);
+        let steps = |films: &Vec<Layer>, media: &[Medium<Complex64>]| {
+            let depth = |film: &Layer| Complex64::new(TAU / wavelength_nm * film.thickness_nm, 0.0);
+            films.iter().map(|film| Step::new(&media[film.material], &depth(film))).collect()
         };
-        let steps = self.coatings.iter().map(|films| films.iter().map(step).collect()).collect();
-        Ok(Tilted { plan: self, wavelength_nm, angle_rad, media, steps })
+        let mut facets = Vec::new();
+        if let Some(bounces) = &self.bounces {
+            if angle_rad > 0.0 {
+                return Err(OpticsError::Textured { angle_rad });
+            }
+            let entry = indices[self.bodies.last().map_or(0, |body| body.material)].re;
+            for bounce in bounces {
+                let alpha = Complex64::new(entry * bounce.angle_rad.sin(), 0.0);
+                let media = self.media(indices, &alpha);
+                let steps = steps(&self.coatings[self.bodies.len()], &media);
+                facets.push(Facet { share: bounce.share, media, steps });
+            }
+        }
+        let steps = self.coatings.iter().map(|films| steps(films, &media)).collect();
+        Ok(Tilted { plan: self, wavelength_nm, angle_rad, media, steps, facets })
     }
 
     /// The stack at one wavelength and angle.
     pub(crate) fn at(&self, wavelength_nm: f64, angle_rad: f64) -> Result<Tilted<'_>, OpticsError> {
         self.tilted(&self.indices(wavelength_nm)?, wavelength_nm, angle_rad)
+    }
+
+    /// How many films a coating has.
+    pub(crate) fn films(&self, coating: usize) -> Option<usize> {
+        Some(self.coatings.get(coating)?.last().map_or(0, |layer| layer.film + 1))
+    }
+
+    /// Whether a layer is half of a step through a smooth profile.
+    pub(crate) fn is_smooth(&self, layer: &Layer) -> bool {
+        layer.material >= self.materials.len() + self.mixtures.len()
+    }
+
+    /// The permittivity of a layer at a share of its depth, from the media's indices.
+    pub(crate) fn permittivity(&self, layer: &Layer, indices: &[Complex64], depth: f64) -> Complex64 {
+        let mean = layer.material.checked_sub(indices.len()).and_then(|mean| self.means.get(mean));
+        let mixture = mean
+            .and_then(|mean| self.mixtures.get(mean.one.checked_sub(self.materials.len())?).zip(Some(mean)));
+        let Some((mixture, mean)) = mixture else { return indices[layer.material] * indices[layer.material] };
+        let share = mean.faces.0 + (mean.faces.1 - mean.faces.0) * depth;
+        let part = |material: usize, share: f64| (indices[material] * indices[material], share);
+        mix(mixture.rule, &[part(mixture.front, 1.0 - share), part(mixture.back, share)])
+    }
+
+    /// Whether the exit half-space is textured.
+    pub(crate) fn is_textured(&self) -> bool {
+        self.bounces.is_some()
     }
 
     pub(crate) fn response(
@@ -127,71 +228,91 @@ impl Plan {
     }
 }
 
-/// A prepared stack at one wavelength and angle.
-#[derive(Debug)]
-pub(crate) struct Tilted<'a> {
-    plan: &'a Plan,
-    wavelength_nm: f64,
-    angle_rad: f64,
-    media: Vec<Medium<Complex64>>,
-    steps: Vec<Vec<Step<Complex64>>>,
+/// A thickness in nm that one can have.
+fn checked(thickness_nm: f64) -> Result<f64, OpticsError> {
+    if thickness_nm.is_finite() && thickness_nm >= 0.0 {
+        Ok(thickness_nm)
+    } else {
+        Err(OpticsError::Thickness { thickness_nm })
+    }
 }
 
-impl Tilted<'_> {
-    /// A result for the polarisation asked for, from those of the two modes.
-    pub(crate) fn by<V>(
-        &self,
-        polarisation: Polarisation,
-        of: impl Fn(Mode) -> Result<V, OpticsError>,
-        mean: impl Fn(V, V) -> V,
-    ) -> Result<V, OpticsError> {
-        match polarisation {
-            Polarisation::S => of(Mode::S),
-            Polarisation::P => of(Mode::P),
-            Polarisation::Mean => Ok(mean(of(Mode::S)?, of(Mode::P)?)),
-        }
+/// How many mixtures the graded films of a stack need.
+fn mixtures(stack: &Stack) -> usize {
+    let of = |film: &Film| match &film.profile {
+        Profile::Uniform(_) => 0,
+        Profile::Graded(Gradient { steps: Steps::Films(steps), .. }) => *steps as usize,
+        Profile::Graded(Gradient { steps: Steps::Smooth(steps), .. }) => 2 * *steps as usize,
+    };
+    stack.coatings.iter().flatten().map(of).sum()
+}
+
+/// A plan's media as they get their numbers.
+#[derive(Default)]
+struct Draft {
+    materials: Vec<Index>,
+    known: HashMap<usize, usize>,
+    mixtures: Vec<Mixture>,
+    means: Vec<Mean>,
+}
+
+impl Draft {
+    fn material(&mut self, index: &Index) -> usize {
+        *self.known.entry(index.id()).or_insert_with(|| {
+            self.materials.push(index.clone());
+            self.materials.len() - 1
+        })
     }
 
-    pub(crate) fn response(&self, mode: Mode) -> Result<Response, OpticsError> {
-        Ok(self.chain(mode, Detail::Whole)?.response())
-    }
-
-    pub(crate) fn absorption(&self, mode: Mode) -> Result<Absorption, OpticsError> {
-        Ok(self.chain(mode, Detail::ByFilm)?.absorption())
-    }
-
-    /// The coatings and the bodies between them, with every number checked.
-    pub(crate) fn chain(&self, mode: Mode, detail: Detail) -> Result<Chain, OpticsError> {
-        let coatings = self.coatings(mode, detail);
-        let bodies = &self.plan.bodies;
-        let damping = |body: &Layer| {
-            let decay = self.media[body.material].normal().im;
-            -2.0 * TAU * decay * body.thickness_nm / self.wavelength_nm
-        };
-        let clear: Vec<bool> = bodies.iter().map(|body| self.media[body.material].index.im == 0.0).collect();
-        let lossless =
-            self.media.iter().enumerate().all(|(at, medium)| at == self.plan.exit || medium.index.im == 0.0);
-        let ln_passed = bodies.iter().map(damping).collect();
-        Chain::new(coatings, ln_passed, clear, lossless).ok_or(self.not_finite())
-    }
-
-    /// Every coating from the front, and from behind where a body lies behind it.
-    pub(crate) fn coatings(&self, mode: Mode, detail: Detail) -> Vec<Link> {
-        let link = |at: usize| {
-            let entry = if at == 0 { 0 } else { self.plan.bodies[at - 1].material };
-            let body = self.plan.bodies.get(at);
-            let exit = body.map_or(self.plan.exit, |body| body.material);
-            let (entry, exit) = (&self.media[entry], &self.media[exit]);
-            let steps = &self.steps[at];
-            Link {
-                front: Coating::solve(steps.iter(), entry, exit, mode, detail),
-                back: body.map(|_| Coating::solve(steps.iter().rev(), exit, entry, mode, detail)),
+    /// Adds the layers of a film.
+    fn film(
+        &mut self,
+        number: usize,
+        film: &Film,
+        first_mean: usize,
+        layers: &mut Vec<Layer>,
+    ) -> Result<(), OpticsError> {
+        let thickness_nm = checked(film.thickness_nm)?;
+        let gradient = match &film.profile {
+            Profile::Uniform(index) => {
+                layers.push(Layer { material: self.material(index), thickness_nm, film: number });
+                return Ok(());
             }
+            Profile::Graded(gradient) => gradient,
         };
-        (0..self.steps.len()).map(link).collect()
-    }
-
-    fn not_finite(&self) -> OpticsError {
-        OpticsError::NotFinite { wavelength_nm: self.wavelength_nm, angle_rad: self.angle_rad }
+        let (front, back) = (self.material(&gradient.front), self.material(&gradient.back));
+        let (from, to) = gradient.shares;
+        let share_at = |at: f64| (from + (to - from) * at).clamp(0.0, 1.0);
+        let mut mixture = |at: f64| {
+            let share = share_at(at);
+            self.mixtures.push(Mixture { rule: gradient.rule, front, back, share });
+            self.materials.len() + self.mixtures.len() - 1
+        };
+        match gradient.steps {
+            Steps::Films(steps) => {
+                let part = thickness_nm / f64::from(steps);
+                for step in 0..steps {
+                    let material = mixture((f64::from(step) + 0.5) / f64::from(steps));
+                    layers.push(Layer { material, thickness_nm: part, film: number });
+                }
+            }
+            Steps::Smooth(steps) => {
+                // Gauss's two nodes, and the share of the nearer one in the mean over either half of a step.
+                let (node, near) = (3.0_f64.sqrt() / 6.0, 0.5 + 3.0_f64.sqrt() / 3.0);
+                let part = 0.5 * thickness_nm / f64::from(steps);
+                for step in 0..steps {
+                    let middle = f64::from(step) + 0.5;
+                    let one = mixture((middle - node) / f64::from(steps));
+                    let other = mixture((middle + node) / f64::from(steps));
+                    for (one, other, start) in [(one, other, middle - 0.5), (other, one, middle)] {
+                        let faces = [start, start + 0.5].map(|at| share_at(at / f64::from(steps)));
+                        self.means.push(Mean { one, share: near, other, faces: faces.into() });
+                        let material = first_mean + self.means.len() - 1;
+                        layers.push(Layer { material, thickness_nm: part, film: number });
+                    }
+                }
+            }
+        }
+        Ok(())
     }
 }

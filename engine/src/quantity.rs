@@ -1,9 +1,9 @@
 //! What can be promised of a stack, and the light that it is promised for.
 
-use crate::coating::Detail;
 use crate::error::OpticsError;
-use crate::plan::{Plan, Tilted};
+use crate::plan::Plan;
 use crate::response::Polarisation;
+use crate::tilted::Tilted;
 
 /// A quantity that a stack has at every wavelength and angle.
 #[derive(Clone, Debug, PartialEq)]
@@ -109,9 +109,8 @@ impl Quantity {
     /// Whether the stack has the films and bodies that this names.
     pub(crate) fn check(&self, plan: &Plan) -> Result<(), OpticsError> {
         if let Quantity::AbsorptanceIn { films, bodies, .. } = self {
-            let film = |&(coating, film): &(usize, usize)| {
-                plan.coatings.get(coating).is_some_and(|films| film < films.len())
-            };
+            let film =
+                |&(coating, film): &(usize, usize)| plan.films(coating).is_some_and(|films| film < films);
             if !(films.iter().all(film) && bodies.iter().all(|&body| body < plan.bodies.len())) {
                 return Err(OpticsError::NoSuchPlace);
             }
@@ -126,20 +125,18 @@ impl Quantity {
             if share == 0.0 {
                 continue;
             }
-            let chain = tilted.chain(
-                mode,
-                if matches!(self, Quantity::AbsorptanceIn { .. }) { Detail::ByFilm } else { Detail::Whole },
-            )?;
             let plain = |value: f64| Tally { value, ln_scale: 0.0 };
             let tally = match self {
-                Quantity::Reflectance => plain(chain.response().reflectance),
-                Quantity::Transmittance => plain(chain.response().transmittance),
-                Quantity::Absorptance => plain(chain.response().absorptance),
+                Quantity::Reflectance => plain(tilted.response(mode)?.reflectance),
+                Quantity::Transmittance => plain(tilted.response(mode)?.transmittance),
+                Quantity::Absorptance => plain(tilted.response(mode)?.absorptance),
                 // These do not add up; the probe works them out without a tally.
                 Quantity::Phase(..) | Quantity::PeakField => Tally::NONE,
-                Quantity::OpticalDensity => Tally { value: 1.0, ln_scale: chain.response().ln_transmittance },
+                Quantity::OpticalDensity => {
+                    Tally { value: 1.0, ln_scale: tilted.response(mode)?.ln_transmittance }
+                }
                 Quantity::AbsorptanceIn { films, bodies, exit } => {
-                    let absorption = chain.absorption();
+                    let absorption = tilted.absorption(mode)?;
                     let of_films: f64 =
                         films.iter().map(|&(coating, film)| absorption.films[coating][film]).sum();
                     let of_bodies: f64 = bodies.iter().map(|&body| absorption.bodies[body]).sum();

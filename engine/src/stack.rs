@@ -2,16 +2,24 @@
 
 use crate::dispersion::Index;
 use crate::error::OpticsError;
+use crate::graded::Profile;
 use crate::plan::Plan;
 use crate::response::{Absorption, Polarisation, Response};
 
 /// A film, thin enough that the waves reflected at its two faces interfere.
 #[derive(Clone, Debug)]
 pub struct Film {
-    /// Its optical constants.
-    pub index: Index,
+    /// What it is made of.
+    pub profile: Profile,
     /// Its thickness, nm.
     pub thickness_nm: f64,
+}
+
+impl Film {
+    /// A film of one material, with its thickness in nm.
+    pub fn new(index: Index, thickness_nm: f64) -> Film {
+        Film { profile: Profile::Uniform(index), thickness_nm }
+    }
 }
 
 /// A body so thick that the light reflected at its two faces adds in power, not in amplitude.
@@ -29,9 +37,9 @@ pub struct Body {
 /// ```
 /// use overcoat_engine::{Film, Index, Polarisation, Stack};
 /// let air = Index::constant(1.0, 0.0).unwrap();
-/// let film = Film { index: Index::constant(1.38, 0.0).unwrap(), thickness_nm: 550.0 / 4.0 / 1.38 };
+/// let film = Film::new(Index::constant(1.38, 0.0).unwrap(), 550.0 / 4.0 / 1.38);
 /// let glass = Index::constant(1.52, 0.0).unwrap();
-/// let stack = Stack { incident: air, coatings: vec![vec![film]], bodies: vec![], exit: glass };
+/// let stack = Stack { incident: air, coatings: vec![vec![film]], bodies: vec![], exit: glass, facets_rad: None };
 /// let response = stack.response(550.0, 0.0, Polarisation::Mean).unwrap();
 /// assert!((response.reflectance - 0.0126).abs() < 1e-5);
 /// ```
@@ -45,17 +53,26 @@ pub struct Stack {
     pub bodies: Vec<Body>,
     /// The half-space behind. Light that enters it counts as transmitted.
     pub exit: Index,
+    /// The facets' angle, rad, where the exit half-space is textured with upright pyramids.
+    pub facets_rad: Option<f64>,
 }
 
 impl Stack {
-    /// The same part with the light from the other side.
-    pub fn reversed(&self) -> Stack {
-        Stack {
+    /// The same part with the light from the other side; none where it would come from inside a textured piece.
+    pub fn reversed(&self) -> Option<Stack> {
+        let turned = |film: &Film| Film { profile: film.profile.reversed(), ..film.clone() };
+        self.facets_rad.is_none().then(|| Stack {
             incident: self.exit.clone(),
-            coatings: self.coatings.iter().rev().map(|films| films.iter().rev().cloned().collect()).collect(),
+            coatings: self
+                .coatings
+                .iter()
+                .rev()
+                .map(|films| films.iter().rev().map(turned).collect())
+                .collect(),
             bodies: self.bodies.iter().rev().cloned().collect(),
             exit: self.incident.clone(),
-        }
+            facets_rad: None,
+        })
     }
 
     /// Reflectance, transmittance and absorptance at a vacuum wavelength in nm and an angle of incidence in
@@ -95,7 +112,7 @@ impl Stack {
 
     /// Every material, in the light's order, repeated as often as it is used.
     pub fn materials(&self) -> impl Iterator<Item = &Index> {
-        let films = self.coatings.iter().flatten().map(|film| &film.index);
+        let films = self.coatings.iter().flatten().flat_map(|film| film.profile.materials());
         let bodies = self.bodies.iter().map(|body| &body.index);
         std::iter::once(&self.incident).chain(films).chain(bodies).chain(std::iter::once(&self.exit))
     }

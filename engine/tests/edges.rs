@@ -9,13 +9,19 @@ use overcoat_engine::{
 /// A quarter-wave reflector (HL)^24 H at 550 nm on glass.
 fn reflector() -> Stack {
     let index = |n: f64| Index::constant(n, 0.0).unwrap();
-    let film = |n: f64| Film { index: index(n), thickness_nm: 550.0 / (4.0 * n) };
+    let film = |n: f64| Film::new(index(n), 550.0 / (4.0 * n));
     let mut films = Vec::new();
     for _ in 0..24 {
         films.extend([film(2.35), film(1.38)]);
     }
     films.push(film(2.35));
-    Stack { incident: index(1.0), coatings: vec![films], bodies: vec![], exit: index(1.5168) }
+    Stack {
+        facets_rad: None,
+        incident: index(1.0),
+        coatings: vec![films],
+        bodies: vec![],
+        exit: index(1.5168),
+    }
 }
 
 #[test]
@@ -41,15 +47,21 @@ fn the_stop_band_is_crossed_near_its_closed_edges() {
 #[test]
 fn a_resonance_crosses_a_level_twice_however_narrow() {
     let index = |n: f64| Index::constant(n, 0.0).unwrap();
-    let quarter = |n: f64| Film { index: index(n), thickness_nm: 1064.0 / (4.0 * n) };
+    let quarter = |n: f64| Film::new(index(n), 1064.0 / (4.0 * n));
     let mut films = Vec::new();
     for _ in 0..11 {
         films.extend([quarter(2.3), quarter(1.45)]);
     }
     let mirror: Vec<Film> = films.clone();
-    films.push(Film { index: index(2.3), thickness_nm: 1064.0 / 2.3 });
+    films.push(Film::new(index(2.3), 1064.0 / 2.3));
     films.extend(mirror.into_iter().rev());
-    let stack = Stack { incident: index(1.52), coatings: vec![films], bodies: vec![], exit: index(1.52) };
+    let stack = Stack {
+        facets_rad: None,
+        incident: index(1.52),
+        coatings: vec![films],
+        bodies: vec![],
+        exit: index(1.52),
+    };
     let found = crossings(&stack, &Quantity::Transmittance, &Light::normal(), (1030.0, 1100.0), 0.5).unwrap();
     assert_eq!(found.len(), 2, "{found:?}");
     assert!(found[0].rising && !found[1].rising);

@@ -7,9 +7,9 @@ fn index(n: f64, k: f64) -> Index {
 }
 
 fn stack(films: &[(f64, f64)], exit: Index) -> Stack {
-    let film = |&(n, thickness_nm): &(f64, f64)| Film { index: index(n, 0.0), thickness_nm };
+    let film = |&(n, thickness_nm): &(f64, f64)| Film::new(index(n, 0.0), thickness_nm);
     let coatings = vec![films.iter().map(film).collect()];
-    Stack { incident: index(1.0, 0.0), coatings, bodies: vec![], exit }
+    Stack { facets_rad: None, incident: index(1.0, 0.0), coatings, bodies: vec![], exit }
 }
 
 #[test]
@@ -73,4 +73,32 @@ fn the_greatest_over_a_band_is_found_at_a_resonance() {
         extremes(&stack(&films, index(1.0, 0.0)), &Quantity::PeakField, &Light::normal(), (1030.0, 1100.0))
             .expect("extremes");
     assert!((over.max.wavelength_nm - 1064.0).abs() < 0.01 && over.max.value > 100.0, "{:?}", over.max);
+}
+
+#[test]
+fn the_field_in_a_graded_film_is_that_of_many_thin_ones() {
+    use overcoat_engine::{Gradient, MixingRule, Profile, Steps};
+    let gradient = |steps| Gradient {
+        front: index(1.46, 0.0),
+        back: index(2.4, 0.0),
+        shares: (0.0, 1.0),
+        rule: MixingRule::Bruggeman,
+        steps,
+    };
+    let peak = |steps, polarisation| {
+        let film = Film { profile: Profile::Graded(gradient(steps)), thickness_nm: 420.0 };
+        let stack = Stack {
+            facets_rad: None,
+            incident: index(1.0, 0.0),
+            coatings: vec![vec![film]],
+            bodies: vec![],
+            exit: index(3.0, 0.0),
+        };
+        peak_field(&stack, &Light::parallel(0.9, polarisation), 550.0).expect("a peak")
+    };
+    for polarisation in [Polarisation::S, Polarisation::P] {
+        let (smooth, thin) = (peak(Steps::Smooth(16), polarisation), peak(Steps::Films(2000), polarisation));
+        assert!((smooth.value - thin.value).abs() < 2e-4 * thin.value, "{smooth:?} {thin:?}");
+        assert!((smooth.depth_nm - thin.depth_nm).abs() < 1.0 && smooth.film == 0, "{smooth:?} {thin:?}");
+    }
 }

@@ -10,14 +10,26 @@ fn index(n: f64, k: f64) -> Index {
 }
 
 fn on_glass(films: Vec<Film>) -> Stack {
-    Stack { incident: index(1.0, 0.0), coatings: vec![films], bodies: vec![], exit: index(1.52, 0.0) }
+    Stack {
+        facets_rad: None,
+        incident: index(1.0, 0.0),
+        coatings: vec![films],
+        bodies: vec![],
+        exit: index(1.52, 0.0),
+    }
 }
 
 #[test]
 fn a_millimetre_of_silver_reflects_as_a_bulk_does() {
     let silver = index(0.06, 3.6);
-    let film = Film { index: silver.clone(), thickness_nm: 1e6 };
-    let bulk = Stack { incident: index(1.0, 0.0), coatings: vec![vec![]], bodies: vec![], exit: silver };
+    let film = Film::new(silver.clone(), 1e6);
+    let bulk = Stack {
+        facets_rad: None,
+        incident: index(1.0, 0.0),
+        coatings: vec![vec![]],
+        bodies: vec![],
+        exit: silver,
+    };
     let thick = on_glass(vec![film]);
     for angle in [0.0, 0.7, 1.5] {
         for mode in [Polarisation::S, Polarisation::P] {
@@ -42,7 +54,7 @@ fn ten_thousand_films_have_a_response() {
     let (high, low) = (index(2.35, 0.0), index(1.38, 0.0));
     let film = |at: usize| {
         let (index, n) = if at.is_multiple_of(2) { (&high, 2.35) } else { (&low, 1.38) };
-        Film { index: index.clone(), thickness_nm: 550.0 / 4.0 / n }
+        Film::new(index.clone(), 550.0 / 4.0 / n)
     };
     let stack = on_glass((0..10_000).map(film).collect());
     let response = stack.response(550.0, 0.0, Polarisation::Mean).expect("a response");
@@ -60,10 +72,8 @@ fn no_resonance_in_a_thousand_odd_films_reflects_more_than_all() {
     let (high, low) = (index(2.35, 0.0), index(1.38, 0.0));
     let film = |at: usize| {
         let odd = (at as f64).powi(2) * 49.442_719_1;
-        Film {
-            index: if at.is_multiple_of(2) { high.clone() } else { low.clone() },
-            thickness_nm: 60.0 + odd % 80.0,
-        }
+        let index = if at.is_multiple_of(2) { &high } else { &low };
+        Film::new(index.clone(), 60.0 + odd % 80.0)
     };
     let stack = on_glass((0..1_000).map(film).collect());
     for step in 0..2_000 {
@@ -76,10 +86,7 @@ fn no_resonance_in_a_thousand_odd_films_reflects_more_than_all() {
 
 #[test]
 fn films_without_thickness_are_not_there() {
-    let stack = on_glass(vec![
-        Film { index: index(2.0, 0.0), thickness_nm: 0.0 },
-        Film { index: index(0.06, 3.6), thickness_nm: 0.0 },
-    ]);
+    let stack = on_glass(vec![Film::new(index(2.0, 0.0), 0.0), Film::new(index(0.06, 3.6), 0.0)]);
     let bare = on_glass(vec![]);
     for angle in [0.0, 1.0] {
         let there = stack.response(550.0, angle, Polarisation::P).expect("a response");
@@ -93,8 +100,14 @@ fn a_film_at_its_critical_angle_is_finite() {
     // sin θ = 1/1.5 with a film of n = 1 in glass of 1.5: q = 0 in the film but for rounding. For s the matrix
     // is [[1, −ik₀d], [0, 1]], so that r = −ik₀dη/(2 − ik₀dη).
     let glass = index(1.5, 0.0);
-    let gap = Film { index: index(1.0, 0.0), thickness_nm: 100.0 };
-    let stack = Stack { incident: glass.clone(), coatings: vec![vec![gap]], bodies: vec![], exit: glass };
+    let gap = Film::new(index(1.0, 0.0), 100.0);
+    let stack = Stack {
+        facets_rad: None,
+        incident: glass.clone(),
+        coatings: vec![vec![gap]],
+        bodies: vec![],
+        exit: glass,
+    };
     let angle = (1.0_f64 / 1.5).asin();
     let y = 2.0 * std::f64::consts::PI * 100.0 / 550.0 * 1.5 * angle.cos();
     let s = stack.response(550.0, angle, Polarisation::S).expect("a response");
@@ -107,8 +120,9 @@ fn a_film_at_its_critical_angle_is_finite() {
 fn thick_bodies_in_total_reflection_pass_nothing() {
     let glass = index(1.5, 0.0);
     let stack = Stack {
+        facets_rad: None,
         incident: glass.clone(),
-        coatings: vec![vec![Film { index: index(1.38, 0.0), thickness_nm: 100.0 }], vec![]],
+        coatings: vec![vec![Film::new(index(1.38, 0.0), 100.0)], vec![]],
         bodies: vec![Body { index: index(1.0, 0.0), thickness_nm: 1e6 }],
         exit: glass,
     };
@@ -127,12 +141,19 @@ fn thick_bodies_in_total_reflection_pass_nothing() {
 fn a_wafer_that_absorbs_all_is_a_half_space() {
     let silicon = index(3.94, 0.02);
     let wafer = Stack {
+        facets_rad: None,
         incident: index(1.0, 0.0),
         coatings: vec![vec![], vec![]],
         bodies: vec![Body { index: silicon.clone(), thickness_nm: 1e9 }],
         exit: index(1.0, 0.0),
     };
-    let bulk = Stack { incident: index(1.0, 0.0), coatings: vec![vec![]], bodies: vec![], exit: silicon };
+    let bulk = Stack {
+        facets_rad: None,
+        incident: index(1.0, 0.0),
+        coatings: vec![vec![]],
+        bodies: vec![],
+        exit: silicon,
+    };
     let (wafer, bulk) = (
         wafer.absorption(600.0, 0.5, Polarisation::Mean).expect("a response"),
         bulk.response(600.0, 0.5, Polarisation::Mean).expect("a response"),
@@ -144,7 +165,7 @@ fn a_wafer_that_absorbs_all_is_a_half_space() {
 
 #[test]
 fn what_cannot_be_is_an_error() {
-    let stack = on_glass(vec![Film { index: index(2.0, 0.0), thickness_nm: 100.0 }]);
+    let stack = on_glass(vec![Film::new(index(2.0, 0.0), 100.0)]);
     let response =
         |stack: &Stack, wavelength: f64, angle: f64| stack.response(wavelength, angle, Polarisation::S);
     for angle in [-0.1, std::f64::consts::FRAC_PI_2, 2.0, f64::NAN, f64::INFINITY] {
@@ -154,10 +175,10 @@ fn what_cannot_be_is_an_error() {
         assert!(matches!(response(&stack, wavelength, 0.0), Err(OpticsError::Material { .. })));
     }
     for thickness_nm in [-1.0, f64::NAN, f64::INFINITY] {
-        let bad = on_glass(vec![Film { index: index(2.0, 0.0), thickness_nm }]);
+        let bad = on_glass(vec![Film::new(index(2.0, 0.0), thickness_nm)]);
         assert!(matches!(response(&bad, 550.0, 0.0), Err(OpticsError::Thickness { .. })));
     }
-    let absorbing = Stack { incident: index(1.5, 1e-9), ..stack.clone() };
+    let absorbing = Stack { facets_rad: None, incident: index(1.5, 1e-9), ..stack.clone() };
     assert!(matches!(response(&absorbing, 550.0, 0.0), Err(OpticsError::AbsorbingIncident { k: 1e-9, .. })));
     let shapeless = Stack { coatings: vec![], ..stack.clone() };
     assert!(matches!(response(&shapeless, 550.0, 0.0), Err(OpticsError::Shape { coatings: 0, bodies: 0 })));
@@ -175,7 +196,7 @@ fn what_cannot_be_is_an_error() {
 #[test]
 fn a_table_that_does_not_reach_names_its_material() {
     let film = Index::table(&[(400.0, 2.0, 0.0), (700.0, 1.9, 0.0)]).expect("a table");
-    let stack = on_glass(vec![Film { index: film.clone(), thickness_nm: 80.0 }]);
+    let stack = on_glass(vec![Film::new(film.clone(), 80.0)]);
     match extremes(&stack, &Quantity::Reflectance, &Light::normal(), (380.0, 700.0)) {
         Err(OpticsError::Material { index, .. }) => assert!(index.same_as(&film)),
         other => panic!("{other:?}"),
@@ -192,12 +213,18 @@ fn a_table_that_does_not_reach_names_its_material() {
 fn a_resonance_finer_than_any_number_keeps_the_balance() {
     // A cavity between 40 and 40 pairs: the resonance is narrower than the spacing of numbers near its wavelength.
     let index = |n: f64| Index::constant(n, 0.0).expect("an index");
-    let quarter = |n: f64| Film { index: index(n), thickness_nm: 1000.0 / (4.0 * n) };
+    let quarter = |n: f64| Film::new(index(n), 1000.0 / (4.0 * n));
     let mut films: Vec<Film> = (0..40).flat_map(|_| [quarter(2.35), quarter(1.38)]).collect();
     let back: Vec<Film> = films.iter().rev().cloned().collect();
-    films.push(Film { index: index(2.35), thickness_nm: 1000.0 / 2.35 });
+    films.push(Film::new(index(2.35), 1000.0 / 2.35));
     films.extend(back);
-    let stack = Stack { incident: index(1.0), coatings: vec![films], bodies: vec![], exit: index(1.0) };
+    let stack = Stack {
+        facets_rad: None,
+        incident: index(1.0),
+        coatings: vec![films],
+        bodies: vec![],
+        exit: index(1.0),
+    };
     for wavelength in [999.999, 1000.0 - 1e-12, 1000.0, 1000.0 + 2e-13, 1000.001] {
         let response = stack.response(wavelength, 0.0, Polarisation::S).expect("a response");
         assert!(

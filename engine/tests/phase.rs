@@ -12,9 +12,9 @@ fn index(n: f64) -> Index {
 }
 
 fn stack(incident: f64, films: &[(f64, f64)], exit: f64) -> Stack {
-    let film = |&(n, thickness_nm): &(f64, f64)| Film { index: index(n), thickness_nm };
+    let film = |&(n, thickness_nm): &(f64, f64)| Film::new(index(n), thickness_nm);
     let coatings = vec![films.iter().map(film).collect()];
-    Stack { incident: index(incident), coatings, bodies: vec![], exit: index(exit) }
+    Stack { facets_rad: None, incident: index(incident), coatings, bodies: vec![], exit: index(exit) }
 }
 
 fn delay(outgoing: Outgoing) -> Quantity {
@@ -79,9 +79,15 @@ fn delay_and_dispersion_are_the_derivatives_of_the_phase() {
         }],
     )
     .expect("an oscillator");
-    let film = |index: &Index, thickness_nm| Film { index: index.clone(), thickness_nm };
+    let film = |index: &Index, thickness_nm| Film::new(index.clone(), thickness_nm);
     let films = vec![film(&table, 80.0), film(&sellmeier, 120.0), film(&lossy, 60.0), film(&table, 210.0)];
-    let stack = Stack { incident: index(1.0), coatings: vec![films], bodies: vec![], exit: index(1.52) };
+    let stack = Stack {
+        facets_rad: None,
+        incident: index(1.0),
+        coatings: vec![films],
+        bodies: vec![],
+        exit: index(1.52),
+    };
     for (outgoing, polarisation, angle_rad) in [
         (Outgoing::Reflected, Polarisation::S, 0.0),
         (Outgoing::Reflected, Polarisation::P, 0.7),

@@ -11,6 +11,8 @@ fn value(stack: &str, sentence: &str) -> Option<f64> {
     let mut files = MemoryFiles::new();
     let text = format!(
         "material glass {{ source \"x\" index 1.5 }}\nmaterial dense {{ source \"x\" index 1.9 }}\n\
+         material half {{ source \"x\" index mixture of glass 50 %, air 50 % }}\n\
+         material near {{ source \"x\" index mixture of glass 29/30, dense 1/30 by volume }}\n\
          recipe r {{ stack {{ {stack} }} require {sentence} }}\n"
     );
     files.insert("main.coat", text);
@@ -60,4 +62,17 @@ fn smooth_is_the_limit_and_too_rough_is_said() {
     let nearly = value("incident air layer dense 90 nm rough 0.001 nm substrate glass", sentence).unwrap();
     assert!((smooth - nearly).abs() < 1e-5);
     assert_eq!(value("incident air layer dense 2 nm rough 3 nm substrate glass", sentence), None);
+}
+
+#[test]
+fn a_rough_face_beside_a_gradient_is_between_the_materials_at_that_face() {
+    // What stands for the face, written out: half glass and half air over ±3 nm, and the profile from 3 nm on, whose first
+    // material is 29 parts of 30 glass (by volume, so that a mixture of mixtures is the mixture).
+    let sentence = "reflectance <= 90 % at 550 nm";
+    let graded = "layer graded glass to dense 90 nm by volume";
+    let short = value(&format!("incident air {graded} rough 3 nm substrate dense"), sentence).unwrap();
+    let written = "incident air layer half 6 nm layer graded near to dense 87 nm by volume substrate dense";
+    assert!((short - value(written, sentence).unwrap()).abs() < 1e-8);
+    let turned = "substrate dense layer graded dense to glass 90 nm by volume rough 3 nm incident air";
+    assert!((value(turned, sentence).unwrap() - short).abs() < 1e-12);
 }

@@ -8,11 +8,11 @@ use crate::settings::did_you_mean;
 use crate::views::amount::shortest;
 use crate::views::{self, Shown};
 use crate::{output, quantity, walk};
-use overcoat_engine::{IndexError, OpticsError, Polarisation, Response, Stack};
+use overcoat_engine::{IndexError, OpticsError, Polarisation, Response};
 use overcoat_lang::messages::render;
 use overcoat_lang::model::{Element, Material, Recipe};
 use overcoat_lang::project::Project;
-use overcoat_lang::{engine_stack, load, nearest};
+use overcoat_lang::{engine_stack, load, nearest, range_of};
 use std::sync::Arc;
 
 /// Where a recipe without requirements is shown: the visible range.
@@ -49,13 +49,14 @@ pub(super) fn run(arguments: &Spectrum, global: &Global) -> Result<Status, Failu
         return not_understood(&project, &opened, global);
     }
     let recipe = recipe?;
-    let stack = recipe.stack.as_ref().ok_or("no stack");
-    let stack = stack.and_then(|stack| engine_stack(stack, arguments.from == From::Exit));
-    let stack =
-        stack.map_err(|what| Failure::message(format!("`{}` has no spectrum: {what}", recipe.name)))?;
+    let no_spectrum = |why: &str| Failure::message(format!("`{}` has no spectrum: {why}", recipe.name));
+    let written = recipe.stack.as_ref().ok_or_else(|| no_spectrum("it has no stack"))?;
+    let band = band(range_of(written), recipe, over)?;
+    let stack = engine_stack(written, arguments.from == From::Exit, band, angle);
+    let stack = stack.map_err(|why| no_spectrum(&why))?;
     let shown = Shown::new(&project.sources, &opened.root.folder, &opened.here);
     let mut rows = Vec::new();
-    for wavelength in grid(band(&stack, recipe, over)?, step)? {
+    for wavelength in grid(band, step)? {
         let response = stack.response(wavelength, angle, polarisation);
         rows.push((wavelength, response.map_err(|error| refusal(&error, recipe, &shown))?));
     }
@@ -95,7 +96,7 @@ fn chosen<'r>(
 }
 
 /// The band asked for, if all materials have data over it; else the band of the requirements, as far as they have.
-fn band(stack: &Stack, recipe: &Recipe, over: Option<(f64, f64)>) -> Result<(f64, f64), Failure> {
+fn band(data: Option<(f64, f64)>, recipe: &Recipe, over: Option<(f64, f64)>) -> Result<(f64, f64), Failure> {
     if let Some(over) = over {
         return Ok(over);
     }
@@ -106,7 +107,7 @@ fn band(stack: &Stack, recipe: &Recipe, over: Option<(f64, f64)>) -> Result<(f64
     });
     let wide = |a: (f64, f64), b: (f64, f64)| (a.0.min(b.0), a.1.max(b.1));
     let wanted = bands.reduce(wide).filter(|band| band.0 < band.1).unwrap_or(VISIBLE);
-    let data = stack.range_nm().unwrap_or((0.0, f64::INFINITY));
+    let data = data.unwrap_or((0.0, f64::INFINITY));
     let (low, high) = (wanted.0.max(data.0), wanted.1.min(data.1));
     if low < high {
         return Ok((low, high));

@@ -23,8 +23,8 @@ pub(crate) fn constant([n, k]: [f64; 2]) -> Index {
 
 /// Films between two half-spaces.
 pub(crate) fn films(incident: Index, films: Vec<(Index, f64)>, exit: Index) -> Stack {
-    let films = films.into_iter().map(|(index, thickness_nm)| Film { index, thickness_nm }).collect();
-    Stack { incident, coatings: vec![films], bodies: Vec::new(), exit }
+    let films = films.into_iter().map(|(index, thickness_nm)| Film::new(index, thickness_nm)).collect();
+    Stack { facets_rad: None, incident, coatings: vec![films], bodies: Vec::new(), exit }
 }
 
 #[derive(Deserialize)]
@@ -49,14 +49,14 @@ pub(crate) fn stack(incident: f64, elements: &[Element], exit: [f64; 2]) -> Stac
     for element in elements {
         let (index, thickness_nm) = (constant(element.index), element.thickness_nm);
         match element.kind {
-            Kind::Film => coatings.last_mut().expect("never empty").push(Film { index, thickness_nm }),
+            Kind::Film => coatings.last_mut().expect("never empty").push(Film::new(index, thickness_nm)),
             Kind::Body => {
                 bodies.push(Body { index, thickness_nm });
                 coatings.push(Vec::new());
             }
         }
     }
-    Stack { incident: constant([incident, 0.0]), coatings, bodies, exit: constant(exit) }
+    Stack { facets_rad: None, incident: constant([incident, 0.0]), coatings, bodies, exit: constant(exit) }
 }
 
 pub(crate) fn polarisation(name: &str) -> Polarisation {

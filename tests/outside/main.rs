@@ -9,6 +9,7 @@ mod cones;
 mod data;
 mod dispersion;
 mod extremes;
+mod graded;
 mod handbook;
 mod means;
 mod neutron;

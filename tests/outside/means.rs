@@ -92,6 +92,7 @@ fn window_panes_agree_with_numpy_and_scipy() {
         let body = Body { index: handbook::index("float_glass"), thickness_nm: plate.float_glass_nm };
         let air = constant([1.0, 0.0]);
         let stack = Stack {
+            facets_rad: None,
             incident: air.clone(),
             coatings: vec![Vec::new(), Vec::new()],
             bodies: vec![body],

@@ -73,9 +73,15 @@ fn phases_and_their_derivatives_agree_with_arbitrary_precision() {
     let mut comparison = Comparison::default();
     for row in &file.stacks {
         let of = |name: &str| materials[name].clone();
-        let film = |(name, nm): &(String, String)| Film { index: of(name), thickness_nm: number(nm) };
+        let film = |(name, nm): &(String, String)| Film::new(of(name), number(nm));
         let coatings = vec![row.films.iter().map(film).collect()];
-        let stack = Stack { incident: of(&row.incident), coatings, bodies: Vec::new(), exit: of(&row.exit) };
+        let stack = Stack {
+            facets_rad: None,
+            incident: of(&row.incident),
+            coatings,
+            bodies: Vec::new(),
+            exit: of(&row.exit),
+        };
         let light = Light::parallel(number(&row.angle_rad), polarisation(&row.polarised));
         for (outgoing, expected) in
             [(Outgoing::Reflected, row.reflected), (Outgoing::Transmitted, row.transmitted)]

@@ -50,7 +50,7 @@ fn random_stacks_agree_with_fifty_digits() {
         let forward = stack(part.incident, &part.elements, part.exit);
         for case in &part.cases {
             let backward = case.from == "exit";
-            let stack = if backward { forward.reversed() } else { forward.clone() };
+            let stack = if backward { forward.reversed().expect("no texture") } else { forward.clone() };
             let what = format!(
                 "{} from {} at {} nm, {} deg, {}",
                 part.name, case.from, case.wavelength_nm, case.angle_deg, case.polarisation

@@ -27,6 +27,8 @@ SCRIPTS = [
     "cone",
     "colours",
     "phases",
+    "graded",
+    "facets",
 ]
 
 

@@ -13,7 +13,6 @@ use std::f64::consts::{FRAC_PI_2, FRAC_PI_8, TAU};
 
 use num_complex::Complex64;
 
-use crate::coating::Detail;
 use crate::error::OpticsError;
 use crate::matrix::Mode;
 use crate::plan::Plan;
@@ -196,9 +195,8 @@ impl Builder<'_> {
         };
         let indices = self.plan.indices(wavelength_nm)?;
         let tilted = self.plan.tilted(&indices, wavelength_nm, angle_rad)?;
-        let alpha = indices[0].re * angle_rad.sin();
         let normals: Vec<Complex64> =
-            indices.iter().map(|&n| ((n - alpha) * (n + alpha)).sqrt() * (TAU / wavelength_nm)).collect();
+            tilted.media.iter().map(|medium| medium.normal() * (TAU / wavelength_nm)).collect();
         let pass = |films: &Vec<crate::plan::Layer>| {
             let phase = |film: &crate::plan::Layer| {
                 let phase = normals[film.material] * film.thickness_nm;
@@ -210,10 +208,10 @@ impl Builder<'_> {
         let phases = self.plan.coatings.iter().map(pass).collect();
         let mut channels = Vec::new();
         for &mode in self.modes {
-            channels.extend(tilted.coatings(mode, Detail::Whole).into_iter().map(|link| Channel {
-                numerator: link.front.numerator,
-                denominator: link.front.denominator,
-                ln_scale: link.front.ln_scale,
+            channels.extend(tilted.resonators(mode).map(|coating| Channel {
+                numerator: coating.numerator,
+                denominator: coating.denominator,
+                ln_scale: coating.ln_scale,
             }));
         }
         Ok(Sample { x, phases, indices, channels })

@@ -7,7 +7,7 @@ use num_complex::Complex64;
 use super::cone::{Cone, Stretch};
 use super::mesh::{Along, Mesh};
 use crate::error::OpticsError;
-use crate::field::peak;
+use crate::field::{self, peak};
 use crate::phase::phase;
 use crate::plan::Plan;
 use crate::quadrature::gauss_legendre;
@@ -45,7 +45,7 @@ pub(crate) struct Probe {
 
 impl Probe {
     pub(crate) fn new(stack: &Stack, quantity: &Quantity, light: &Light) -> Result<Probe, OpticsError> {
-        let plan = Plan::new(stack)?;
+        let plan = if *quantity == Quantity::PeakField { field::plan(stack)? } else { Plan::new(stack)? };
         quantity.check(&plan)?;
         let cone = Cone::new(light)?;
         let sizes: &[usize] = if cone.is_some() { &NODES } else { &[] };

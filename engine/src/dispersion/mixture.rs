@@ -45,7 +45,7 @@ impl Index {
 }
 
 /// The permittivity of a mixture from (permittivity, fraction) of its parts.
-pub(super) fn mix<N: Number>(rule: MixingRule, parts: &[(N, f64)]) -> N {
+pub(crate) fn mix<N: Number>(rule: MixingRule, parts: &[(N, f64)]) -> N {
     let one = || N::real(1.0);
     let sum = |term: &dyn Fn(&N) -> N| {
         parts.iter().fold(N::real(0.0), |sum, (eps, fraction)| sum + term(eps).scale(*fraction))
@@ -68,15 +68,35 @@ pub(super) fn mix<N: Number>(rule: MixingRule, parts: &[(N, f64)]) -> N {
 /// The root of Bruggeman's equation that a passive mixture has.
 ///
 /// The equation is the same as ε = 1/(3 Σ fᵢ/(εᵢ + 2ε)). For passive parts the right-hand side maps the upper
-/// half-plane into itself, and so has one fixed point there (Denjoy and Wolff), which iteration finds:
-/// that is the right root, for any number of parts. Newton's steps then make it exact.
+/// half-plane into itself, and so has one fixed point there (Denjoy and Wolff): that is the right root, for any number
+/// of parts.
 fn bruggeman<N: Number>(parts: &[(N, f64)]) -> N {
-    let values: Vec<(Complex64, f64)> =
-        parts.iter().map(|(eps, fraction)| (eps.value(), *fraction)).collect();
-    let start: Complex64 = values.iter().map(|(eps, fraction)| eps * *fraction).sum();
-    let mut root = start;
+    match parts {
+        [one, other] => polished(of_two(one, other), parts, 1),
+        _ => {
+            let values: Vec<(Complex64, f64)> =
+                parts.iter().map(|(eps, fraction)| (eps.value(), *fraction)).collect();
+            polished(N::constant(iterated(&values)), parts, 4)
+        }
+    }
+}
+
+/// Of two parts it is the root of a quadratic equation, 2ε² − hε − ε₁ε₂ = 0 with h = Σ (3fᵢ − 1) εᵢ: the one in the
+/// upper half-plane, or the positive one where both are real.
+fn of_two<N: Number>((one, f): &(N, f64), (other, g): &(N, f64)) -> N {
+    let h = one.scale(3.0 * f - 1.0) + other.scale(3.0 * g - 1.0);
+    let product = one.clone() * other.clone();
+    let root = (h.clone() * h.clone() + product.scale(8.0)).sqrt();
+    let (plus, minus) = (h.clone() + root.clone(), h - root);
+    let lies_above = minus.value().im > plus.value().im + 1e-12 * minus.value().norm();
+    if lies_above { minus.scale(0.25) } else { plus.scale(0.25) }
+}
+
+/// The fixed point by iteration.
+fn iterated(parts: &[(Complex64, f64)]) -> Complex64 {
+    let mut root: Complex64 = parts.iter().map(|(eps, fraction)| eps * *fraction).sum();
     for _ in 0..10_000 {
-        let sum: Complex64 = values.iter().map(|(eps, fraction)| *fraction / (eps + 2.0 * root)).sum();
+        let sum: Complex64 = parts.iter().map(|(eps, fraction)| *fraction / (eps + 2.0 * root)).sum();
         let next = 0.5 * (root + 1.0 / (3.0 * sum));
         let settled = (next - root).norm() <= 1e-10 * next.norm();
         root = next;
@@ -84,9 +104,12 @@ fn bruggeman<N: Number>(parts: &[(N, f64)]) -> N {
             break;
         }
     }
-    // Each of Newton's steps doubles the digits, and the derivatives that a number may carry.
-    let mut eps = N::constant(root);
-    for _ in 0..4 {
+    root
+}
+
+/// The root after some of Newton's steps, each of which doubles the digits, and the derivatives that a number may carry.
+fn polished<N: Number>(mut eps: N, parts: &[(N, f64)], steps: usize) -> N {
+    for _ in 0..steps {
         let mut balance = N::real(0.0);
         let mut slope = N::real(0.0);
         for (part, fraction) in parts {
@@ -133,6 +156,18 @@ mod tests {
         let two = mixed(MixingRule::Bruggeman, &[(2.35, 0.0, 0.3), (1.46, 0.0, 0.7)]);
         let three = mixed(MixingRule::Bruggeman, &[(2.35, 0.0, 0.3), (1.46, 0.0, 0.7), (9.0, 0.0, 0.0)]);
         assert!((two - three).norm() < 1e-14);
+    }
+
+    #[test]
+    fn two_parts_solve_the_same_equation_in_closed_form_as_by_iteration() {
+        for metal in [Complex64::new(0.06, 3.6), Complex64::new(1.4, 7.6), Complex64::new(3.9, 0.02)] {
+            for step in 1..20 {
+                let f = f64::from(step) / 20.0;
+                let parts = [(metal * metal, f), (Complex64::new(2.13, 0.0), 1.0 - f)];
+                let (closed, found) = (bruggeman(&parts), polished(iterated(&parts), &parts, 4));
+                assert!((closed - found).norm() < 1e-12 * found.norm(), "{metal} {f}: {closed} {found}");
+            }
+        }
     }
 
     #[test]

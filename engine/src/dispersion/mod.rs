@@ -15,6 +15,7 @@ use std::sync::Arc;
 use num_complex::Complex64;
 
 pub use mixture::MixingRule;
+pub(crate) use mixture::mix;
 pub use oscillator::Oscillator;
 
 use crate::constants::EV_NM;

@@ -19,8 +19,9 @@ use overcoat_engine::{Body, Film, Index, Polarisation, Response, Stack};
 
 /// The light goes from the first to the last medium; between them (n, k, nm).
 fn coated(incident: f64, films: &[(f64, f64, f64)], exit: (f64, f64)) -> Stack {
-    let films = films.iter().map(|&(n, k, thickness_nm)| Film { index: index(n, k), thickness_nm }).collect();
+    let films = films.iter().map(|&(n, k, thickness_nm)| Film::new(index(n, k), thickness_nm)).collect();
     Stack {
+        facets_rad: None,
         incident: index(incident, 0.0),
         coatings: vec![films],
         bodies: vec![],
@@ -36,7 +37,13 @@ fn plates(count: usize, (n, k): (f64, f64), thickness_nm: f64) -> Stack {
         thickness_nm,
     };
     let bodies: Vec<Body> = (0..2 * count - 1).map(body).collect();
-    Stack { incident: air.clone(), coatings: vec![vec![]; bodies.len() + 1], bodies, exit: air.clone() }
+    Stack {
+        facets_rad: None,
+        incident: air.clone(),
+        coatings: vec![vec![]; bodies.len() + 1],
+        bodies,
+        exit: air.clone(),
+    }
 }
 
 fn index(n: f64, k: f64) -> Index {

@@ -50,16 +50,17 @@ fn coherent_film_on_an_incoherent_plate() {
     // T_M = 2s/(s² + 1), T_m = 4n²s/(n⁴ + n²(s² + 1) + s²).
     let (air, glass, film) = (index(1.0, 0.0), index(1.5168, 0.0), index(2.3, 0.0));
     let plate = |thickness_nm: f64| Stack {
+        facets_rad: None,
         incident: air.clone(),
-        coatings: vec![vec![overcoat_engine::Film { index: film.clone(), thickness_nm }], vec![]],
+        coatings: vec![vec![overcoat_engine::Film::new(film.clone(), thickness_nm)], vec![]],
         bodies: vec![Body { index: glass.clone(), thickness_nm: 1e6 }],
         exit: air.clone(),
     };
     let quarter = 600.0 / 4.0 / 2.3;
-    for stack in [plate(2.0 * quarter), plate(2.0 * quarter).reversed()] {
+    for stack in [plate(2.0 * quarter), plate(2.0 * quarter).reversed().expect("no texture")] {
         same("T_M", normal(&stack, 600.0).transmittance, 0.919_082_716_668_903_0);
     }
-    for stack in [plate(quarter), plate(quarter).reversed()] {
+    for stack in [plate(quarter), plate(quarter).reversed().expect("no texture")] {
         same("T_m", normal(&stack, 600.0).transmittance, 0.672_221_697_908_487_0);
     }
 }

@@ -6,90 +6,61 @@
 //! order it agrees with the exponential factor of L. Névot, P. Croce, Rev. Phys. Appl. 15, 761 (1980). It ends where σ is no
 //! longer small against the wavelength in the films: light that is scattered is not in it.
 
-use crate::model::{Element, Layer, Stack};
-use overcoat_engine::{Index, MixingRule};
+use crate::model::{Element, Layer, LayerMaterial, Stack};
+use overcoat_engine::{Film, Gradient, Index, MixingRule, Profile, Steps};
 
-/// A film: its index and its thickness in nm.
-pub(super) type Piece = (Index, f64);
-
-/// Which of a stack's faces are rough, in terms of the elements that it lies between.
-struct Rough {
-    /// The rough layer.
-    layer: usize,
-    /// Whether its rough face is the one that the light meets first.
-    front: bool,
-    /// nm.
-    rms: f64,
+/// What a layer is made of between two of its depths, as shares of its thickness. None where a material has no index.
+fn profile(layer: &Layer, from: f64, to: f64) -> Option<Profile> {
+    Some(match &layer.material {
+        LayerMaterial::Plain(material) => Profile::Uniform(material.index.clone()?),
+        LayerMaterial::Graded(graded) => Profile::Graded(Gradient {
+            front: graded.front.index.clone()?,
+            back: graded.back.index.clone()?,
+            shares: (from, to),
+            rule: graded.rule,
+            // How many steps an integrated profile needs is found where its light is known.
+            steps: graded.steps.map_or(Steps::Smooth(1), Steps::Films),
+        }),
+    })
 }
 
-fn rough_faces(stack: &Stack) -> Vec<Rough> {
-    let mut faces = Vec::new();
-    for side in stack.sides() {
-        for &index in &side.layers {
-            let rms = stack.layer(index).and_then(|layer| layer.rough).map_or(0.0, |(rms, _)| rms);
-            if rms > 0.0 {
-                // The upper face is the one away from the piece that the film lies on.
-                faces.push(Rough { layer: index, front: side.front, rms });
-            }
-        }
+/// What a layer is made of at the face that the light meets first, or at the other.
+fn at_face(layer: &Layer, front: bool) -> Option<Index> {
+    match &layer.material {
+        LayerMaterial::Graded(graded) if !front => graded.back.index.clone(),
+        material => material.materials().next()?.index.clone(),
     }
-    faces
-}
-
-/// The element on the other side of a rough face; none at an end of the stack.
-fn beyond(stack: &Stack, face: &Rough) -> Option<usize> {
-    if face.front {
-        face.layer.checked_sub(1)
-    } else {
-        Some(face.layer + 1).filter(|at| *at < stack.elements.len())
-    }
-}
-
-/// What is left of every layer between its rough faces, nm; a body keeps what it has.
-fn cores(stack: &Stack) -> Vec<f64> {
-    let mut left: Vec<f64> = stack
-        .elements
-        .iter()
-        .map(|element| match element {
-            Element::Layer(layer) => layer.thickness,
-            Element::Body(_) => f64::INFINITY,
-        })
-        .collect();
-    for face in rough_faces(stack) {
-        left[face.layer] -= face.rms;
-        if let Some(other) = beyond(stack, &face) {
-            left[other] -= face.rms;
-        }
-    }
-    left
-}
-
-/// Whether some roughness is as large as a film beside it: then there is no interface to speak of.
-pub(super) fn too_rough(stack: &Stack) -> bool {
-    cores(stack).iter().any(|left| *left < 0.0)
 }
 
 /// The films of every element, in the light's order: none for a body. None where a material has no index, which has been
 /// reported.
-pub(super) fn pieces(stack: &Stack) -> Option<Vec<Vec<Piece>>> {
-    let index_of = |layer: &Layer| layer.material.materials().next()?.index.clone();
-    let mut pieces: Vec<Vec<Piece>> = Vec::with_capacity(stack.elements.len());
-    for (element, left) in stack.elements.iter().zip(cores(stack)) {
-        pieces.push(match element {
-            Element::Layer(layer) => vec![(index_of(layer)?, left.max(0.0))],
-            Element::Body(_) => Vec::new(),
-        });
+pub(super) fn pieces(stack: &Stack) -> Option<Vec<Vec<Film>>> {
+    let faces = stack.rough_faces();
+    let mut pieces: Vec<Vec<Film>> = Vec::with_capacity(stack.elements.len());
+    for (at, (element, left)) in stack.elements.iter().zip(stack.cores()).enumerate() {
+        let Element::Layer(layer) = element else {
+            pieces.push(Vec::new());
+            continue;
+        };
+        // Between its rough faces a gradient is what it was.
+        let cut = |front: bool| {
+            let own = faces.iter().filter(|face| face.layer == at && face.front == front);
+            let others = faces.iter().filter(|face| stack.across(face) == Some(at) && face.front != front);
+            own.chain(others).map(|face| face.rms / layer.thickness.max(f64::MIN_POSITIVE)).sum::<f64>()
+        };
+        let profile = profile(layer, cut(true).min(1.0), (1.0 - cut(false)).max(0.0))?;
+        pieces.push(vec![Film { profile, thickness_nm: left.max(0.0) }]);
     }
-    for face in rough_faces(stack) {
-        let own = index_of(stack.layer(face.layer)?)?;
-        let other = match beyond(stack, &face).map(|at| &stack.elements[at]) {
-            Some(Element::Layer(layer)) => index_of(layer)?,
+    for face in faces {
+        let own = at_face(stack.layer(face.layer)?, face.front)?;
+        let other = match stack.across(&face).map(|at| &stack.elements[at]) {
+            Some(Element::Layer(layer)) => at_face(layer, !face.front)?,
             Some(Element::Body(body)) => body.material.index.clone()?,
             None if face.front => stack.incident.material.index.clone()?,
             None => stack.exit.material.index.clone()?,
         };
         let mixed = Index::mixture(MixingRule::Bruggeman, &[(own, 0.5), (other, 0.5)]).ok()?;
-        let film = (mixed, 2.0 * face.rms);
+        let film = Film::new(mixed, 2.0 * face.rms);
         if face.front { pieces[face.layer].insert(0, film) } else { pieces[face.layer].push(film) }
     }
     Some(pieces)

@@ -81,19 +81,29 @@ pub fn check(project: Project, options: &Options) -> Report {
     Report { sources: project.sources, recipes: reports, diagnostics, not_understood }
 }
 
-/// A stack as the engine evaluates it, with the light from the incident side or from the exit.
+/// A stack as the engine evaluates it, with the light from the incident side or from the exit, its graded films integrated for
+/// a band of wavelengths in nm and an angle in rad.
 ///
 /// # Errors
 ///
-/// What of the stack can't be evaluated, as a noun phrase.
-pub fn engine_stack(stack: &Stack, from_exit: bool) -> Result<overcoat_engine::Stack, &'static str> {
-    match optics::beyond(stack) {
-        Some(what) => Err(what),
-        None => {
-            let optics = optics::Optics::new(stack).ok_or("a material without optical constants")?;
-            Ok(optics.facing(from_exit).clone())
-        }
-    }
+/// Why it can't be evaluated, as a clause.
+pub fn engine_stack(
+    stack: &Stack,
+    from_exit: bool,
+    band: (f64, f64),
+    angle: f64,
+) -> Result<overcoat_engine::Stack, String> {
+    let optics = optics::Optics::new(stack, &[band], angle).map_err(|error| error.to_string())?;
+    let optics = optics.ok_or("a material has no optical constants")?;
+    let facing = optics.facing(from_exit).ok_or("light from inside a textured piece is not followed")?;
+    Ok(facing.clone())
+}
+
+/// The range of vacuum wavelengths in nm over which all materials of a stack have constants; `None` is everywhere.
+pub fn range_of(stack: &Stack) -> Option<(f64, f64)> {
+    let ranges = optics::materials(stack);
+    let ranges = ranges.iter().filter_map(|material| material.index.as_ref()?.range_nm());
+    ranges.reduce(|a, b| (a.0.max(b.0), a.1.min(b.1)))
 }
 
 /// The files whose own findings are to be told: those asked for and those that they use.

@@ -1,17 +1,17 @@
 //! The model's stack as the engine has it, and what the engine says of it in the shop's names.
 
 use super::films;
-use crate::finding::{Fact, OpticsFact, Verdict};
-use crate::model::{Element, LayerMaterial, Material, Requirement, SpectrumKind, Stack, Target, Weighting};
+use crate::finding::{Fact, OpticsFact, Untold, Verdict};
+use crate::model::{Element, Material, Requirement, SpectrumKind, Stack, Target, Weighting};
 use overcoat_engine::{self as engine, Index, IndexError, OpticsError, Quantity, SpectralWeight};
 use std::sync::Arc;
 
-/// A stack that the engine can evaluate: one of plain films.
+/// A stack that the engine can evaluate.
 pub(super) struct Optics {
     /// As the light meets it from the incident side.
     forward: engine::Stack,
-    /// As light from the exit side meets it.
-    backward: engine::Stack,
+    /// As light from the exit side meets it; none where that is inside a textured piece.
+    backward: Option<engine::Stack>,
     /// For each element of the model's stack, where the engine has it.
     seats: Vec<Seat>,
     /// The materials with their indices, for messages.
@@ -45,57 +45,26 @@ pub(super) fn materials(stack: &Stack) -> Vec<Arc<Material>> {
     found
 }
 
-/// What of a stack is not evaluated yet, as a noun phrase.
-pub(super) fn beyond(stack: &Stack) -> Option<&'static str> {
-    if stack.layers().any(|layer| matches!(layer.material, LayerMaterial::Graded(_))) {
-        return Some("a stack with a graded layer");
-    }
-    if films::too_rough(stack) {
-        return Some("an interface as rough as the film beside it is thick");
-    }
-    let textured = stack.exit.textured.is_some() || stack.incident.textured.is_some();
-    let textured = textured
-        || stack
-            .elements
-            .iter()
-            .any(|element| matches!(element, Element::Body(body) if body.textured.is_some()));
-    textured.then_some("a stack on a textured substrate")
-}
-
 impl Optics {
-    /// The engine's stack; none where a material has no index, which has been reported.
-    pub(super) fn new(stack: &Stack) -> Option<Optics> {
-        let mut coatings: Vec<Vec<engine::Film>> = vec![Vec::new()];
-        let mut bodies = Vec::new();
-        let mut seats = Vec::with_capacity(stack.elements.len());
-        for (element, pieces) in stack.elements.iter().zip(films::pieces(stack)?) {
-            match element {
-                Element::Layer(_) => {
-                    let coating = coatings.len() - 1;
-                    seats.push(Seat::Films(coating, coatings[coating].len(), pieces.len()));
-                    let films =
-                        pieces.into_iter().map(|(index, thickness_nm)| engine::Film { index, thickness_nm });
-                    coatings[coating].extend(films);
-                }
-                Element::Body(body) => {
-                    seats.push(Seat::Body(bodies.len()));
-                    bodies.push(engine::Body {
-                        index: body.material.index.clone()?,
-                        thickness_nm: body.thickness,
-                    });
-                    coatings.push(Vec::new());
-                }
-            }
-        }
-        let incident = stack.incident.material.index.clone()?;
-        let exit = stack.exit.material.index.clone()?;
-        let forward = engine::Stack { incident, coatings, bodies, exit };
-        Some(Optics { backward: forward.reversed(), forward, seats, materials: materials(stack) })
+    /// The engine's stack, its graded films integrated for light of some bands in nm and up to an angle in rad; none where a
+    /// material has no index, which has been reported.
+    ///
+    /// # Errors
+    /// A graded film that can't be integrated.
+    pub(super) fn new(
+        stack: &Stack,
+        bands: &[(f64, f64)],
+        angle: f64,
+    ) -> Result<Option<Optics>, OpticsError> {
+        let Some((forward, seats)) = engine_stack(stack) else { return Ok(None) };
+        let bands = within_data(&forward, bands);
+        let forward = forward.settled(&bands, angle)?;
+        Ok(Some(Optics { backward: forward.reversed(), forward, seats, materials: materials(stack) }))
     }
 
     /// The stack as the light of a requirement meets it.
-    pub(super) fn facing(&self, from_exit: bool) -> &engine::Stack {
-        if from_exit { &self.backward } else { &self.forward }
+    pub(super) fn facing(&self, from_exit: bool) -> Option<&engine::Stack> {
+        if from_exit { self.backward.as_ref() } else { Some(&self.forward) }
     }
 
     /// The films, bodies and half-space that a name stands for, as the engine counts them; none where it stands for
@@ -154,6 +123,11 @@ impl Optics {
         })
     }
 
+    /// The materials, for messages.
+    pub(super) fn materials(&self) -> &[Arc<Material>] {
+        &self.materials
+    }
+
     /// The materials without constants somewhere in a band, nm.
     pub(super) fn gaps(&self, band: (f64, f64)) -> Vec<OpticsFact> {
         let mut gaps = Vec::new();
@@ -170,80 +144,122 @@ impl Optics {
         }
         gaps
     }
+}
 
-    /// What the engine's error means in the shop's names.
-    pub(super) fn explain(&self, error: &OpticsError, requirement: &Requirement, stack: &Stack) -> Trouble {
-        let spectrum = requirement.under.as_ref().map(|under| &under.spectrum);
-        match error {
-            OpticsError::Material { index, cause } => {
-                let is =
-                    |material: &&Arc<Material>| material.index.as_ref().is_some_and(|own| own.same_as(index));
-                let (name, defined) = match self.materials.iter().find(is) {
-                    Some(material) => (material.name.clone(), material.place),
-                    None => ("a material".to_owned(), stack.place),
-                };
-                Trouble::Fact(Box::new(Fact::Optics(match *cause {
-                    IndexError::Outside { wavelength_nm, range_nm } => {
-                        let asked = (wavelength_nm, wavelength_nm);
-                        OpticsFact::OutsideData { name, defined, asked, range: range_nm }
-                    }
-                    IndexError::NotPhysical { wavelength_nm, n, k } => {
-                        OpticsFact::NotPhysical { name, defined, wavelength: wavelength_nm, nk: Some((n, k)) }
-                    }
-                    IndexError::NotFinite { wavelength_nm } | IndexError::Wavelength { wavelength_nm } => {
-                        OpticsFact::NotPhysical { name, defined, wavelength: wavelength_nm, nk: None }
-                    }
-                })))
-            }
-            OpticsError::AbsorbingIncident { wavelength_nm, k } => {
-                let medium = if requirement.from_exit { &stack.exit } else { &stack.incident };
-                Trouble::Verdict(Verdict::AbsorbingIncident {
-                    material: medium.material.name.clone(),
-                    k: *k,
-                    wavelength: *wavelength_nm,
-                    place: medium.place,
-                })
-            }
-            OpticsError::WeightOutside { band_nm, range_nm } => Trouble::Verdict(match spectrum {
-                Some(spectrum) => Verdict::SpectrumOutside {
-                    name: spectrum.name.clone(),
-                    defined: spectrum.place,
-                    asked: *band_nm,
-                    range: *range_nm,
-                },
-                None => not_settled(f64::INFINITY, band_nm.0),
-            }),
-            OpticsError::WeightZero { band_nm } => Trouble::Verdict(Verdict::SpectrumDark {
-                name: spectrum.map_or(String::new(), |spectrum| spectrum.name.clone()),
+/// What the engine's error means in the shop's names.
+pub(super) fn explain(
+    error: &OpticsError,
+    materials: &[Arc<Material>],
+    requirement: &Requirement,
+    stack: &Stack,
+) -> Trouble {
+    let spectrum = requirement.under.as_ref().map(|under| &under.spectrum);
+    match error {
+        OpticsError::Material { index, cause } => {
+            let is =
+                |material: &&Arc<Material>| material.index.as_ref().is_some_and(|own| own.same_as(index));
+            let (name, defined) = match materials.iter().find(is) {
+                Some(material) => (material.name.clone(), material.place),
+                None => ("a material".to_owned(), stack.place),
+            };
+            Trouble::Fact(Box::new(Fact::Optics(match *cause {
+                IndexError::Outside { wavelength_nm, range_nm } => {
+                    let asked = (wavelength_nm, wavelength_nm);
+                    OpticsFact::OutsideData { name, defined, asked, range: range_nm }
+                }
+                IndexError::NotPhysical { wavelength_nm, n, k } => {
+                    OpticsFact::NotPhysical { name, defined, wavelength: wavelength_nm, nk: Some((n, k)) }
+                }
+                IndexError::NotFinite { wavelength_nm } | IndexError::Wavelength { wavelength_nm } => {
+                    OpticsFact::NotPhysical { name, defined, wavelength: wavelength_nm, nk: None }
+                }
+            })))
+        }
+        OpticsError::AbsorbingIncident { wavelength_nm, k } => {
+            let medium = if requirement.from_exit { &stack.exit } else { &stack.incident };
+            Trouble::Verdict(Verdict::AbsorbingIncident {
+                material: medium.material.name.clone(),
+                k: *k,
+                wavelength: *wavelength_nm,
+                place: medium.place,
+            })
+        }
+        OpticsError::WeightOutside { band_nm, range_nm } => Trouble::Verdict(match spectrum {
+            Some(spectrum) => Verdict::SpectrumOutside {
+                name: spectrum.name.clone(),
+                defined: spectrum.place,
                 asked: *band_nm,
-            }),
-            OpticsError::NotConverged { estimate, error, wavelength_nm } => {
-                Trouble::Verdict(Verdict::NotConverged {
-                    estimate: *estimate,
-                    error: *error,
-                    wavelength: *wavelength_nm,
-                })
-            }
-            OpticsError::NoPhase { why } | OpticsError::NoField { why } => {
-                Trouble::Verdict(Verdict::Meaningless { why })
-            }
-            OpticsError::Dark { wavelength_nm } => {
-                Trouble::Verdict(Verdict::NoLight { wavelength: Some(*wavelength_nm) })
-            }
-            OpticsError::NotFinite { wavelength_nm, .. } => {
-                Trouble::Verdict(not_settled(f64::INFINITY, *wavelength_nm))
-            }
-            _ => {
-                let start =
-                    requirement.bands.first().map(|band| band.0).or(requirement.wavelengths.first().copied());
-                Trouble::Verdict(not_settled(f64::INFINITY, start.unwrap_or(0.0)))
-            }
+                range: *range_nm,
+            },
+            None => not_settled(f64::INFINITY, band_nm.0),
+        }),
+        OpticsError::WeightZero { band_nm } => Trouble::Verdict(Verdict::SpectrumDark {
+            name: spectrum.map_or(String::new(), |spectrum| spectrum.name.clone()),
+            asked: *band_nm,
+        }),
+        OpticsError::NotConverged { estimate, error, wavelength_nm } => {
+            Trouble::Verdict(Verdict::NotConverged {
+                estimate: *estimate,
+                error: *error,
+                wavelength: *wavelength_nm,
+            })
+        }
+        OpticsError::Textured { .. } => Trouble::Verdict(Verdict::Textured(Untold::Tilted)),
+        OpticsError::NoPhase { .. } | OpticsError::NoField { .. } if stack.exit.textured.is_some() => {
+            Trouble::Verdict(Verdict::Textured(Untold::Waves))
+        }
+        OpticsError::NoPhase { why } | OpticsError::NoField { why } => {
+            Trouble::Verdict(Verdict::Meaningless { why })
+        }
+        OpticsError::Dark { wavelength_nm } => {
+            Trouble::Verdict(Verdict::NoLight { wavelength: Some(*wavelength_nm) })
+        }
+        OpticsError::NotFinite { wavelength_nm, .. } => {
+            Trouble::Verdict(not_settled(f64::INFINITY, *wavelength_nm))
+        }
+        _ => {
+            let start =
+                requirement.bands.first().map(|band| band.0).or(requirement.wavelengths.first().copied());
+            Trouble::Verdict(not_settled(f64::INFINITY, start.unwrap_or(0.0)))
         }
     }
 }
 
 fn not_settled(error: f64, wavelength: f64) -> Verdict {
     Verdict::NotConverged { estimate: 0.0, error, wavelength }
+}
+
+/// The engine's stack and where it has every element; none where a material has no index.
+fn engine_stack(stack: &Stack) -> Option<(engine::Stack, Vec<Seat>)> {
+    let mut coatings: Vec<Vec<engine::Film>> = vec![Vec::new()];
+    let mut bodies = Vec::new();
+    let mut seats = Vec::with_capacity(stack.elements.len());
+    for (element, pieces) in stack.elements.iter().zip(films::pieces(stack)?) {
+        match element {
+            Element::Layer(_) => {
+                let coating = coatings.len() - 1;
+                seats.push(Seat::Films(coating, coatings[coating].len(), pieces.len()));
+                coatings[coating].extend(pieces);
+            }
+            Element::Body(body) => {
+                seats.push(Seat::Body(bodies.len()));
+                let index = body.material.index.clone()?;
+                bodies.push(engine::Body { index, thickness_nm: body.thickness });
+                coatings.push(Vec::new());
+            }
+        }
+    }
+    let incident = stack.incident.material.index.clone()?;
+    let exit = stack.exit.material.index.clone()?;
+    let facets_rad = stack.exit.textured.map(|(angle, _)| angle);
+    Some((engine::Stack { incident, coatings, bodies, exit, facets_rad }, seats))
+}
+
+/// The bands as far as all materials have data: what lies beyond is told where it is asked for.
+fn within_data(stack: &engine::Stack, bands: &[(f64, f64)]) -> Vec<(f64, f64)> {
+    let data = stack.range_nm().unwrap_or((0.0, f64::INFINITY));
+    let cut = |band: &(f64, f64)| (band.0.max(data.0), band.1.min(data.1));
+    bands.iter().map(cut).filter(|band| band.0 <= band.1).collect()
 }
 
 /// Why a requirement has no value.

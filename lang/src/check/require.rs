@@ -2,10 +2,12 @@
 
 use super::optics::{self, Optics, Trouble};
 use super::quantity;
-use crate::finding::{Finding, OpticsFact, PromiseFact, Verdict};
-use crate::model::{Bound, Quantity, Recipe, Requirement, Stack};
+use crate::finding::{Finding, OpticsFact, PromiseFact, Untold, Verdict};
+use crate::model::{Angles, Bound, Quantity, Recipe, Requirement, Stack};
 use crate::report::{At, RequirementReport};
 use crate::source::Place;
+use overcoat_engine as engine;
+use std::f64::consts::FRAC_PI_2;
 use std::sync::Arc;
 
 /// A value that may be the one nearest to breaking a bound.
@@ -22,20 +24,22 @@ pub(super) struct Asked<'a> {
     pub(super) requirement: &'a Requirement,
     pub(super) stack: &'a Stack,
     pub(super) optics: &'a Optics,
+    /// The stack as the requirement's light meets it.
+    pub(super) engine: &'a engine::Stack,
 }
 
 /// Evaluates every requirement of a sound recipe.
 pub(super) fn check(recipe: &Recipe, stack: &Stack, findings: &mut Vec<Finding>) -> Vec<RequirementReport> {
-    let beyond = optics::beyond(stack);
-    let optics = if beyond.is_none() { Optics::new(stack) } else { None };
+    let spans: Vec<(f64, f64)> =
+        recipe.all_requirements().flat_map(|(requirement, _)| quantity::spans(requirement)).collect();
+    let angle = recipe.all_requirements().map(|(requirement, _)| steepest(requirement)).fold(0.0, f64::max);
+    let optics = Optics::new(stack, &spans, angle);
     let mut reports = Vec::new();
     for (requirement, asked_at) in recipe.all_requirements() {
-        let result = match (&optics, beyond) {
-            (Some(optics), _) => evaluate(&Asked { requirement, stack, optics }),
-            (None, Some(what)) => {
-                Err(vec![Trouble::Verdict(Verdict::NotEvaluated { what: what.to_owned() })])
-            }
-            (None, None) => Err(Vec::new()),
+        let result = match &optics {
+            Ok(Some(optics)) => evaluate(requirement, stack, optics),
+            Ok(None) => Err(Vec::new()),
+            Err(error) => Err(vec![optics::explain(error, &optics::materials(stack), requirement, stack)]),
         };
         let mut report = blank(requirement, asked_at);
         let tell = |verdict| PromiseFact {
@@ -155,13 +159,26 @@ impl Judged {
     }
 }
 
-fn evaluate(asked: &Asked<'_>) -> Result<Judged, Vec<Trouble>> {
-    let spans = quantity::spans(asked.requirement);
-    let gaps: Vec<OpticsFact> = spans.into_iter().flat_map(|band| asked.optics.gaps(band)).collect();
+fn evaluate(requirement: &Requirement, stack: &Stack, optics: &Optics) -> Result<Judged, Vec<Trouble>> {
+    let spans = quantity::spans(requirement);
+    let gaps: Vec<OpticsFact> = spans.into_iter().flat_map(|band| optics.gaps(band)).collect();
     if !gaps.is_empty() {
         return Err(gaps.into_iter().map(|gap| Trouble::Fact(Box::new(gap.into()))).collect());
     }
-    quantity::judge(asked).map_err(|trouble| vec![trouble])
+    let Some(engine) = optics.facing(requirement.from_exit) else {
+        return Err(vec![Trouble::Verdict(Verdict::Textured(Untold::Inside))]);
+    };
+    quantity::judge(&Asked { requirement, stack, optics, engine }).map_err(|trouble| vec![trouble])
+}
+
+/// The greatest angle of incidence of a requirement's light, rad, short of grazing.
+fn steepest(requirement: &Requirement) -> f64 {
+    let angle = match &requirement.angles {
+        Angles::List(angles) => angles.iter().copied().fold(0.0, f64::max),
+        Angles::Range(_, to) => *to,
+    };
+    let angle = if requirement.hemispherical { FRAC_PI_2 } else { angle + requirement.cone };
+    angle.min(89_f64.to_radians())
 }
 
 fn is_share(quantity: &Quantity) -> bool {

@@ -79,6 +79,8 @@ pub enum Verdict {
         /// Why.
         why: &'static str,
     },
+    /// What a textured face is not evaluated for.
+    Textured(Untold),
     /// A photocurrent under a light of unknown strength.
     NoIrradiance {
         /// The spectrum.
@@ -174,4 +176,15 @@ impl PromiseFact {
     pub fn bound(&self) -> &Bound {
         &self.requirement.bound
     }
+}
+
+/// What can't be told of a textured face.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Untold {
+    /// Light from inside the piece.
+    Inside,
+    /// Light at an angle.
+    Tilted,
+    /// A phase or a field.
+    Waves,
 }

@@ -3,7 +3,7 @@
 use super::Words;
 use super::number::{self, angle, apart, band, or_list, ratio, significant, wavelength};
 use crate::code::Code;
-use crate::finding::{PromiseFact, Verdict};
+use crate::finding::{PromiseFact, Untold, Verdict};
 use crate::model::{Beam, Quantity, Requirement};
 use crate::report::At;
 use crate::source::Place;
@@ -117,6 +117,24 @@ fn verdict(fact: &PromiseFact) -> Words {
                     "in `{recipe}`, {} has no meaning: {why}; promise it of one coating on a half-space, in a parallel beam{beam}",
                     name(requirement)
                 ),
+            )
+        }
+        Verdict::Textured(untold) => {
+            let why = match untold {
+                Untold::Inside => {
+                    "light from inside a textured piece is not followed; promise it of light from the incident side"
+                }
+                Untold::Tilted => {
+                    "how much light pyramids return at an angle depends on how their rows lie to the beam, which a recipe \
+                     does not say; promise it at 0 deg, without a cone"
+                }
+                Untold::Waves => {
+                    "every ray has met facets at places of its own; promise it of a flat stack with the same films"
+                }
+            };
+            Words::new(
+                Code::InvalidValue,
+                format!("in `{recipe}`, {} has no value on a textured face: {why}", name(requirement)),
             )
         }
         Verdict::NoIrradiance { name, defined } => Words::new(

@@ -8,6 +8,7 @@ mod chamber;
 mod material;
 mod recipe;
 mod requirement;
+mod rough;
 mod spectrum;
 mod stack;
 
@@ -17,6 +18,7 @@ pub use recipe::{Recipe, Reference, Waiver};
 pub use requirement::{
     Angles, Beam, Bound, Mask, Observer, Quantity, Requirement, Side, Specification, Target, Weighting,
 };
+pub use rough::RoughFace;
 pub use spectrum::{Spectrum, SpectrumKind};
 pub use stack::{
     Body, BodyKind, CoatedSide, Element, Graded, Layer, LayerMaterial, Medium, MixingRule, Stack, Thickness,

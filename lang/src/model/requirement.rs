@@ -78,6 +78,14 @@ pub enum Quantity {
     Yield,
 }
 
+impl Quantity {
+    /// Whether it is a curve against wavelength on a scale that edges and masks refer to.
+    pub fn is_curve(&self) -> bool {
+        use Quantity::*;
+        matches!(self, Reflectance | Transmittance | Absorptance | AbsorptanceIn(_) | OpticalDensity)
+    }
+}
+
 /// A curve against wavelength.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Mask {

@@ -22,6 +22,11 @@ impl Resolver<'_> {
             self.invalid(module, span, "this word", "`mean`", &format!("left out: {why}"));
             sound = false;
         }
+        if let (Some(bound_written), Some(must)) = (&written.bound, no_curve(quantity, bound, mean)) {
+            let shown = format!("`{}`", self.written(module, bound_written.span));
+            self.invalid(module, bound_written.span, "this bound", &shown, must);
+            sound = false;
+        }
         for (word, span) in &clauses.places {
             if let Some(why) = useless(word, quantity, bound, mean, clauses) {
                 let shown = format!("`{}`", self.written(module, *span));
@@ -41,6 +46,20 @@ fn no_mean(quantity: &Quantity, bound: &Bound) -> Option<&'static str> {
         (Photocurrent(_) | PhotocurrentLoss(_), _) => Some("a photocurrent is the sum over its band"),
         (Colour(_), _) => Some("a colour is that of the whole visible"),
         (Yield, _) => Some("a yield is one share of all parts"),
+        _ => None,
+    }
+}
+
+/// What a bound must be instead, that only a curve against wavelength can have.
+fn no_curve(quantity: &Quantity, bound: &Bound, mean: bool) -> Option<&'static str> {
+    let curve = quantity.is_curve() && !mean;
+    match bound {
+        Bound::Crosses { .. } if !curve => Some(
+            "one on a number: only reflectance, transmittance, absorptance and optical density have edges",
+        ),
+        Bound::AtMostMask(_) | Bound::AtLeastMask(_) if mean || !quantity.is_curve() => Some(
+            "one on a number: a mask is for reflectance, transmittance, absorptance and optical density, without `mean`",
+        ),
         _ => None,
     }
 }

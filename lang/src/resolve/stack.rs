@@ -86,13 +86,34 @@ impl Resolver<'_> {
                 }
             }
         }
-        Some(Stack {
-            place,
-            written_from_incident: first_is_incident,
-            incident,
-            elements: reading.elements,
-            exit,
-        })
+        let elements = reading.elements;
+        let stack = Stack { place, written_from_incident: first_is_incident, incident, elements, exit };
+        self.evaluable(module, &stack).then_some(stack)
+    }
+
+    /// Says what there is no optics for: light inside a textured piece, a film rougher than it is thick.
+    fn evaluable(&mut self, module: ModuleId, stack: &Stack) -> bool {
+        let inside = stack.elements.iter().find_map(|element| match element {
+            Element::Body(body) => body.textured,
+            Element::Layer(_) => None,
+        });
+        if let Some((_, place)) = inside.or(stack.incident.textured) {
+            let problem = "light runs on inside a textured piece";
+            let remedy = "leave out the piece's thickness and put it last, so that what enters it counts as absorbed in it";
+            self.order(module, place.span, problem, remedy);
+            return false;
+        }
+        if let Some((thin, roughest)) = stack.too_rough()
+            && let Some((_, place)) = roughest.rough
+        {
+            let shown = format!("`{}`", self.written(module, place.span));
+            let thickness = (10.0 * thin.thickness).round() / 10.0;
+            let must =
+                format!("small against the {thickness} nm of {}, its faces taken together", thin.call());
+            self.invalid(module, place.span, "this face", &shown, &must);
+            return false;
+        }
+        true
     }
 
     fn material_named_quietly(&mut self, module: ModuleId, name: &ast::Name) -> Option<Arc<Material>> {

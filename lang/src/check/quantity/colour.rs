@@ -42,7 +42,7 @@ fn colour(asked: &Asked<'_>, angle: f64) -> Result<Lab, Trouble> {
     };
     let under =
         weight(asked.requirement.under.as_ref()).ok_or_else(|| not_evaluated("a colour under this light"))?;
-    let stack = asked.optics.facing(asked.requirement.from_exit);
+    let stack = asked.engine;
     let colour = engine::colour(stack, &quantity, &light(asked, angle), &under, observer);
     let colour = colour.map_err(|error| explain(asked, &error))?;
     if colour.shares()[1] < DARK {

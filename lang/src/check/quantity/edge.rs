@@ -3,7 +3,7 @@
 use super::super::optics::Trouble;
 use super::super::require::{Asked, Judged};
 use super::power::{engine_quantity, explain, light};
-use super::{angles, curve, not_evaluated};
+use super::{angles, not_evaluated};
 use crate::finding::Verdict;
 use crate::model::{Angles, Requirement};
 use crate::report::At;
@@ -28,9 +28,6 @@ pub(super) fn judge(
     rising: bool,
     within: Option<(f64, f64)>,
 ) -> Result<Judged, Trouble> {
-    if !curve(&asked.requirement.quantity) {
-        return Err(not_evaluated("an edge of this quantity"));
-    }
     let bands = searched(asked.requirement, within);
     let window = within.or(bands.first().copied()).unwrap_or((0.0, 0.0));
     let inside = |nm: f64| (nm - window.0).min(window.1 - nm);
@@ -82,7 +79,7 @@ fn edges(
     angle: f64,
 ) -> Result<Vec<f64>, Trouble> {
     let quantity = engine_quantity(asked)?;
-    let stack = asked.optics.facing(asked.requirement.from_exit);
+    let stack = asked.engine;
     let mut found = Vec::new();
     for band in bands {
         let crossings = engine::crossings(stack, &quantity, &light(asked, angle), *band, level);

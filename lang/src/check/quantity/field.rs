@@ -25,8 +25,7 @@ fn place(asked: &Asked<'_>, judged: &Judged) -> Option<Verdict> {
     let (value, most) = (judged.value?, judged.max?);
     let wavelength = judged.at.wavelength?;
     let from_exit = asked.requirement.from_exit;
-    let peak = engine::peak_field(asked.optics.facing(from_exit), &light(asked, judged.at.angle), wavelength)
-        .ok()?;
+    let peak = engine::peak_field(asked.engine, &light(asked, judged.at.angle), wavelength).ok()?;
     let layer = asked.stack.layer(asked.optics.element_of(peak.film, from_exit)?)?.call();
     (value > most).then_some(Verdict::FieldHigh { value, most, layer, depth: peak.depth_nm, at: judged.at })
 }

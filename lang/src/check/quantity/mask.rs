@@ -3,7 +3,7 @@
 use super::super::optics::Trouble;
 use super::super::require::{Asked, Candidate, Judged};
 use super::power::{engine_quantity, explain, light};
-use super::{angles, curve, not_evaluated};
+use super::{angles, not_evaluated};
 use crate::finding::Verdict;
 use crate::model::{Angles, Mask, Requirement};
 use crate::report::At;
@@ -23,9 +23,6 @@ fn covers(mask: &Mask) -> (f64, f64) {
 
 /// The place where the quantity is nearest to its mask, or furthest beyond.
 pub(super) fn judge(asked: &Asked<'_>, mask: &Mask, most: bool) -> Result<Judged, Trouble> {
-    if asked.requirement.mean || !curve(&asked.requirement.quantity) {
-        return Err(not_evaluated("a mask for this quantity"));
-    }
     let covers = covers(mask);
     let bands = looked_at(asked.requirement, mask);
     if let Some(beyond) = bands.iter().find(|band| band.0 < covers.0 || band.1 > covers.1) {
@@ -60,7 +57,7 @@ fn in_band(
     angle: f64,
 ) -> Result<Judged, Trouble> {
     let quantity = engine_quantity(asked)?;
-    let stack = asked.optics.facing(asked.requirement.from_exit);
+    let stack = asked.engine;
     let light = light(asked, angle);
     let over = engine::extremes_against(stack, &quantity, &light, band, &mask.rows);
     let over = over.map_err(|error| explain(asked, &error))?.ok_or_else(|| {

@@ -59,12 +59,6 @@ fn is_phase(quantity: &Quantity) -> bool {
     matches!(quantity, Quantity::Phase(_) | Quantity::GroupDelay(_) | Quantity::GroupDelayDispersion(_))
 }
 
-/// Whether a quantity is a curve against wavelength that the engine has.
-fn curve(quantity: &Quantity) -> bool {
-    use Quantity::*;
-    matches!(quantity, Reflectance | Transmittance | Absorptance | AbsorptanceIn(_) | OpticalDensity)
-}
-
 fn not_evaluated(what: &str) -> Trouble {
     Trouble::Verdict(Verdict::NotEvaluated { what: what.to_owned() })
 }

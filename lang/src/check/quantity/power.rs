@@ -1,6 +1,6 @@
 //! Reflectance, transmittance, absorptance and optical density: at wavelengths, over bands, and their means.
 
-use super::super::optics::{Trouble, weight};
+use super::super::optics::{self, Trouble, weight};
 use super::super::require::{Asked, Candidate};
 use super::angles;
 use crate::finding::Verdict;
@@ -25,7 +25,7 @@ pub(super) fn quantity_candidates(
 
 /// What the engine's error means for a requirement.
 pub(super) fn explain(asked: &Asked<'_>, error: &OpticsError) -> Trouble {
-    asked.optics.explain(error, asked.requirement, asked.stack)
+    optics::explain(error, asked.optics.materials(), asked.requirement, asked.stack)
 }
 
 /// The quantity as the engine has it; a name that stands for nothing in the stack is reported.
@@ -70,7 +70,7 @@ pub(super) fn light(asked: &Asked<'_>, angle: f64) -> Light {
 /// The least and the greatest value over every band, at every wavelength, at every angle.
 fn extremes(asked: &Asked<'_>, quantity: &engine::Quantity) -> Result<Vec<Candidate>, OpticsError> {
     let requirement = asked.requirement;
-    let stack = asked.optics.facing(requirement.from_exit);
+    let stack = asked.engine;
     let points = requirement.wavelengths.iter().map(|nm| (*nm, *nm));
     let bands: Vec<(f64, f64)> = requirement.bands.iter().copied().chain(points).collect();
     let mut found = Vec::new();
@@ -115,7 +115,7 @@ pub(super) fn mean_over_angles(
     bands: &[(f64, f64)],
     weight: &SpectralWeight,
 ) -> Result<Vec<Candidate>, Trouble> {
-    let stack = asked.optics.facing(asked.requirement.from_exit);
+    let stack = asked.engine;
     angles::over(asked, &|angle| {
         let mean = engine::mean(stack, quantity, &light(asked, angle), bands, weight);
         mean.map(|mean| mean.value).map_err(|error| explain(asked, &error))

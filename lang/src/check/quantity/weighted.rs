@@ -85,7 +85,7 @@ pub(super) fn emittance(asked: &Asked<'_>) -> Result<Vec<Candidate>, Trouble> {
     if !asked.requirement.hemispherical {
         return mean_over_angles(asked, &quantity, bands, &body);
     }
-    let stack = asked.optics.facing(asked.requirement.from_exit);
+    let stack = asked.engine;
     let mean =
         engine::hemispherical_mean(stack, &quantity, bands, &body).map_err(|error| explain(asked, &error))?;
     let mut found = angles::over(asked, &|_| Ok(mean.value))?;
