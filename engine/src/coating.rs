@@ -3,17 +3,22 @@
 use num_complex::Complex64;
 
 use crate::matrix::{Medium, Mode, Step};
-use crate::response::ln_mean;
+use crate::real::Real;
 
-/// What a coating does to a wave that arrives in one of the two media about it. Powers refer to the
-/// arriving wave's.
+/// What a coating does to the power of a wave that arrives in one of the two media about it, as shares of it.
+#[derive(Clone, Debug)]
+pub(crate) struct Powers<F> {
+    pub(crate) reflectance: F,
+    pub(crate) transmittance: F,
+    pub(crate) ln_transmittance: F,
+    /// The absorptance of each layer, if asked for, in the order the light meets them.
+    pub(crate) films: Vec<F>,
+}
+
+/// A coating solved for a wave that arrives in one of the two media about it.
 #[derive(Clone, Debug)]
 pub(crate) struct Coating {
-    pub(crate) reflectance: f64,
-    pub(crate) transmittance: f64,
-    pub(crate) ln_transmittance: f64,
-    /// The absorptance of each film, if asked for, in the order the light meets them.
-    pub(crate) films: Vec<f64>,
+    pub(crate) powers: Powers<f64>,
     /// The numerator and the denominator of r, the amplitude of the tangential electric field reflected, up to
     /// a common positive factor. For p this is the sign with which r is the same for s and p at normal
     /// incidence.
@@ -64,32 +69,26 @@ impl Coating {
         let sum = arriving.c * front.b + arriving.b * front.c;
         let difference = arriving.c * front.b - arriving.b * front.c;
         let flux_in = arriving.flux();
-        let mut coating = Coating {
-            reflectance: 0.0,
-            transmittance: 0.0,
-            ln_transmittance: f64::NEG_INFINITY,
-            films: Vec::new(),
-            numerator: difference,
-            denominator: sum,
-            ln_scale: front.ln_scale,
-        };
+        let powers = Powers::dark(faces.len());
+        let mut coating =
+            Coating { powers, numerator: difference, denominator: sum, ln_scale: front.ln_scale };
         if flux_in <= 0.0 {
-            coating.films = vec![0.0; faces.len()];
             return coating;
         }
+        let powers = &mut coating.powers;
         // Without absorption |D|² = |N|² + 4 × both power flows, and in this form no rounding, not even at a
         // resonance finer than any number, can make R + T other than 1.
         let passed = 4.0 * flux_in * flux_out * (-2.0 * front.ln_scale).exp();
         let whole = if all_lossless { difference.norm_sqr() + passed } else { sum.norm_sqr() };
-        coating.reflectance = difference.norm_sqr() / whole;
+        powers.reflectance = difference.norm_sqr() / whole;
         // The power flow of a field in the stack over that of the arriving wave alone.
         let share = 4.0 * (arriving.b * arriving.c).norm_sqr() / (flux_in * whole);
         if flux_out > 0.0 {
-            coating.ln_transmittance = (share * flux_out).ln() - 2.0 * front.ln_scale;
-            coating.transmittance = share * flux_out * (-2.0 * front.ln_scale).exp();
+            powers.ln_transmittance = (share * flux_out).ln() - 2.0 * front.ln_scale;
+            powers.transmittance = share * flux_out * (-2.0 * front.ln_scale).exp();
         }
-        if entry.permittivity.im == 0.0 && coating.reflectance + coating.transmittance > 1.0 + LOST {
-            coating.reflectance = f64::NAN;
+        if entry.permittivity.im == 0.0 && powers.reflectance + powers.transmittance > 1.0 + LOST {
+            powers.reflectance = f64::NAN;
         }
         if detail == Detail::ByFilm {
             faces.push((front.flux(), front.ln_scale));
@@ -99,27 +98,42 @@ impl Coating {
             // A film that does not absorb takes nothing, and not what rounding leaves either.
             let share =
                 |(faces, &lossless): (&[f64], &bool)| if lossless { 0.0 } else { faces[0] - faces[1] };
-            coating.films = flows.windows(2).zip(lossless.iter().rev()).map(share).collect();
+            powers.films = flows.windows(2).zip(lossless.iter().rev()).map(share).collect();
         }
         coating
     }
+}
+
+impl<F: Real> Powers<F> {
+    /// Where no light arrives.
+    pub(crate) fn dark(layers: usize) -> Powers<F> {
+        let nothing = F::of(0.0);
+        let ln_transmittance = F::of(f64::NEG_INFINITY);
+        Powers {
+            reflectance: nothing,
+            transmittance: nothing,
+            ln_transmittance,
+            films: vec![nothing; layers],
+        }
+    }
 
     /// The powers of unpolarised light from those of s and p.
-    pub(crate) fn mean(&self, p: &Coating) -> Coating {
-        Coating {
-            reflectance: 0.5 * (self.reflectance + p.reflectance),
-            transmittance: 0.5 * (self.transmittance + p.transmittance),
-            ln_transmittance: ln_mean(self.ln_transmittance, p.ln_transmittance),
-            films: self.films.iter().zip(&p.films).map(|(s, p)| 0.5 * (s + p)).collect(),
-            ..*self
+    pub(crate) fn mean(&self, p: &Powers<F>) -> Powers<F> {
+        let mean = |s: F, p: F| (s + p).scaled(0.5);
+        let transmittance = mean(self.transmittance, p.transmittance);
+        Powers {
+            reflectance: mean(self.reflectance, p.reflectance),
+            transmittance,
+            ln_transmittance: transmittance.ln(),
+            films: self.films.iter().zip(&p.films).map(|(s, p)| mean(*s, *p)).collect(),
         }
     }
 
     /// Whether every number is one.
     pub(crate) fn is_finite(&self) -> bool {
-        self.reflectance.is_finite()
-            && self.transmittance.is_finite()
-            && !self.ln_transmittance.is_nan()
-            && self.films.iter().all(|share| share.is_finite())
+        self.reflectance.is_number()
+            && self.transmittance.is_number()
+            && !self.ln_transmittance.value().is_nan()
+            && self.films.iter().all(|share| share.is_number())
     }
 }

@@ -10,6 +10,9 @@
 //! pyramids are not regular (random ones pass some rays sideways), and away from normal incidence, where the answer depends
 //! on how the rows lie to the beam.
 
+use crate::coating::Powers;
+use crate::real::Real;
+
 /// A facet that light meets.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(crate) struct Bounce {
@@ -47,6 +50,28 @@ pub(crate) fn bounces(facets_rad: f64) -> Vec<Bounce> {
         across = -across;
     }
     met
+}
+
+/// What facets do together that light meets in turn, each with the share of the rays that come as far: at each, what arrives
+/// is what the ones before reflect.
+pub(crate) fn together<F: Real>(mut met: impl Iterator<Item = (Powers<F>, f64)>) -> Powers<F> {
+    let Some((mut whole, mut share)) = met.next() else { return Powers::dark(0) };
+    // What the facets so far return, of the rays that come as far as the last of them.
+    let mut returned = whole.reflectance;
+    whole.reflectance = F::of(0.0);
+    for (facet, next) in met {
+        whole.reflectance = whole.reflectance + returned.scaled(share - next);
+        share = next;
+        let arriving = returned.scaled(share);
+        whole.transmittance = whole.transmittance + arriving * facet.transmittance;
+        for (sum, film) in whole.films.iter_mut().zip(facet.films) {
+            *sum = *sum + arriving * film;
+        }
+        returned = returned * facet.reflectance;
+    }
+    whole.reflectance = whole.reflectance + returned.scaled(share);
+    whole.ln_transmittance = whole.transmittance.ln();
+    whole
 }
 
 #[cfg(test)]

@@ -6,11 +6,13 @@
 
 use num_complex::Complex64;
 
+use crate::adjoint::Passage;
 use crate::band::minimum_between;
 use crate::error::OpticsError;
 use crate::matrix::{Medium, Mode, Pair, Step};
 use crate::plan::Plan;
 use crate::quantity::Light;
+use crate::slopes::Slopes;
 use crate::stack::Stack;
 
 /// The greatest |E/E₀|² inside the films.
@@ -89,6 +91,24 @@ pub(crate) fn peak(plan: &Plan, light: &Light, wavelength_nm: f64) -> Result<Pea
     }
 }
 
+/// The greatest |E/E₀|² with its derivatives in the thickness of every film, per nm. Where the field is greatest it does not
+/// change with the depth, so that following the place changes nothing.
+pub(crate) fn slopes(plan: &Plan, light: &Light, wavelength_nm: f64) -> Result<Slopes, OpticsError> {
+    let found = peak(plan, light, wavelength_nm)?;
+    let inside = Inside::new(plan, light, wavelength_nm)?;
+    // The layer that holds the peak, and the depth in it.
+    let mut depth_nm = found.depth_nm;
+    let layers = &plan.coatings[0];
+    let mut layer = layers.iter().position(|layer| layer.film == found.film).unwrap_or(0);
+    while depth_nm > layers[layer].thickness_nm
+        && layers.get(layer + 1).is_some_and(|next| next.film == found.film)
+    {
+        depth_nm -= layers[layer].thickness_nm;
+        layer += 1;
+    }
+    Ok(Slopes::by_film(plan, found.value, &[inside.slopes(layer, depth_nm)]))
+}
+
 /// The fields at the back faces of all films.
 struct Inside<'a> {
     plan: &'a Plan,
@@ -146,6 +166,59 @@ impl Inside<'_> {
             share * (pair.b.norm_sqr() + across) * (2.0 * (pair.ln_scale - ln_scale)).exp()
         };
         self.modes.iter().map(of).sum()
+    }
+
+    /// How |E/E₀|² at a depth in nm below a layer's front face changes with the thickness of every layer.
+    fn slopes(&self, layer: usize, depth_nm: f64) -> Vec<f64> {
+        let layers = &self.plan.coatings[0];
+        let depth = |nm: f64| Complex64::new(self.wave_number * nm.max(0.0), 0.0);
+        let steps: Vec<Step<Complex64>> = layers
+            .iter()
+            .map(|layer| Step::new(&self.media[layer.material], &depth(layer.thickness_nm)))
+            .collect();
+        let own = &layers[layer];
+        let rest = own.thickness_nm - depth_nm;
+        let step = Step::new(&self.media[own.material], &depth(rest));
+        let share = if own.thickness_nm > 0.0 { depth_nm / own.thickness_nm } else { 0.0 };
+        let permittivity = self.plan.permittivity(own, &self.indices, share);
+        let wave_number = Complex64::new(self.wave_number, 0.0);
+        let mut slopes = vec![0.0; layers.len()];
+        for (mode, over, ln_scale, backs) in &self.modes {
+            let passage = Passage {
+                steps: steps.iter().collect(),
+                entry: &self.media[0],
+                exit: &self.media[self.plan.exit],
+                wave_number,
+                mode: *mode,
+            };
+            let changes = passage.changes(&passage.pairs());
+            let across = |c: Complex64| match mode {
+                Mode::S => Complex64::ZERO,
+                Mode::P => self.alpha * c / permittivity,
+            };
+            let here = step.carry(&backs[layer], *mode);
+            let size = |pair: &Pair<Complex64>| over * (2.0 * (pair.ln_scale - ln_scale)).exp();
+            let square = size(&here) * (here.b.norm_sqr() + across(here.c).norm_sqr());
+            for (at, change) in changes.iter().enumerate() {
+                slopes[at] -= 2.0 * change.denominator.re * square;
+                // A peak at the back face goes with it.
+                if at < layer || (at == layer && rest <= 1e-9 * own.thickness_nm) {
+                    continue;
+                }
+                let inner = if at == layer {
+                    step.growth(&here, &wave_number, *mode)
+                } else {
+                    let front = steps[at].carry(&backs[at], *mode);
+                    let growth = steps[at].growth(&front, &wave_number, *mode);
+                    let at_back =
+                        steps[layer + 1..at].iter().rev().fold(growth, |pair, step| step.carry(&pair, *mode));
+                    step.carry(&at_back, *mode)
+                };
+                let turn = here.b.conj() * inner.b + across(here.c).conj() * across(inner.c);
+                slopes[at] += 2.0 * size(&here) * turn.re * (inner.ln_scale - here.ln_scale).exp();
+            }
+        }
+        slopes
     }
 
     /// The depth in nm and the height of the greatest field in a smooth profile.

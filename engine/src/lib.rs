@@ -11,6 +11,7 @@
 //!   and p, and negative where the light meets the higher index.
 //! - R, T and A are fractions of the incident power; light that enters the exit half-space is transmitted.
 
+mod adjoint;
 mod band;
 mod bodies;
 mod coating;
@@ -27,7 +28,9 @@ mod phase;
 mod plan;
 mod quadrature;
 mod quantity;
+mod real;
 mod response;
+mod slopes;
 mod stack;
 mod taylor;
 mod tilted;
@@ -45,5 +48,6 @@ pub use graded::{Gradient, Profile, Steps};
 pub use num_complex::Complex64;
 pub use quantity::{Light, Outgoing, PhaseKind, Quantity};
 pub use response::{Absorption, Polarisation, Response};
+pub use slopes::{Slopes, slopes};
 pub use stack::{Body, Film, Stack};
 pub use weight::SpectralWeight;

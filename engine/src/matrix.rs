@@ -144,19 +144,52 @@ impl<N: Number> Step<N> {
     /// The fields at the film's front from those at its back.
     pub(crate) fn carry(&self, behind: &Pair<N>, mode: Mode) -> Pair<N> {
         let (b, c) = (behind.b.clone(), behind.c.clone());
-        let (turn, over, times) = match mode {
-            Mode::S => (&self.turn, c.clone(), self.normal_squared.clone() * b.clone()),
-            Mode::P => {
-                let turn = self.p_turn.as_ref().unwrap_or(&self.turn);
-                (turn, self.ratio.clone() * c.clone(), self.permittivity.clone() * b.clone())
-            }
-        };
+        let (turn, over, times) = self.parts(mode);
         let front = Pair {
-            b: turn.cos.clone() * b + turn.lift.clone() * over,
-            c: turn.lift.clone() * times + turn.cos.clone() * c,
+            b: turn.cos.clone() * b.clone() + turn.lift.clone() * times_over(over, c.clone()),
+            c: turn.lift.clone() * (times.clone() * b) + turn.cos.clone() * c,
             ln_scale: behind.ln_scale + turn.ln_scale,
         };
         front.in_range()
+    }
+
+    /// A row of two from the left through the matrix: what it makes of fields at the film's front, as a row for those at its
+    /// back.
+    pub(crate) fn pull(&self, row: &Pair<N>, mode: Mode) -> Pair<N> {
+        let (b, c) = (row.b.clone(), row.c.clone());
+        let (turn, over, times) = self.parts(mode);
+        let behind = Pair {
+            b: turn.cos.clone() * b.clone() + turn.lift.clone() * (times.clone() * c.clone()),
+            c: turn.lift.clone() * times_over(over, b) + turn.cos.clone() * c,
+            ln_scale: row.ln_scale + turn.ln_scale,
+        };
+        behind.in_range()
+    }
+
+    /// The derivative of the fields at the film's front in its thickness, from these fields and k₀.
+    pub(crate) fn growth(&self, front: &Pair<N>, wave_number: &N, mode: Mode) -> Pair<N> {
+        let (_, over, times) = self.parts(mode);
+        let turn = N::constant(-Complex64::I) * wave_number.clone();
+        Pair {
+            b: turn.clone() * times_over(over, front.c.clone()),
+            c: turn * (times.clone() * front.b.clone()),
+            ln_scale: front.ln_scale,
+        }
+    }
+
+    /// The matrix as sine and cosine, what C is multiplied by on its way into B (none for 1), and B on its way into C.
+    fn parts(&self, mode: Mode) -> (&Turn<N>, Option<&N>, &N) {
+        match mode {
+            Mode::S => (&self.turn, None, &self.normal_squared),
+            Mode::P => (self.p_turn.as_ref().unwrap_or(&self.turn), Some(&self.ratio), &self.permittivity),
+        }
+    }
+}
+
+fn times_over<N: Number>(over: Option<&N>, number: N) -> N {
+    match over {
+        Some(factor) => factor.clone() * number,
+        None => number,
     }
 }
 

@@ -10,12 +10,14 @@
 
 use num_complex::Complex64;
 
+use crate::adjoint::{Change, Passage};
 use crate::error::OpticsError;
-use crate::matrix::{Mode, Step};
+use crate::matrix::{Medium, Mode, Step};
 use crate::number::Number;
-use crate::plan::Plan;
+use crate::plan::{Layer, Plan};
 use crate::quantity::{Light, Outgoing, PhaseKind};
 use crate::response::Polarisation;
+use crate::slopes::Slopes;
 use crate::taylor::Taylor;
 
 /// The speed of light in vacuum, nm/fs.
@@ -70,6 +72,67 @@ fn mode(plan: &Plan, light: &Light) -> Result<Mode, OpticsError> {
     }
 }
 
+/// The same with its derivatives in the thickness of every film.
+pub(crate) fn slopes(
+    plan: &Plan,
+    light: &Light,
+    outgoing: Outgoing,
+    kind: PhaseKind,
+    wavelength_nm: f64,
+) -> Result<Slopes, OpticsError> {
+    let value = phase(plan, light, outgoing, kind, wavelength_nm)?;
+    let waves = Waves::new(plan, light.angle_rad, wavelength_nm)?;
+    let passage = waves.passage(mode(plan, light)?);
+    let pairs = passage.pairs();
+    let (difference, sum) = passage.amplitudes(&pairs[0]);
+    let of = |change: Change<Taylor>| {
+        // Of the logarithm of the amplitude.
+        let change = match outgoing {
+            Outgoing::Reflected => change.numerator * sum / difference - change.denominator,
+            Outgoing::Transmitted => -change.denominator,
+        };
+        match kind {
+            PhaseKind::Phase { .. } => change.0[0].im,
+            PhaseKind::Delay => change.0[1].im,
+            PhaseKind::Dispersion => 2.0 * change.0[2].im,
+        }
+    };
+    let layers = passage.changes(&pairs).into_iter().map(of).collect();
+    Ok(Slopes::by_film(plan, value, &[layers]))
+}
+
+/// A coating at one wavelength and angle, all of it as series in ω.
+struct Waves<'a> {
+    plan: &'a Plan,
+    media: Vec<Medium<Taylor>>,
+    steps: Vec<Step<Taylor>>,
+    wave_number: Taylor,
+}
+
+impl Waves<'_> {
+    fn new(plan: &Plan, angle_rad: f64, wavelength_nm: f64) -> Result<Waves<'_>, OpticsError> {
+        // The plain evaluation has every check, of angles and of incident media that absorb among them.
+        plan.at(wavelength_nm, angle_rad)?;
+        let omega = std::f64::consts::TAU * LIGHT_NM_FS / wavelength_nm;
+        let mut indices = Vec::with_capacity(plan.materials.len());
+        for index in &plan.materials {
+            let at = |cause| OpticsError::Material { index: index.clone(), cause };
+            indices.push(index.series(wavelength_nm, omega).map_err(at)?);
+        }
+        plan.mix(&mut indices, wavelength_nm)?;
+        let media = plan.tilted_media(&indices, angle_rad);
+        let wave_number = Taylor::variable(omega, 1.0 / LIGHT_NM_FS);
+        let step = |layer: &Layer| Step::new(&media[layer.material], &wave_number.scale(layer.thickness_nm));
+        let steps = plan.coatings[0].iter().map(step).collect();
+        Ok(Waves { plan, media, steps, wave_number })
+    }
+
+    fn passage(&self, mode: Mode) -> Passage<'_, Taylor> {
+        let (entry, exit) = (&self.media[0], &self.media[self.plan.exit]);
+        Passage { steps: self.steps.iter().collect(), entry, exit, wave_number: self.wave_number, mode }
+    }
+}
+
 fn amplitude(
     plan: &Plan,
     angle_rad: f64,
@@ -77,29 +140,15 @@ fn amplitude(
     outgoing: Outgoing,
     wavelength_nm: f64,
 ) -> Result<Taylor, OpticsError> {
-    // The plain evaluation has every check, of angles and of incident media that absorb among them.
-    plan.at(wavelength_nm, angle_rad)?;
-    let omega = std::f64::consts::TAU * LIGHT_NM_FS / wavelength_nm;
-    let mut indices = Vec::with_capacity(plan.materials.len());
-    for index in &plan.materials {
-        let at = |cause| OpticsError::Material { index: index.clone(), cause };
-        indices.push(index.series(wavelength_nm, omega).map_err(at)?);
-    }
-    plan.mix(&mut indices, wavelength_nm)?;
-    let media = plan.tilted_media(&indices, angle_rad);
-    let wave_number = Taylor::variable(omega, 1.0 / LIGHT_NM_FS);
-    let exit = media[plan.exit].wave(mode);
-    let arriving = media[0].wave(mode);
-    let mut pair = exit.clone();
-    for layer in plan.coatings[0].iter().rev() {
-        let step = Step::new(&media[layer.material], &wave_number.scale(layer.thickness_nm));
-        pair = step.carry(&pair, mode);
-    }
-    let sum = arriving.c * pair.b + arriving.b * pair.c;
+    let waves = Waves::new(plan, angle_rad, wavelength_nm)?;
+    let passage = waves.passage(mode);
+    let (difference, sum) = passage.amplitudes(&passage.front());
     let (part, whole) = match outgoing {
-        Outgoing::Reflected => (arriving.c * pair.b - arriving.b * pair.c, 1.0),
+        Outgoing::Reflected => (difference, 1.0),
         // The field behind over the field that arrives, up to a positive factor.
-        Outgoing::Transmitted => ((arriving.c * exit.b).scale(2.0), f64::MIN_POSITIVE),
+        Outgoing::Transmitted => {
+            ((passage.entry.wave(mode).c * passage.exit.wave(mode).b).scale(2.0), f64::MIN_POSITIVE)
+        }
     };
     let size = |number: &Taylor| -> f64 { Complex64::norm(number.0[0]) };
     if size(&part) <= DARK * whole * size(&sum) {

@@ -4,11 +4,13 @@ use std::f64::consts::TAU;
 
 use num_complex::Complex64;
 
-use crate::bodies::{Chain, Link};
-use crate::coating::{Coating, Detail};
+use crate::bodies::{Between, Chain, Link};
+use crate::coating::{Coating, Detail, Powers};
 use crate::error::OpticsError;
+use crate::facets;
 use crate::matrix::{Medium, Mode, Step};
 use crate::plan::{Layer, Plan};
+use crate::real::Real;
 use crate::response::{Absorption, Polarisation, Response};
 
 /// A prepared stack at one wavelength and angle.
@@ -66,77 +68,107 @@ impl Tilted<'_> {
     }
 
     /// The coatings and the bodies between them, with every number checked.
-    pub(crate) fn chain(&self, mode: Mode, detail: Detail) -> Result<Chain, OpticsError> {
-        let mut coatings: Vec<Link> = (0..self.steps.len()).map(|at| self.link(at, mode, detail)).collect();
-        if let (false, Some(last)) = (self.facets.is_empty(), coatings.last_mut()) {
+    fn chain(&self, mode: Mode, detail: Detail) -> Result<Chain<f64>, OpticsError> {
+        let solve = |face: &Face<'_>, mode| face.solve(mode, detail).powers;
+        let links = self.links(mode, &solve);
+        Chain::new(links, self.between()).ok_or(self.not_finite())
+    }
+
+    /// The links of a chain, each face solved in one way.
+    pub(crate) fn links<F: Real>(
+        &self,
+        mode: Mode,
+        solve: &dyn Fn(&Face<'_>, Mode) -> Powers<F>,
+    ) -> Vec<Link<F>> {
+        let flat = self.flat();
+        let mut links: Vec<Link<F>> = (0..flat)
+            .map(|at| Link {
+                front: solve(&self.face(at, Side::Front), mode),
+                back: (at < self.plan.bodies.len()).then(|| solve(&self.face(at, Side::Back), mode)),
+            })
+            .collect();
+        if flat < self.steps.len() {
             // Half of the facets face along the field and half across it, whatever the light's polarisation.
-            let [s, p] = [Mode::S, Mode::P].map(|mode| self.textured(mode, detail));
-            last.front = s.mean(&p);
+            let of = |mode| {
+                let each = self.facets.iter().map(|facet| (solve(&self.on_facet(facet), mode), facet.share));
+                facets::together(each)
+            };
+            links.push(Link { front: of(Mode::S).mean(&of(Mode::P)), back: None });
         }
+        links
+    }
+
+    pub(crate) fn between(&self) -> Between {
         let bodies = &self.plan.bodies;
         let damping = |body: &Layer| {
             let decay = self.media[body.material].normal().im;
             -2.0 * TAU * decay * body.thickness_nm / self.wavelength_nm
         };
-        let clear: Vec<bool> = bodies.iter().map(|body| self.media[body.material].index.im == 0.0).collect();
-        let lossless =
-            self.media.iter().enumerate().all(|(at, medium)| at == self.plan.exit || medium.index.im == 0.0);
-        let ln_passed = bodies.iter().map(damping).collect();
-        Chain::new(coatings, ln_passed, clear, lossless).ok_or(self.not_finite())
+        let exit = self.plan.exit;
+        Between {
+            ln_passed: bodies.iter().map(damping).collect(),
+            clear: bodies.iter().map(|body| self.media[body.material].index.im == 0.0).collect(),
+            lossless: self.media.iter().enumerate().all(|(at, medium)| at == exit || medium.index.im == 0.0),
+        }
     }
 
-    /// A coating from the front, and from behind where a body lies behind it.
-    fn link(&self, at: usize, mode: Mode, detail: Detail) -> Link {
-        let entry = if at == 0 { 0 } else { self.plan.bodies[at - 1].material };
-        let body = self.plan.bodies.get(at);
-        let exit = body.map_or(self.plan.exit, |body| body.material);
+    /// How many coatings lie on flat faces, from the front.
+    pub(crate) fn flat(&self) -> usize {
+        self.steps.len() - usize::from(!self.facets.is_empty())
+    }
+
+    /// A coating as light from one side meets it.
+    pub(crate) fn face(&self, coating: usize, side: Side) -> Face<'_> {
+        let before = coating.checked_sub(1).map_or(0, |body| self.plan.bodies[body].material);
+        let behind = self.plan.bodies.get(coating).map_or(self.plan.exit, |body| body.material);
+        let (entry, exit) = if side == Side::Front { (before, behind) } else { (behind, before) };
         let (entry, exit) = (&self.media[entry], &self.media[exit]);
-        let steps = &self.steps[at];
-        Link {
-            front: Coating::solve(steps.iter(), entry, exit, mode, detail),
-            back: body.map(|_| Coating::solve(steps.iter().rev(), exit, entry, mode, detail)),
-        }
+        Face { side, steps: &self.steps[coating], entry, exit }
+    }
+
+    pub(crate) fn on_facet<'a>(&'a self, facet: &'a Facet) -> Face<'a> {
+        let entry = self.plan.bodies.last().map_or(0, |body| body.material);
+        let (entry, exit) = (&facet.media[entry], &facet.media[self.plan.exit]);
+        Face { side: Side::Front, steps: &facet.steps, entry, exit }
     }
 
     /// Every coating as light from the front meets it, on facets and on the flat: what has resonances.
     pub(crate) fn resonators(&self, mode: Mode) -> impl Iterator<Item = Coating> {
-        let flat = self.steps.len() - usize::from(!self.facets.is_empty());
-        let flat = (0..flat).map(move |at| self.link(at, mode, Detail::Whole).front);
+        let flat = (0..self.flat()).map(move |at| self.face(at, Side::Front).solve(mode, Detail::Whole));
         flat.chain(
-            self.facets
-                .iter()
-                .flat_map(|facet| [Mode::S, Mode::P].map(|mode| self.on_facet(facet, mode, Detail::Whole))),
+            self.facets.iter().flat_map(|facet| {
+                [Mode::S, Mode::P].map(|mode| self.on_facet(facet).solve(mode, Detail::Whole))
+            }),
         )
     }
 
-    fn on_facet(&self, facet: &Facet, mode: Mode, detail: Detail) -> Coating {
-        let entry = self.plan.bodies.last().map_or(0, |body| body.material);
-        let (entry, exit) = (&facet.media[entry], &facet.media[self.plan.exit]);
-        Coating::solve(facet.steps.iter(), entry, exit, mode, detail)
-    }
-
-    /// All facets together: at each, what arrives is what the ones before reflect.
-    fn textured(&self, mode: Mode, detail: Detail) -> Coating {
-        let mut met = self.facets.iter().map(|facet| self.on_facet(facet, mode, detail));
-        let Some(mut whole) = met.next() else { return self.link(self.steps.len() - 1, mode, detail).front };
-        // The light that the facets so far return, of the rays that come as far as the last of them.
-        let mut returned = whole.reflectance;
-        whole.reflectance = 0.0;
-        let mut share = 1.0;
-        for (coating, facet) in met.zip(&self.facets[1..]) {
-            whole.reflectance += (share - facet.share) * returned;
-            share = facet.share;
-            let arriving = share * returned;
-            whole.transmittance += arriving * coating.transmittance;
-            whole.films.iter_mut().zip(&coating.films).for_each(|(sum, film)| *sum += arriving * film);
-            returned *= coating.reflectance;
-        }
-        whole.reflectance += share * returned;
-        whole.ln_transmittance = whole.transmittance.ln();
-        whole
-    }
-
-    fn not_finite(&self) -> OpticsError {
+    pub(crate) fn not_finite(&self) -> OpticsError {
         OpticsError::NotFinite { wavelength_nm: self.wavelength_nm, angle_rad: self.angle_rad }
+    }
+}
+
+/// From which side light meets a coating.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum Side {
+    Front,
+    Back,
+}
+
+/// A coating as light from one side meets it.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct Face<'a> {
+    pub(crate) side: Side,
+    /// The films from the front of the stack, whatever the side.
+    pub(crate) steps: &'a [Step<Complex64>],
+    pub(crate) entry: &'a Medium<Complex64>,
+    pub(crate) exit: &'a Medium<Complex64>,
+}
+
+impl Face<'_> {
+    pub(crate) fn solve(&self, mode: Mode, detail: Detail) -> Coating {
+        match self.side {
+            Side::Front => Coating::solve(self.steps.iter(), self.entry, self.exit, mode, detail),
+            Side::Back => Coating::solve(self.steps.iter().rev(), self.entry, self.exit, mode, detail),
+        }
     }
 }

@@ -80,6 +80,21 @@ impl Probe {
         self.quantity.value(total, wavelength_nm)
     }
 
+    /// The rays that the light consists of, each with its shares of s and p: of a cone, those of one fixed rule.
+    pub(crate) fn rays(&self) -> Vec<(f64, [f64; 2])> {
+        let Some(cone) = &self.cone else {
+            return vec![(self.light.angle_rad, self.light.polarisation.shares())];
+        };
+        let mut rays = Vec::new();
+        for stretch in cone.stretches() {
+            for &(x, weight) in &self.rules[&NODES[1]] {
+                let ray = cone.ray(stretch, x);
+                rays.push((ray.angle_rad, ray.shares.map(|share| weight * share)));
+            }
+        }
+        rays
+    }
+
     /// The part of a cone that one stretch contributes.
     fn stretch(
         &self,
