@@ -73,6 +73,11 @@ fn bounds(quantity: &str) -> Vec<String> {
 
 /// Promises everything of a stack; the number of promises that have a value.
 fn valued_of(stack: &str) -> usize {
+    valued(stack, &CLAUSES, false)
+}
+
+/// The same with some of the clauses, and looking for what would mend a promise or not.
+fn valued(stack: &str, with: &[&str], remedies: bool) -> usize {
     let mut text = format!(
         "material oxide {{ source \"x\" index 1.46 k 0.001 }}\nmaterial glass {{ source \"x\" index 1.52 k 1e-7 }}\n\
          recipe r {{\nstack {{ {stack} }}\n"
@@ -81,7 +86,7 @@ fn valued_of(stack: &str) -> usize {
     let mut sentences = Vec::new();
     for quantity in QUANTITIES {
         for bound in bounds(quantity) {
-            for clauses in CLAUSES {
+            for clauses in with {
                 for mean in ["", "mean "] {
                     sentences.push(format!("{mean}{quantity} {bound} {clauses}"));
                 }
@@ -97,7 +102,7 @@ fn valued_of(stack: &str) -> usize {
     files.insert("mask.csv", "wavelength_nm,value\n500,0.5\n520,0.6\n");
     let project = load(&files, &["main.coat".to_owned()]);
     let today = Date { year: 2026, month: 12, day: 1, span: Default::default() };
-    let report = check(project, &Options { today, asked: None, whole_project: true });
+    let report = check(project, &Options { today, asked: None, remedies, whole_project: true });
     let line =
         |place: overcoat_lang::source::Place| report.sources.get(place.file).position(place.span.start).line;
     let errors: BTreeSet<u32> = report
@@ -158,4 +163,32 @@ fn on_a_textured_piece() {
             "incident air  slab oxide 3 mm  layer oxide 90 nm as film  substrate glass textured 50 deg"
         ) > 0
     );
+}
+
+#[test]
+fn what_would_mend_each_is_looked_for() {
+    let stacks = [
+        "incident air  layer oxide 90 nm as film rough 2 nm  layer glass 40 nm  substrate glass",
+        "incident air  layer oxide 90 nm as film  substrate glass 2 mm  layer oxide 50 nm  exit air",
+        "incident air  layer oxide 90 nm as film  substrate glass textured 54.74 deg",
+        "incident air  layer graded oxide to glass 90 nm as film in 3 steps  substrate glass",
+        "incident air  substrate glass",
+    ];
+    valued("incident air  layer graded oxide to glass 90 nm as film  substrate glass", &["at 510 nm"], true);
+    for stack in stacks {
+        for with in [
+            "over 500 .. 520 nm",
+            "at 510 nm",
+            "",
+            "over 500 .. 520 nm at 300 K",
+            "over 500 .. 520 nm from exit",
+        ] {
+            valued(stack, &[with], true);
+        }
+        valued(
+            stack,
+            &["over 500 .. 520 nm at 0 .. 40 deg polarised p", "over 500 .. 510 nm cone 10 deg"],
+            true,
+        );
+    }
 }

@@ -42,8 +42,12 @@ fn checked(opened: &Opened, today: Date) -> Result<Report, Failure> {
     let project = load(&opened.files, &found.all);
     let asked: BTreeSet<&str> = found.asked.iter().map(String::as_str).collect();
     let files = project.sources.iter().filter(|(_, source)| asked.contains(source.path.as_str()));
-    let options =
-        Options { today, asked: Some(files.map(|(file, _)| file).collect()), whole_project: found.whole };
+    let options = Options {
+        today,
+        asked: Some(files.map(|(file, _)| file).collect()),
+        remedies: true,
+        whole_project: found.whole,
+    };
     let mut report = check(project, &options);
     working.finish_and_clear();
     if !opened.settings.handbook_only_hint {

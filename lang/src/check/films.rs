@@ -32,14 +32,23 @@ fn at_face(layer: &Layer, front: bool) -> Option<Index> {
     }
 }
 
-/// The films of every element, in the light's order: none for a body. None where a material has no index, which has been
+/// The films of an element.
+#[derive(Default)]
+pub(super) struct Pieces {
+    /// In the light's order.
+    pub(super) films: Vec<Film>,
+    /// Which of them is the layer itself.
+    pub(super) core: usize,
+}
+
+/// The films of every element: none for a body. None where a material has no index, which has been
 /// reported.
-pub(super) fn pieces(stack: &Stack) -> Option<Vec<Vec<Film>>> {
+pub(super) fn pieces(stack: &Stack) -> Option<Vec<Pieces>> {
     let faces = stack.rough_faces();
-    let mut pieces: Vec<Vec<Film>> = Vec::with_capacity(stack.elements.len());
+    let mut pieces: Vec<Pieces> = Vec::with_capacity(stack.elements.len());
     for (at, (element, left)) in stack.elements.iter().zip(stack.cores()).enumerate() {
         let Element::Layer(layer) = element else {
-            pieces.push(Vec::new());
+            pieces.push(Pieces::default());
             continue;
         };
         // Between its rough faces a gradient is what it was.
@@ -49,7 +58,8 @@ pub(super) fn pieces(stack: &Stack) -> Option<Vec<Vec<Film>>> {
             own.chain(others).map(|face| face.rms / layer.thickness.max(f64::MIN_POSITIVE)).sum::<f64>()
         };
         let profile = profile(layer, cut(true).min(1.0), (1.0 - cut(false)).max(0.0))?;
-        pieces.push(vec![Film { profile, thickness_nm: left.max(0.0) }]);
+        let films = vec![Film { profile, thickness_nm: left.max(0.0) }];
+        pieces.push(Pieces { films, core: 0 });
     }
     for face in faces {
         let own = at_face(stack.layer(face.layer)?, face.front)?;
@@ -61,7 +71,13 @@ pub(super) fn pieces(stack: &Stack) -> Option<Vec<Vec<Film>>> {
         };
         let mixed = Index::mixture(MixingRule::Bruggeman, &[(own, 0.5), (other, 0.5)]).ok()?;
         let film = Film::new(mixed, 2.0 * face.rms);
-        if face.front { pieces[face.layer].insert(0, film) } else { pieces[face.layer].push(film) }
+        let own = &mut pieces[face.layer];
+        if face.front {
+            own.films.insert(0, film);
+            own.core += 1;
+        } else {
+            own.films.push(film);
+        }
     }
     Some(pieces)
 }

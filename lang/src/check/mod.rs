@@ -1,5 +1,6 @@
 //! From the resolved project to a report: requirements evaluated, process limits compared, waivers applied.
 
+mod blame;
 mod films;
 mod house;
 mod optics;
@@ -28,6 +29,8 @@ pub struct Options {
     pub today: Date,
     /// The files whose recipes are evaluated and whose diagnostics are returned; all of the project's where none.
     pub asked: Option<BTreeSet<FileId>>,
+    /// Whether to look for the thickness that mends a missed requirement, which takes longer than to evaluate it.
+    pub remedies: bool,
     /// Whether the project was read whole, so that what nothing uses can be told.
     pub whole_project: bool,
 }
@@ -44,7 +47,7 @@ pub fn check(project: Project, options: &Options) -> Report {
     let own = |module: &&Module| module.file.is_some_and(asked);
     let recipes: Vec<&Arc<Recipe>> =
         project.modules.iter().filter(own).flat_map(|module| &module.recipes).collect();
-    let outcomes: Vec<Outcome> = recipes.par_iter().map(|recipe| outcome(recipe)).collect();
+    let outcomes: Vec<Outcome> = recipes.par_iter().map(|recipe| outcome(recipe, options.remedies)).collect();
 
     let concerns = concerned(&project, &asked);
     let general = house::project_findings(&project, options);
@@ -127,13 +130,13 @@ fn files_of(recipe: &Recipe) -> BTreeSet<FileId> {
     files
 }
 
-fn outcome(recipe: &Arc<Recipe>) -> Outcome {
+fn outcome(recipe: &Arc<Recipe>, remedies: bool) -> Outcome {
     let mut findings = Vec::new();
     let (requirements, process) = match &recipe.stack {
         Some(stack) if recipe.sound() => {
             findings.extend(house::recipe_findings(recipe, stack));
             let process = process::check(recipe, stack, &mut findings);
-            (require::check(recipe, stack, &mut findings), Some(process))
+            (require::check(recipe, stack, remedies, &mut findings), Some(process))
         }
         _ => (require::not_evaluated(recipe), None),
     };

@@ -21,8 +21,8 @@ pub(super) struct Optics {
 /// Where the engine has an element.
 #[derive(Clone, Copy)]
 enum Seat {
-    /// Coating, first film, number of films.
-    Films(usize, usize, usize),
+    /// Coating, first film, number of films, and which of them is the layer itself between its rough faces.
+    Films(usize, usize, usize, usize),
     Body(usize),
 }
 
@@ -90,12 +90,12 @@ impl Optics {
         for (element, seat) in stack.elements.iter().zip(&self.seats) {
             if chosen(element) {
                 match *seat {
-                    Seat::Films(coating, first, count) if from_exit => {
+                    Seat::Films(coating, first, count, _) if from_exit => {
                         let last = self.forward.coatings.len() - 1;
                         let end = self.forward.coatings[coating].len() - 1;
                         films.extend((first..first + count).map(|film| (last - coating, end - film)));
                     }
-                    Seat::Films(coating, first, count) => {
+                    Seat::Films(coating, first, count, _) => {
                         films.extend((first..first + count).map(|film| (coating, film)));
                     }
                     Seat::Body(body) if from_exit => bodies.push(self.forward.bodies.len() - 1 - body),
@@ -119,8 +119,19 @@ impl Optics {
             (0, film)
         };
         self.seats.iter().position(|seat| {
-            matches!(*seat, Seat::Films(coating, first, count) if coating == wanted && (first..first + count).contains(&film))
+            matches!(*seat, Seat::Films(coating, first, count, _) if coating == wanted && (first..first + count).contains(&film))
         })
+    }
+
+    /// The film that is a layer itself, for an element of the model's stack: coating and film, as the light of a requirement
+    /// counts.
+    pub(super) fn film_of(&self, element: usize, from_exit: bool) -> Option<(usize, usize)> {
+        let Some(Seat::Films(coating, _, _, film)) = self.seats.get(element).copied() else { return None };
+        if !from_exit {
+            return Some((coating, film));
+        }
+        let coatings = &self.forward.coatings;
+        Some((coatings.len() - 1 - coating, coatings[coating].len() - 1 - film))
     }
 
     /// The materials, for messages.
@@ -238,8 +249,9 @@ fn engine_stack(stack: &Stack) -> Option<(engine::Stack, Vec<Seat>)> {
         match element {
             Element::Layer(_) => {
                 let coating = coatings.len() - 1;
-                seats.push(Seat::Films(coating, coatings[coating].len(), pieces.len()));
-                coatings[coating].extend(pieces);
+                let first = coatings[coating].len();
+                seats.push(Seat::Films(coating, first, pieces.films.len(), first + pieces.core));
+                coatings[coating].extend(pieces.films);
             }
             Element::Body(body) => {
                 seats.push(Seat::Body(bodies.len()));

@@ -1,9 +1,10 @@
 //! The requirements of a recipe: each with its value, its margin and where the extreme is.
 
+use super::blame;
 use super::optics::{self, Optics, Trouble};
 use super::quantity;
-use crate::finding::{Finding, OpticsFact, PromiseFact, Untold, Verdict};
-use crate::model::{Angles, Bound, Quantity, Recipe, Requirement, Stack};
+use crate::finding::{Fact, Finding, OpticsFact, PromiseFact, Remedy, Untold, Verdict};
+use crate::model::{Angles, Bound, Element, Quantity, Recipe, Requirement, Stack};
 use crate::report::{At, RequirementReport};
 use crate::source::Place;
 use overcoat_engine as engine;
@@ -29,12 +30,19 @@ pub(super) struct Asked<'a> {
 }
 
 /// Evaluates every requirement of a sound recipe.
-pub(super) fn check(recipe: &Recipe, stack: &Stack, findings: &mut Vec<Finding>) -> Vec<RequirementReport> {
+pub(super) fn check(
+    recipe: &Recipe,
+    stack: &Stack,
+    remedies: bool,
+    findings: &mut Vec<Finding>,
+) -> Vec<RequirementReport> {
     let spans: Vec<(f64, f64)> =
         recipe.all_requirements().flat_map(|(requirement, _)| quantity::spans(requirement)).collect();
     let angle = recipe.all_requirements().map(|(requirement, _)| steepest(requirement)).fold(0.0, f64::max);
     let optics = Optics::new(stack, &spans, angle);
+    let chamber = recipe.chamber.as_ref().map(|(chamber, _)| &**chamber);
     let mut reports = Vec::new();
+    let mut missed = Vec::new();
     for (requirement, asked_at) in recipe.all_requirements() {
         let result = match &optics {
             Ok(Some(optics)) => evaluate(requirement, stack, optics),
@@ -47,6 +55,7 @@ pub(super) fn check(recipe: &Recipe, stack: &Stack, findings: &mut Vec<Finding>)
             recipe: recipe.name.clone(),
             asked_at,
             verdict,
+            remedy: Remedy::NotSought,
         };
         match result {
             Ok(judged) => {
@@ -56,8 +65,12 @@ pub(super) fn check(recipe: &Recipe, stack: &Stack, findings: &mut Vec<Finding>)
                 report.max = judged.max;
                 report.margin = judged.value.map(|_| judged.margin);
                 report.at = judged.at;
-                let verdict = judged.verdict(requirement);
-                findings.extend(verdict.map(|verdict| Finding::new(tell(verdict), requirement.place)));
+                if let Some(verdict) = judged.verdict(requirement) {
+                    if remedies && !report.met {
+                        missed.push((findings.len(), requirement.clone(), judged));
+                    }
+                    findings.push(Finding::new(tell(verdict), requirement.place));
+                }
             }
             Err(troubles) => {
                 for trouble in troubles {
@@ -70,7 +83,45 @@ pub(super) fn check(recipe: &Recipe, stack: &Stack, findings: &mut Vec<Finding>)
         }
         reports.push(report);
     }
+    let Ok(Some(optics)) = &optics else { return reports };
+    let met: Vec<Arc<Requirement>> =
+        reports.iter().filter(|report| report.met).map(|report| report.requirement.clone()).collect();
+    for (at, requirement, judged) in missed {
+        let Some(engine) = optics.facing(requirement.from_exit) else { continue };
+        let asked = Asked { requirement: &requirement, stack, optics, engine };
+        let again = |requirement: &Requirement, place: Place, thickness: f64| {
+            let stack = with_thickness(stack, place, thickness);
+            let optics = Optics::new(&stack, &spans, angle).ok()??;
+            evaluate(requirement, &stack, &optics).ok()
+        };
+        let changed = |place: Place, thickness: f64| again(&requirement, place, thickness);
+        let mut remedy = blame::blame(&asked, chamber, &judged, &changed);
+        if let Remedy::Thickness(aid) = &mut remedy
+            && let Some(place) = aid.layer.thickness_place
+        {
+            let breaks = |other: &&Arc<Requirement>| {
+                again(other, place, aid.thickness).is_none_or(|judged| judged.margin < 0.0)
+            };
+            aid.breaks = met.iter().filter(breaks).map(|other| other.text.clone()).collect();
+        }
+        if let Fact::Promise(fact) = &mut findings[at].fact {
+            fact.remedy = remedy;
+        }
+    }
     reports
+}
+
+/// The stack with the layers of a statement at another thickness, nm.
+fn with_thickness(stack: &Stack, place: Place, thickness: f64) -> Stack {
+    let mut stack = stack.clone();
+    for element in &mut stack.elements {
+        if let Element::Layer(layer) = element
+            && layer.thickness_place == place
+        {
+            layer.thickness = thickness;
+        }
+    }
+    stack
 }
 
 /// The requirements of a recipe that could not be understood: none has a value, none is met.
@@ -131,10 +182,10 @@ impl Judged {
     }
 
     /// What is to be said of it, if anything.
-    fn verdict(self, requirement: &Requirement) -> Option<Verdict> {
+    fn verdict(&self, requirement: &Requirement) -> Option<Verdict> {
         let (at, margin) = (self.at, self.margin);
         if margin < 0.0 && self.missed.is_some() {
-            return self.missed;
+            return self.missed.clone();
         }
         let value = self.value?;
         let least = match (self.min, self.max) {

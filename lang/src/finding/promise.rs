@@ -1,5 +1,6 @@
 //! Facts about what a part must do, and about margins.
 
+use super::LayerName;
 use crate::model::{Bound, Requirement};
 use crate::report::At;
 use crate::source::Place;
@@ -16,6 +17,36 @@ pub struct PromiseFact {
     pub asked_at: Place,
     /// What is the case.
     pub verdict: Verdict,
+    /// What would mend it.
+    pub remedy: Remedy,
+}
+
+/// What would mend a missed requirement.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Remedy {
+    /// It was not missed, or no thickness is to be blamed for what it asks for.
+    NotSought,
+    /// No single thickness brings it nearer to its bound.
+    NoneHelps,
+    /// The single thickness that helps most.
+    Thickness(Aid),
+}
+
+/// A thickness to be changed.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Aid {
+    /// The layer, with the place of its thickness.
+    pub layer: LayerName,
+    /// What it would be, nm.
+    pub thickness: f64,
+    /// The same as the recipe would write it.
+    pub written: String,
+    /// The requirement's value then.
+    pub value: f64,
+    /// Whether the requirement is met then.
+    pub mends: bool,
+    /// The requirements, as written, that are met now and would not be then.
+    pub breaks: Vec<String>,
 }
 
 /// What is the case with a requirement.
@@ -168,6 +199,7 @@ impl PartialEq for PromiseFact {
             && self.recipe == other.recipe
             && self.asked_at == other.asked_at
             && self.verdict == other.verdict
+            && self.remedy == other.remedy
     }
 }
 

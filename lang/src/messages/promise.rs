@@ -3,17 +3,65 @@
 use super::Words;
 use super::number::{self, angle, apart, band, or_list, ratio, significant, wavelength};
 use crate::code::Code;
-use crate::finding::{PromiseFact, Untold, Verdict};
+use crate::finding::{PromiseFact, Remedy, Untold, Verdict};
 use crate::model::{Beam, Quantity, Requirement};
 use crate::report::At;
 use crate::source::Place;
 
 pub(super) fn words(fact: &PromiseFact, place: Place) -> Words {
-    let words = verdict(fact);
+    let words = remedied(verdict(fact), fact);
     if fact.asked_at == place {
         return words;
     }
     words.related(fact.asked_at, format!("recipe `{}` promises it here", fact.recipe))
+}
+
+/// The same with the thickness that would mend it.
+fn remedied(mut words: Words, fact: &PromiseFact) -> Words {
+    let requirement = &*fact.requirement;
+    let aid = match &fact.remedy {
+        Remedy::NotSought => return words,
+        Remedy::NoneHelps => {
+            words.message.push_str("; no single film's thickness brings it nearer");
+            return words;
+        }
+        Remedy::Thickness(aid) => aid,
+    };
+    let layer = &aid.layer;
+    let called = match &layer.name {
+        Some(name) => format!("{name} of {}", layer.material),
+        None => format!("{} (layer {})", layer.material, layer.number),
+    };
+    let value = match &fact.verdict {
+        Verdict::EdgeMisplaced { .. } => wavelength(aid.value),
+        Verdict::Missed { value, bound, .. } => {
+            let digits = apart(*value, *bound).max(apart(aid.value, *bound)).max(apart(aid.value, *value));
+            shown(requirement, aid.value, digits.min(6))
+        }
+        _ => shown(requirement, aid.value, 3),
+    };
+    let change = format!(
+        "{called} {} → {} nm",
+        number::rounded(layer.thickness, 2),
+        number::rounded(aid.thickness, 2)
+    );
+    words.message.push_str(&if aid.mends {
+        format!("; {change} gives {value}")
+    } else {
+        format!("; no single film's thickness mends it, and {change} comes nearest with {value}")
+    });
+    if layer.copies > 1 {
+        words = words.note(format!("the change is of all {} copies of that layer", layer.copies));
+    }
+    for broken in &aid.breaks {
+        words = words.note(format!("with that change `{broken}` is missed, which is met now"));
+    }
+    match layer.thickness_place {
+        Some(place) if aid.mends && aid.breaks.is_empty() => {
+            words.fix(format!("set {called} to {}", aid.written), place, aid.written.clone())
+        }
+        _ => words,
+    }
 }
 
 fn verdict(fact: &PromiseFact) -> Words {

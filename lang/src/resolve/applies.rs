@@ -52,9 +52,8 @@ fn no_mean(quantity: &Quantity, bound: &Bound) -> Option<&'static str> {
 
 /// What a bound must be instead, that only a curve against wavelength can have.
 fn no_curve(quantity: &Quantity, bound: &Bound, mean: bool) -> Option<&'static str> {
-    let curve = quantity.is_curve() && !mean;
     match bound {
-        Bound::Crosses { .. } if !curve => Some(
+        Bound::Crosses { .. } if !quantity.is_curve() => Some(
             "one on a number: only reflectance, transmittance, absorptance and optical density have edges",
         ),
         Bound::AtMostMask(_) | Bound::AtLeastMask(_) if mean || !quantity.is_curve() => Some(

@@ -74,7 +74,7 @@ impl Shop<'_> {
 }
 
 /// A layer as a message calls it.
-fn name_of(layer: &Layer) -> LayerName {
+pub(super) fn name_of(layer: &Layer) -> LayerName {
     // Inside a repeat one statement stands for many layers: its number is that of the first.
     LayerName {
         name: layer.name.as_ref().and_then(|name| name.split('[').next()).map(str::to_owned),

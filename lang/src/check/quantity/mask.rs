@@ -77,7 +77,7 @@ fn in_band(
 }
 
 /// The mask's value at a wavelength that it covers.
-fn at(mask: &Mask, nm: f64) -> f64 {
+pub(in super::super) fn at(mask: &Mask, nm: f64) -> f64 {
     let after = mask.rows.partition_point(|row| row.0 <= nm).clamp(1, mask.rows.len() - 1);
     let ((x0, y0), (x1, y1)) = (mask.rows[after - 1], mask.rows[after]);
     y0 + (y1 - y0) * ((nm - x0) / (x1 - x0)).clamp(0.0, 1.0)

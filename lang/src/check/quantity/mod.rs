@@ -4,9 +4,9 @@ mod angles;
 mod colour;
 mod edge;
 mod field;
-mod mask;
-mod phase;
-mod power;
+pub(super) mod mask;
+pub(super) mod phase;
+pub(super) mod power;
 mod weighted;
 
 use super::optics::Trouble;
@@ -22,7 +22,7 @@ pub(super) fn judge(asked: &Asked<'_>) -> Result<Judged, Trouble> {
         Bound::AtMostMask(curve) => return mask::judge(asked, curve, true),
         Bound::AtLeastMask(curve) => return mask::judge(asked, curve, false),
         Bound::NearColour { difference, aim } => return colour::judge(asked, *difference, *aim),
-        Bound::Range { min, max } if is_phase(&asked.requirement.quantity) => {
+        Bound::Range { min, max } if phase::is_phase(&asked.requirement.quantity) => {
             phase::judge(asked, *min, *max)?
         }
         Bound::Range { min, max } if matches!(asked.requirement.quantity, Quantity::PeakField) => {
@@ -53,10 +53,6 @@ fn candidates(asked: &Asked<'_>) -> Result<Vec<Candidate>, Trouble> {
         PeakField => Err(not_evaluated("a peak field in this form")),
         Yield => Err(not_evaluated("a yield")),
     }
-}
-
-fn is_phase(quantity: &Quantity) -> bool {
-    matches!(quantity, Quantity::Phase(_) | Quantity::GroupDelay(_) | Quantity::GroupDelayDispersion(_))
 }
 
 fn not_evaluated(what: &str) -> Trouble {

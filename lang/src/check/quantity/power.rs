@@ -29,7 +29,7 @@ pub(super) fn explain(asked: &Asked<'_>, error: &OpticsError) -> Trouble {
 }
 
 /// The quantity as the engine has it; a name that stands for nothing in the stack is reported.
-pub(super) fn engine_quantity(asked: &Asked<'_>) -> Result<engine::Quantity, Trouble> {
+pub(in super::super) fn engine_quantity(asked: &Asked<'_>) -> Result<engine::Quantity, Trouble> {
     match &asked.requirement.quantity {
         Quantity::Transmittance => Ok(engine::Quantity::Transmittance),
         Quantity::Absorptance => Ok(engine::Quantity::Absorptance),
@@ -40,7 +40,10 @@ pub(super) fn engine_quantity(asked: &Asked<'_>) -> Result<engine::Quantity, Tro
 }
 
 /// The absorptance in what a name stands for.
-pub(super) fn absorptance_in(asked: &Asked<'_>, target: &Target) -> Result<engine::Quantity, Trouble> {
+pub(in super::super) fn absorptance_in(
+    asked: &Asked<'_>,
+    target: &Target,
+) -> Result<engine::Quantity, Trouble> {
     asked.optics.target(asked.stack, target, asked.requirement.from_exit).ok_or_else(|| {
         let names: Vec<String> = asked.stack.elements.iter().flat_map(names).collect();
         let near = crate::nearest(&target.name, names.iter().map(String::as_str));
@@ -59,7 +62,7 @@ fn names(element: &Element) -> Vec<String> {
 }
 
 /// The requirement's beam at an angle.
-pub(super) fn light(asked: &Asked<'_>, angle: f64) -> Light {
+pub(in super::super) fn light(asked: &Asked<'_>, angle: f64) -> Light {
     Light {
         polarisation: asked.requirement.polarisation,
         angle_rad: angle,
