@@ -11,6 +11,7 @@ mod dispersion;
 mod extremes;
 mod graded;
 mod handbook;
+mod hemispheres;
 mod means;
 mod neutron;
 mod phases;
