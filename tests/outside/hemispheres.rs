@@ -12,8 +12,8 @@ use crate::data::{Comparison, constant, films};
 /// The hemispherical mean over a narrow band of an index that does not change.
 fn hemispherical(quantity: &Quantity, index: [f64; 2]) -> f64 {
     let stack = films(constant([1.0, 0.0]), Vec::new(), constant(index));
-    let weight = SpectralWeight::blackbody(300.0).unwrap();
-    hemispherical_mean(&stack, quantity, &[(9000.0, 9100.0)], &weight).unwrap().value
+    let weight = SpectralWeight::blackbody(300.0).expect("a temperature");
+    hemispherical_mean(&stack, quantity, &[(9000.0, 9100.0)], &weight).expect("a mean").value
 }
 
 #[test]
