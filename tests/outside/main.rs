@@ -15,6 +15,7 @@ mod hemispheres;
 mod means;
 mod neutron;
 mod phases;
+mod promises;
 mod spectra;
 mod stacks;
 mod tables;

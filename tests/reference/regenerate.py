@@ -29,6 +29,7 @@ SCRIPTS = [
     "phases",
     "graded",
     "facets",
+    "promises",
 ]
 
 
