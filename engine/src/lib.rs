@@ -38,7 +38,7 @@ mod weight;
 
 pub use band::{
     Crossing, Extreme, Extremes, Mean, crossings, extremes, extremes_against, extremes_over_angles,
-    hemispherical_mean, mean, means, value,
+    hemispherical_mean, mean, means, value, values,
 };
 pub use colour::{Lab, Observer, VISIBLE_NM, ciede2000, colour};
 pub use dispersion::{Index, MixingRule, Oscillator};

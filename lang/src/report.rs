@@ -1,8 +1,9 @@
 //! What a check found out, recipe by recipe: the numbers behind every view.
 
 use crate::diagnostic::Diagnostic;
-use crate::model::{Recipe, Requirement};
-use crate::source::Sources;
+use crate::model::{Recipe, Requirement, Spread};
+use crate::source::{Place, Sources};
+use crate::syntax::ast::{Each, SpreadKind};
 use std::sync::Arc;
 
 /// The outcome of one check.
@@ -27,6 +28,8 @@ pub struct RecipeReport {
     pub met: bool,
     /// Its requirements, in order.
     pub requirements: Vec<RequirementReport>,
+    /// How many parts will pass; none where no yield is asked for or it can't be evaluated.
+    pub yields: Option<YieldReport>,
     /// What its runs need; none where the stack was not understood.
     pub process: Option<ProcessReport>,
 }
@@ -73,4 +76,91 @@ pub struct ProcessReport {
     pub thickness: f64,
     /// s, all runs; none where a rate is missing.
     pub duration: Option<f64>,
+}
+
+/// What the chamber's variation makes of a recipe.
+#[derive(Clone, Debug)]
+pub struct YieldReport {
+    /// How many parts were evaluated.
+    pub parts: u32,
+    /// How many of them meet every requirement that counts.
+    pub passed: u32,
+    /// The interval that holds the true yield with 95 % confidence (Clopper and Pearson).
+    pub interval: (f64, f64),
+    /// What varies; empty where nothing does.
+    pub causes: Vec<Cause>,
+    /// The requirements that count.
+    pub requirements: Vec<RequirementYield>,
+}
+
+impl YieldReport {
+    /// The share of parts that pass.
+    pub fn value(&self) -> f64 {
+        f64::from(self.passed) / f64::from(self.parts)
+    }
+
+    /// The requirement that the fewest parts meet.
+    pub fn weakest(&self) -> Option<&RequirementYield> {
+        self.requirements.iter().min_by_key(|one| one.passed)
+    }
+}
+
+/// What a variation varies.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Varying {
+    /// A film's thickness.
+    Thickness,
+    /// A film's index.
+    Index,
+    /// The angle of incidence.
+    Angle,
+}
+
+/// A statement that makes something vary.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Cause {
+    /// What varies.
+    pub varying: Varying,
+    /// Of which material or layer; empty for an angle.
+    pub of: String,
+    /// How often it is drawn.
+    pub each: Each,
+    /// Its distribution.
+    pub kind: SpreadKind,
+    /// Half its width, or its standard deviation: nm, a share, an index, rad.
+    pub spread: Spread,
+    /// The statement.
+    pub place: Place,
+}
+
+/// One requirement over all parts.
+#[derive(Clone, Debug)]
+pub struct RequirementYield {
+    /// The requirement.
+    pub requirement: Arc<Requirement>,
+    /// How many parts meet it.
+    pub passed: u32,
+    /// The values that 5, 50 and 95 % of the parts stay below, from the first 65 536 at most; none where it has none.
+    pub quantiles: Option<[f64; 3]>,
+    /// Which share of the value's variance each cause brings about, to first order: squared standardised regression
+    /// coefficients (A. Saltelli and others, Global Sensitivity Analysis: The Primer, 2008, 1.2.5, from memory), exact where the
+    /// value is linear in the draws.
+    pub shares: Vec<f64>,
+    /// The same of single layers, for what is drawn for each layer: the layer's index in the stack's elements and its share.
+    pub layers: Vec<(usize, f64)>,
+    /// The part that is furthest beyond the bound, or nearest to it.
+    pub worst: WorstPart,
+    /// The value with every `±` at the end that the regression points to, all else as written; none where nothing is `±`.
+    pub corner: Option<f64>,
+}
+
+/// A part that does badly.
+#[derive(Clone, Debug)]
+pub struct WorstPart {
+    /// Its number, from 1.
+    pub number: u32,
+    /// Its value.
+    pub value: f64,
+    /// What was drawn for it, in the cause's unit, with the cause's place in [`YieldReport::causes`] and the layer if it is drawn for one.
+    pub draws: Vec<(usize, Option<usize>, f64)>,
 }

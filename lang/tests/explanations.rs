@@ -42,7 +42,10 @@ fn run(section: &str) -> Report {
     let files = files(section);
     let project = load(&files, &["main.coat".to_owned()]);
     let today = Date { year: 2026, month: 12, day: 1, span: Default::default() };
-    check(project, &Options { today, asked: None, remedies: true, whole_project: true })
+    check(
+        project,
+        &Options { today, asked: None, remedies: true, yields: true, parts: None, whole_project: true },
+    )
 }
 
 fn section<'a>(text: &'a str, heading: &str) -> Option<&'a str> {

@@ -102,7 +102,10 @@ fn valued(stack: &str, with: &[&str], remedies: bool) -> usize {
     files.insert("mask.csv", "wavelength_nm,value\n500,0.5\n520,0.6\n");
     let project = load(&files, &["main.coat".to_owned()]);
     let today = Date { year: 2026, month: 12, day: 1, span: Default::default() };
-    let report = check(project, &Options { today, asked: None, remedies, whole_project: true });
+    let report = check(
+        project,
+        &Options { today, asked: None, remedies, yields: true, parts: None, whole_project: true },
+    );
     let line =
         |place: overcoat_lang::source::Place| report.sources.get(place.file).position(place.span.start).line;
     let errors: BTreeSet<u32> = report

@@ -17,7 +17,10 @@ fn report(text: &str) -> Report {
     files.insert("main.coat", text.to_owned());
     let today = Date { year: 2026, month: 12, day: 1, span: Default::default() };
     let project = load(&files, &["main.coat".to_owned()]);
-    check(project, &Options { today, asked: None, remedies: true, whole_project: true })
+    check(
+        project,
+        &Options { today, asked: None, remedies: true, yields: true, parts: None, whole_project: true },
+    )
 }
 
 /// The only error of a recipe with this stack and these requirements, and the text.

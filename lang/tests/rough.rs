@@ -18,7 +18,10 @@ fn value(stack: &str, sentence: &str) -> Option<f64> {
     files.insert("main.coat", text);
     let today = Date { year: 2026, month: 12, day: 1, span: Default::default() };
     let project = load(&files, &["main.coat".to_owned()]);
-    let report = check(project, &Options { today, asked: None, remedies: false, whole_project: true });
+    let report = check(
+        project,
+        &Options { today, asked: None, remedies: false, yields: true, parts: None, whole_project: true },
+    );
     report.recipes[0].requirements[0].value
 }
 

@@ -58,7 +58,10 @@ fn run(case: &Case) -> Report {
     let asked: Vec<String> =
         case.files.iter().map(|file| file.0.clone()).filter(|path| path.ends_with(".coat")).collect();
     let today = Date { year: 2026, month: 12, day: 1, span: Default::default() };
-    check(load(&files, &asked), &Options { today, asked: None, remedies: true, whole_project: true })
+    check(
+        load(&files, &asked),
+        &Options { today, asked: None, remedies: true, yields: true, parts: None, whole_project: true },
+    )
 }
 
 /// Every expectation as (file, line, code), sorted.

@@ -46,6 +46,8 @@ fn checked(opened: &Opened, today: Date) -> Result<Report, Failure> {
         today,
         asked: Some(files.map(|(file, _)| file).collect()),
         remedies: true,
+        yields: true,
+        parts: None,
         whole_project: found.whole,
     };
     let mut report = check(project, &options);

@@ -31,7 +31,8 @@ fn promises_that_are_integrals_have_the_values_worked_out_apart() {
         files.insert("main.coat", row.coat.clone());
         let project = load(&files, &["main.coat".to_owned()]);
         let today = Date { year: 2026, month: 12, day: 1, span: Default::default() };
-        let options = Options { today, asked: None, remedies: false, whole_project: true };
+        let options =
+            Options { today, asked: None, remedies: false, yields: true, parts: None, whole_project: true };
         let report = check(project, &options);
         let value = report.recipes[0].requirements[0].value.expect(&row.promise);
         // Means settle to 1e-8, over the hemisphere to 1e-7; V(λ) is joined by straight lines here and there.

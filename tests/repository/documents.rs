@@ -35,7 +35,8 @@ fn the_reference_is_a_file_without_an_error_or_a_warning() {
     let mut files = MemoryFiles::new();
     files.insert("reference.coat", recipes.concat());
     let today = Date { year: 2026, month: 12, day: 1, span: Default::default() };
-    let options = Options { today, asked: None, remedies: true, whole_project: true };
+    let options =
+        Options { today, asked: None, remedies: true, yields: true, parts: None, whole_project: true };
     let report = check(load(&files, &["reference.coat".to_owned()]), &options);
     let told: Vec<&str> = report
         .diagnostics

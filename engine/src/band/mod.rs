@@ -20,7 +20,7 @@ pub use extremes::{Extreme, Extremes, extremes};
 pub use hemisphere::hemispherical_mean;
 pub use mean::{Mean, mean, means};
 pub(crate) use probe::Probe;
-pub use probe::value;
+pub use probe::{value, values};
 
 /// The least value of a function between two bounds, and where it is; to 1e-8 of their distance.
 pub(crate) fn minimum_between(

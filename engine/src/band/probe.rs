@@ -33,6 +33,20 @@ pub fn value(
     Probe::new(stack, quantity, light)?.at(wavelength_nm)
 }
 
+/// The same at several vacuum wavelengths in nm.
+///
+/// # Errors
+/// As [`value`].
+pub fn values(
+    stack: &Stack,
+    quantity: &Quantity,
+    light: &Light,
+    wavelengths_nm: &[f64],
+) -> Result<Vec<f64>, OpticsError> {
+    let probe = Probe::new(stack, quantity, light)?;
+    wavelengths_nm.iter().map(|wavelength_nm| probe.at(*wavelength_nm)).collect()
+}
+
 /// A stack prepared for many evaluations of one quantity.
 #[derive(Clone, Debug)]
 pub(crate) struct Probe {

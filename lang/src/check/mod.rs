@@ -7,7 +7,9 @@ mod optics;
 mod process;
 mod quantity;
 mod require;
+mod sketch;
 mod waive;
+mod yields;
 
 use crate::code::Family;
 use crate::diagnostic::{Diagnostic, Severity};
@@ -31,6 +33,10 @@ pub struct Options {
     pub asked: Option<BTreeSet<FileId>>,
     /// Whether to look for the thickness that mends a missed requirement, which takes longer than to evaluate it.
     pub remedies: bool,
+    /// Whether to evaluate how many parts will pass.
+    pub yields: bool,
+    /// How many parts to evaluate, in place of what the requirement says.
+    pub parts: Option<u32>,
     /// Whether the project was read whole, so that what nothing uses can be told.
     pub whole_project: bool,
 }
@@ -47,7 +53,7 @@ pub fn check(project: Project, options: &Options) -> Report {
     let own = |module: &&Module| module.file.is_some_and(asked);
     let recipes: Vec<&Arc<Recipe>> =
         project.modules.iter().filter(own).flat_map(|module| &module.recipes).collect();
-    let outcomes: Vec<Outcome> = recipes.par_iter().map(|recipe| outcome(recipe, options.remedies)).collect();
+    let outcomes: Vec<Outcome> = recipes.par_iter().map(|recipe| outcome(recipe, options)).collect();
 
     let concerns = concerned(&project, &asked);
     let general = house::project_findings(&project, options);
@@ -130,16 +136,16 @@ fn files_of(recipe: &Recipe) -> BTreeSet<FileId> {
     files
 }
 
-fn outcome(recipe: &Arc<Recipe>, remedies: bool) -> Outcome {
+fn outcome(recipe: &Arc<Recipe>, options: &Options) -> Outcome {
     let mut findings = Vec::new();
-    let (requirements, process) = match &recipe.stack {
+    let ((requirements, yields), process) = match &recipe.stack {
         Some(stack) if recipe.sound() => {
             findings.extend(house::recipe_findings(recipe, stack));
             let process = process::check(recipe, stack, &mut findings);
-            (require::check(recipe, stack, remedies, &mut findings), Some(process))
+            (require::check(recipe, stack, options, &mut findings), Some(process))
         }
-        _ => (require::not_evaluated(recipe), None),
+        _ => ((require::not_evaluated(recipe), None), None),
     };
     let met = process.is_some() && requirements.iter().all(|requirement| requirement.met);
-    Outcome { report: RecipeReport { recipe: recipe.clone(), met, requirements, process }, findings }
+    Outcome { report: RecipeReport { recipe: recipe.clone(), met, requirements, yields, process }, findings }
 }

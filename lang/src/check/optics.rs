@@ -62,6 +62,11 @@ impl Optics {
         Ok(Some(Optics { backward: forward.reversed(), forward, seats, materials: materials(stack) }))
     }
 
+    /// The stack as light from the incident side meets it.
+    pub(super) fn forward(&self) -> &engine::Stack {
+        &self.forward
+    }
+
     /// The stack as the light of a requirement meets it.
     pub(super) fn facing(&self, from_exit: bool) -> Option<&engine::Stack> {
         if from_exit { self.backward.as_ref() } else { Some(&self.forward) }

@@ -1,11 +1,11 @@
 //! The requirements of a recipe: each with its value, its margin and where the extreme is.
 
-use super::blame;
 use super::optics::{self, Optics, Trouble};
 use super::quantity;
+use super::{Options, blame, yields};
 use crate::finding::{Fact, Finding, OpticsFact, PromiseFact, Remedy, Untold, Verdict};
 use crate::model::{Angles, Bound, Element, Quantity, Recipe, Requirement, Stack};
-use crate::report::{At, RequirementReport};
+use crate::report::{At, RequirementReport, YieldReport};
 use crate::source::Place;
 use overcoat_engine as engine;
 use std::f64::consts::FRAC_PI_2;
@@ -33,9 +33,9 @@ pub(super) struct Asked<'a> {
 pub(super) fn check(
     recipe: &Recipe,
     stack: &Stack,
-    remedies: bool,
+    options: &Options,
     findings: &mut Vec<Finding>,
-) -> Vec<RequirementReport> {
+) -> (Vec<RequirementReport>, Option<YieldReport>) {
     let spans: Vec<(f64, f64)> =
         recipe.all_requirements().flat_map(|(requirement, _)| quantity::spans(requirement)).collect();
     let angle = recipe.all_requirements().map(|(requirement, _)| steepest(requirement)).fold(0.0, f64::max);
@@ -43,7 +43,14 @@ pub(super) fn check(
     let chamber = recipe.chamber.as_ref().map(|(chamber, _)| &**chamber);
     let mut reports = Vec::new();
     let mut missed = Vec::new();
+    // What the yield counts, and whether all of it has a value.
+    let (mut counted, mut all_valued) = (Vec::new(), true);
     for (requirement, asked_at) in recipe.all_requirements() {
+        if matches!(requirement.quantity, Quantity::Yield) {
+            // A yield is that of all the others: they come first.
+            reports.push(blank(requirement, asked_at));
+            continue;
+        }
         let result = match &optics {
             Ok(Some(optics)) => evaluate(requirement, stack, optics),
             Ok(None) => Err(Vec::new()),
@@ -59,6 +66,9 @@ pub(super) fn check(
         };
         match result {
             Ok(judged) => {
+                if !requirement.nominal {
+                    counted.push((requirement.clone(), judged.clone()));
+                }
                 report.met = judged.margin >= 0.0;
                 report.value = judged.value;
                 report.min = judged.min;
@@ -66,13 +76,14 @@ pub(super) fn check(
                 report.margin = judged.value.map(|_| judged.margin);
                 report.at = judged.at;
                 if let Some(verdict) = judged.verdict(requirement) {
-                    if remedies && !report.met {
+                    if options.remedies && !report.met {
                         missed.push((findings.len(), requirement.clone(), judged));
                     }
                     findings.push(Finding::new(tell(verdict), requirement.place));
                 }
             }
             Err(troubles) => {
+                all_valued &= requirement.nominal;
                 for trouble in troubles {
                     findings.push(match trouble {
                         Trouble::Fact(fact) => Finding { fact: *fact, place: requirement.place },
@@ -83,7 +94,7 @@ pub(super) fn check(
         }
         reports.push(report);
     }
-    let Ok(Some(optics)) = &optics else { return reports };
+    let Ok(Some(optics)) = &optics else { return (reports, None) };
     let met: Vec<Arc<Requirement>> =
         reports.iter().filter(|report| report.met).map(|report| report.requirement.clone()).collect();
     for (at, requirement, judged) in missed {
@@ -108,11 +119,23 @@ pub(super) fn check(
             fact.remedy = remedy;
         }
     }
-    reports
+    let beams = Beams { spans: &spans, angle };
+    let yields = all_valued.then(|| {
+        let case = yields::Case { recipe, stack, optics, chamber, counted: &counted, beams };
+        yields::promised(&case, options, &mut reports, findings)
+    });
+    (reports, yields.flatten())
+}
+
+/// The light that a recipe's graded films are integrated for.
+#[derive(Clone, Copy)]
+pub(super) struct Beams<'a> {
+    pub(super) spans: &'a [(f64, f64)],
+    pub(super) angle: f64,
 }
 
 /// The stack with the layers of a statement at another thickness, nm.
-fn with_thickness(stack: &Stack, place: Place, thickness: f64) -> Stack {
+pub(super) fn with_thickness(stack: &Stack, place: Place, thickness: f64) -> Stack {
     let mut stack = stack.clone();
     for element in &mut stack.elements {
         if let Element::Layer(layer) = element
@@ -210,7 +233,11 @@ impl Judged {
     }
 }
 
-fn evaluate(requirement: &Requirement, stack: &Stack, optics: &Optics) -> Result<Judged, Vec<Trouble>> {
+pub(super) fn evaluate(
+    requirement: &Requirement,
+    stack: &Stack,
+    optics: &Optics,
+) -> Result<Judged, Vec<Trouble>> {
     let spans = quantity::spans(requirement);
     let gaps: Vec<OpticsFact> = spans.into_iter().flat_map(|band| optics.gaps(band)).collect();
     if !gaps.is_empty() {

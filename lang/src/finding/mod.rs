@@ -13,7 +13,7 @@ pub use form::FormFact;
 pub use house::HouseFact;
 pub use optics::OpticsFact;
 pub use process::{LayerName, ProcessFact, SideName, Trouble};
-pub use promise::{Aid, PromiseFact, Remedy, Untold, Verdict};
+pub use promise::{Aid, Driver, PromiseFact, Remedy, Sensitive, ShortYield, Untold, Verdict};
 
 use crate::source::Place;
 

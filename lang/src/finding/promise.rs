@@ -2,7 +2,7 @@
 
 use super::LayerName;
 use crate::model::{Bound, Requirement};
-use crate::report::At;
+use crate::report::{At, Cause};
 use crate::source::Place;
 use std::sync::Arc;
 
@@ -110,6 +110,10 @@ pub enum Verdict {
         /// Why.
         why: &'static str,
     },
+    /// Too few parts will pass.
+    YieldShort(Box<ShortYield>),
+    /// A requirement hangs on one layer.
+    Sensitive(Sensitive),
     /// What a textured face is not evaluated for.
     Textured(Untold),
     /// A photocurrent under a light of unknown strength.
@@ -219,4 +223,57 @@ pub enum Untold {
     Tilted,
     /// A phase or a field.
     Waves,
+}
+
+/// A yield below its bound.
+#[derive(Clone, Debug)]
+pub struct ShortYield {
+    /// The share of parts that pass.
+    pub value: f64,
+    /// The interval that holds the true share with 95 % confidence.
+    pub interval: (f64, f64),
+    /// How many parts were evaluated.
+    pub parts: u32,
+    /// The least share allowed.
+    pub bound: f64,
+    /// The requirement that the fewest parts meet, and their share.
+    pub weakest: Option<(String, f64)>,
+    /// What drives that requirement.
+    pub driver: Option<Driver>,
+    /// To which share of its size the driver must shrink for the yield to be met.
+    pub shrink: Option<f64>,
+    /// The thickness with which the yield is met, and the yield then.
+    pub moved: Option<(Aid, f64)>,
+    /// The weakest requirement's value with every `±` at its worst end.
+    pub corner: Option<(Arc<Requirement>, f64)>,
+    /// Whether anything varies.
+    pub varies: bool,
+}
+
+impl PartialEq for ShortYield {
+    fn eq(&self, other: &Self) -> bool {
+        self.value == other.value && self.parts == other.parts && self.bound == other.bound
+    }
+}
+
+/// A variation that drives a requirement.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Driver {
+    /// The variation.
+    pub cause: Cause,
+    /// Its share of the variance.
+    pub share: f64,
+}
+
+/// A layer that a requirement hangs on.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Sensitive {
+    /// What the layer is called.
+    pub layer: String,
+    /// Its share of the variance.
+    pub share: f64,
+    /// The requirement, as written.
+    pub requirement: String,
+    /// The share of parts that meet it.
+    pub met: f64,
 }

@@ -8,6 +8,7 @@ mod number;
 mod optics;
 mod process;
 mod promise;
+mod yields;
 
 use crate::code::Code;
 use crate::diagnostic::{Diagnostic, Edit, Fix, Related};

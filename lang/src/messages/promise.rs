@@ -1,7 +1,7 @@
 //! Sentences about what a part must do.
 
-use super::Words;
 use super::number::{self, angle, apart, band, or_list, ratio, significant, wavelength};
+use super::{Words, yields};
 use crate::code::Code;
 use crate::finding::{PromiseFact, Remedy, Untold, Verdict};
 use crate::model::{Beam, Quantity, Requirement};
@@ -167,6 +167,8 @@ fn verdict(fact: &PromiseFact) -> Words {
                 ),
             )
         }
+        Verdict::YieldShort(short) => yields::short(recipe, short),
+        Verdict::Sensitive(sensitive) => yields::sensitive(recipe, sensitive),
         Verdict::Textured(untold) => {
             let why = match untold {
                 Untold::Inside => {
@@ -243,7 +245,7 @@ fn verdict(fact: &PromiseFact) -> Words {
 }
 
 /// What a requirement is about, in words: "mean reflectance", "absorptance in silver".
-fn name(requirement: &Requirement) -> String {
+pub(super) fn name(requirement: &Requirement) -> String {
     let words: Vec<&str> = requirement.text.split_whitespace().collect();
     let bound = |word: &&&str| {
         word.starts_with(|first: char| first.is_ascii_digit() || "<>-+(".contains(first))
@@ -254,7 +256,7 @@ fn name(requirement: &Requirement) -> String {
 }
 
 /// A value of the requirement's quantity with its unit.
-fn shown(requirement: &Requirement, number: f64, digits: usize) -> String {
+pub(super) fn shown(requirement: &Requirement, number: f64, digits: usize) -> String {
     match requirement.quantity {
         Quantity::OpticalDensity | Quantity::PeakField | Quantity::Colour(_) => significant(number, digits),
         Quantity::Photocurrent(_) | Quantity::PhotocurrentLoss(_) => {

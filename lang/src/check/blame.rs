@@ -3,18 +3,18 @@
 //! From the exact derivatives of a few samples follows, for every film, how much a change of its thickness alone would help; the most
 //! promising ones are followed step by step, and the best change is evaluated in full before it is told.
 
-mod sketch;
-
 use super::process::name_of;
 use super::require::{Asked, Judged};
+use super::sketch::{Samples, Sketch};
 use crate::finding::{Aid, LayerName, Remedy};
 use crate::model::{Chamber, Element, Layer, Material, Thickness};
 use crate::report::At;
 use crate::source::Place;
 use overcoat_engine::Stack;
-use sketch::{Samples, Sketch};
 use std::borrow::Cow;
 
+/// How many samples are taken over a band.
+const ACROSS: usize = 24;
 /// How many films are followed.
 const FOLLOWED: usize = 4;
 /// How many steps each of them may take.
@@ -97,7 +97,7 @@ fn search<'a>(
     judged: &Judged,
     worst: &[At],
 ) -> Option<(f64, Vec<(Knob<'a>, Change)>)> {
-    let sketch = Sketch::new(asked, judged, worst)?;
+    let sketch = Sketch::new(asked, judged, worst, ACROSS)?;
     let here = sketch.of(asked.engine).ok()?;
     let start = sketch.score(&here, &[], 0.0);
     if !start.is_finite() {

@@ -2,9 +2,9 @@
 //!
 //! What is chosen is evaluated in full before it is said; nothing that a sketch gives is shown.
 
-use super::super::optics::weight;
-use super::super::quantity::{mask, phase, power};
-use super::super::require::{Asked, Judged};
+use super::optics::weight;
+use super::quantity::{self, mask, phase, power};
+use super::require::{Asked, Judged};
 use crate::model::{self, Angles, Bound, Quantity, Side};
 use crate::report::At;
 use crate::units::EV_NM;
@@ -12,13 +12,18 @@ use overcoat_engine::{
     self as engine, Lab, Light, OpticsError, Polarisation, SpectralWeight, Stack, VISIBLE_NM,
 };
 
-/// Samples over a band of which the extremes count, and over one of which the mean does.
-const ACROSS: usize = 24;
 /// At how many angles the hemisphere is looked at.
 const TILTS: usize = 6;
 
-/// How far samples of one beam are from breaking the bound.
-type Score<'a> = Box<dyn Fn(&[f64]) -> f64 + 'a>;
+/// What samples come to: how far they are from breaking the bound, and the value that is nearest to it.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(super) struct Verdict {
+    pub(super) margin: f64,
+    pub(super) value: f64,
+}
+
+/// Of the samples of one beam.
+type Score<'a> = Box<dyn Fn(&[f64]) -> Verdict + Send + Sync + 'a>;
 
 /// The samples of a requirement, and what they come to.
 pub(super) struct Sketch<'a> {
@@ -39,68 +44,84 @@ fn slope(sample: &engine::Slopes, films: &[(usize, usize)]) -> f64 {
 }
 
 impl<'a> Sketch<'a> {
-    /// The samples of a missed requirement, those places among them where it was found worst. None for a quantity that no
-    /// thickness is to be blamed for.
-    pub(super) fn new(asked: &'a Asked<'a>, judged: &Judged, worst: &[At]) -> Option<Sketch<'a>> {
+    /// The samples of a requirement, so many over its bands, those places among them where it was found worst. None for a
+    /// quantity that no thickness is to be blamed for.
+    pub(super) fn new(asked: &Asked<'_>, judged: &Judged, worst: &[At], across: usize) -> Option<Sketch<'a>> {
         let requirement = asked.requirement;
-        let near = (judged.min, judged.max);
-        let within = move |value: f64| {
-            let below = near.1.map_or(f64::INFINITY, |max| max - value);
-            below.min(near.0.map_or(f64::INFINITY, |min| value - min))
-        };
-        let least =
-            move |values: &[f64]| values.iter().map(|value| within(*value)).fold(f64::INFINITY, f64::min);
+        let bound = Between { min: judged.min, max: judged.max };
         let angles = angles(asked, worst);
-        let spread = |bands: &[(f64, f64)]| sampled(bands, worst);
+        let spread = |bands: &[(f64, f64)]| sampled(bands, worst, across);
         let plain = |quantity, wavelengths: Vec<f64>, score: Score<'a>| Sketch {
             quantity,
             beams: angles.iter().map(|angle| (beam(asked, *angle), wavelengths.clone())).collect(),
             score,
             pooled: false,
         };
-        let bands = super::super::quantity::spans(requirement);
+        let extremes = |quantity, wavelengths: Vec<f64>, scale: f64| {
+            let places = wavelengths.clone();
+            let score = move |values: &[f64]| {
+                with_crests(&places, values)
+                    .map(|(_, value)| bound.of(scale * value))
+                    .reduce(worse)
+                    .unwrap_or(NOTHING)
+            };
+            plain(quantity, wavelengths, Box::new(score))
+        };
+        let bands = quantity::spans(requirement);
         match (&requirement.bound, &requirement.quantity) {
             (Bound::AtMostMask(curve) | Bound::AtLeastMask(curve), _) => {
                 let most = matches!(requirement.bound, Bound::AtMostMask(_));
                 let wavelengths = spread(&bands);
-                let bounds: Vec<f64> = wavelengths.iter().map(|nm| mask::at(curve, *nm)).collect();
+                let (places, curve) = (wavelengths.clone(), curve.clone());
                 let score = move |values: &[f64]| {
-                    let apart = values.iter().zip(&bounds).map(|(value, bound)| bound - value);
-                    apart.map(|room| if most { room } else { -room }).fold(f64::INFINITY, f64::min)
+                    let each = with_crests(&places, values).map(|(nm, value)| {
+                        let room = mask::at(&curve, nm) - value;
+                        Verdict { margin: if most { room } else { -room }, value }
+                    });
+                    each.reduce(worse).unwrap_or(NOTHING)
                 };
                 Some(plain(power::engine_quantity(asked).ok()?, wavelengths, Box::new(score)))
             }
             (Bound::Crosses { level, rising, .. }, _) => {
-                let wavelengths = fine(&bands);
+                let wavelengths = fine(&bands, 2 * across);
                 let (level, rising, places) = (*level, *rising, wavelengths.clone());
                 let score = move |values: &[f64]| {
-                    let crossings = edges(&places, values, level, rising).map(within);
-                    crossings.fold(f64::NEG_INFINITY, f64::max)
+                    let better = |a: Verdict, b: Verdict| if b.margin > a.margin { b } else { a };
+                    edges(&places, values, level, rising)
+                        .map(|nm| bound.of(nm))
+                        .reduce(better)
+                        .unwrap_or(NOTHING)
                 };
                 Some(plain(power::engine_quantity(asked).ok()?, wavelengths, Box::new(score)))
             }
             (Bound::NearColour { difference, aim }, Quantity::Colour(side)) => {
-                let wavelengths = fine(&[VISIBLE_NM]);
+                let wavelengths = fine(&[VISIBLE_NM], 2 * across);
                 let score = colour(asked, &wavelengths, *difference, *aim)?;
                 Some(plain(of_side(*side), wavelengths, score))
             }
             (Bound::Range { min, max }, _) if phase::is_phase(&requirement.quantity) => {
                 let scale = phase::Scale::of(&requirement.quantity, *min, *max)?;
-                let score = move |values: &[f64]| {
-                    let shown: Vec<f64> = values.iter().map(|value| value * scale.value).collect();
-                    least(&shown)
-                };
-                Some(plain(scale.quantity.clone(), spread(&bands), Box::new(score)))
+                Some(extremes(scale.quantity.clone(), spread(&bands), scale.value))
             }
             (Bound::Range { .. }, Quantity::PeakField) => {
-                Some(plain(engine::Quantity::PeakField, spread(&bands), Box::new(least)))
+                Some(extremes(engine::Quantity::PeakField, spread(&bands), 1.0))
             }
             (Bound::Range { .. }, quantity) if quantity.is_curve() && !requirement.mean => {
-                Some(plain(power::engine_quantity(asked).ok()?, spread(&bands), Box::new(least)))
+                Some(extremes(power::engine_quantity(asked).ok()?, spread(&bands), 1.0))
             }
-            (Bound::Range { .. }, _) => mean(asked, &bands, within, &angles),
+            (Bound::Range { .. }, _) => mean(asked, &bands, bound, &angles, 2 * across),
             _ => None,
         }
+    }
+
+    /// What the samples of a stack come to, its light tilted by so many rad.
+    pub(super) fn verdict(&self, stack: &Stack, tilt: f64) -> Result<Verdict, OpticsError> {
+        let beam = |(light, wavelengths): &(Light, Vec<f64>)| {
+            let light = Light { angle_rad: (light.angle_rad + tilt).abs(), ..*light };
+            engine::values(stack, &self.quantity, &light, wavelengths)
+        };
+        let values: Result<Vec<Vec<f64>>, OpticsError> = self.beams.iter().map(beam).collect();
+        Ok(self.total(values?))
     }
 
     /// The samples of a stack.
@@ -114,7 +135,7 @@ impl<'a> Sketch<'a> {
     /// How far the samples would be from breaking the bound, to first order, after films have grown by so many nm each.
     pub(super) fn score(&self, samples: &Samples, films: &[(usize, usize)], growth: f64) -> f64 {
         let one = |sample: &engine::Slopes| sample.value + growth * slope(sample, films);
-        self.total(samples.0.iter().map(|beam| beam.iter().map(one).collect()).collect())
+        self.total(samples.0.iter().map(|beam| beam.iter().map(one).collect()).collect()).margin
     }
 
     /// The same from the samples at two growths, by cubic curves that have the values and derivatives of both.
@@ -132,15 +153,15 @@ impl<'a> Sketch<'a> {
             values + width * x * y * (y * slope(near, films) - x * slope(far, films))
         };
         let beams = near.0.iter().zip(&far.0);
-        self.total(beams.map(|(near, far)| near.iter().zip(far).map(one).collect()).collect())
+        self.total(beams.map(|(near, far)| near.iter().zip(far).map(one).collect()).collect()).margin
     }
 
     /// What the values of all beams come to.
-    fn total(&self, values: Vec<Vec<f64>>) -> f64 {
+    fn total(&self, values: Vec<Vec<f64>>) -> Verdict {
         if self.pooled {
             return (self.score)(&values.concat());
         }
-        values.iter().map(|values| (self.score)(values)).fold(f64::INFINITY, f64::min)
+        values.iter().map(|values| (self.score)(values)).reduce(worse).unwrap_or(NOTHING)
     }
 
     /// The middle of its wavelengths, nm.
@@ -148,6 +169,41 @@ impl<'a> Sketch<'a> {
         let all: Vec<f64> = self.beams.iter().flat_map(|beam| beam.1.iter().copied()).collect();
         if all.is_empty() { 550.0 } else { all.iter().sum::<f64>() / all.len() as f64 }
     }
+}
+
+/// Where there is nothing that could be within a bound.
+const NOTHING: Verdict = Verdict { margin: f64::NEG_INFINITY, value: f64::NAN };
+
+fn worse(a: Verdict, b: Verdict) -> Verdict {
+    if b.margin < a.margin { b } else { a }
+}
+
+/// What a value must be.
+#[derive(Clone, Copy)]
+struct Between {
+    min: Option<f64>,
+    max: Option<f64>,
+}
+
+impl Between {
+    fn of(self, value: f64) -> Verdict {
+        let below = self.max.map_or(f64::INFINITY, |max| max - value);
+        Verdict { margin: below.min(self.min.map_or(f64::INFINITY, |min| value - min)), value }
+    }
+}
+
+/// The samples, and the crests between them by parabolas through every three.
+fn with_crests<'v>(places: &'v [f64], values: &'v [f64]) -> impl Iterator<Item = (f64, f64)> + 'v {
+    let crests = values.windows(3).zip(places.windows(3)).filter_map(|(y, x)| {
+        let stands_out = (y[1] >= y[0] && y[1] >= y[2]) || (y[1] <= y[0] && y[1] <= y[2]);
+        let (left, right) = ((y[1] - y[0]) / (x[1] - x[0]), (y[2] - y[1]) / (x[2] - x[1]));
+        let bend = (right - left) / (x[2] - x[0]);
+        let slope = left + bend * (x[1] - x[0]);
+        let off = -0.5 * slope / bend;
+        let inside = off.is_finite() && (x[0]..=x[2]).contains(&(x[1] + off));
+        (stands_out && inside).then(|| (x[1] + off, y[1] + 0.5 * slope * off))
+    });
+    places.iter().copied().zip(values.iter().copied()).chain(crests)
 }
 
 /// A beam of the requirement; at normal incidence s and p are one.
@@ -170,11 +226,11 @@ fn angles(asked: &Asked<'_>, worst: &[At]) -> Vec<f64> {
 }
 
 /// Wavelengths over bands, ends included, with those where the requirement was found worst.
-fn sampled(bands: &[(f64, f64)], worst: &[At]) -> Vec<f64> {
+fn sampled(bands: &[(f64, f64)], worst: &[At], across: usize) -> Vec<f64> {
     let whole: f64 = bands.iter().map(|band| band.1 - band.0).sum();
     let mut wavelengths = Vec::new();
     for &(lo, hi) in bands {
-        let steps = if hi > lo { (ACROSS as f64 * (hi - lo) / whole).ceil().max(2.0) as usize } else { 0 };
+        let steps = if hi > lo { (across as f64 * (hi - lo) / whole).ceil().max(2.0) as usize } else { 0 };
         // Even in the wave number, as fringes are.
         let at = |step: usize| 1.0 / (1.0 / hi + (1.0 / lo - 1.0 / hi) * step as f64 / steps.max(1) as f64);
         wavelengths.extend((1..steps).map(at).chain([lo, hi]));
@@ -187,8 +243,7 @@ fn sampled(bands: &[(f64, f64)], worst: &[At]) -> Vec<f64> {
 }
 
 /// The middles of equal steps over bands, for sums.
-fn fine(bands: &[(f64, f64)]) -> Vec<f64> {
-    let steps = 2 * ACROSS;
+fn fine(bands: &[(f64, f64)], steps: usize) -> Vec<f64> {
     let of = |&(lo, hi): &(f64, f64)| {
         (0..steps).map(move |step| lo + (hi - lo) * (step as f64 + 0.5) / steps as f64)
     };
@@ -236,7 +291,8 @@ fn colour<'a>(asked: &Asked<'_>, wavelengths: &[f64], most: f64, aim: [f64; 3]) 
         let seen = values.iter().zip(&shares).fold([0.0; 3], |sum, (value, share)| {
             [0, 1, 2].map(|at| sum[at] + value * share[at] / white[at])
         });
-        most - engine::ciede2000(Lab::from_shares(seen.map(|share| share.max(0.0))), Lab { l, a, b })
+        let value = engine::ciede2000(Lab::from_shares(seen.map(|share| share.max(0.0))), Lab { l, a, b });
+        Verdict { margin: most - value, value }
     }))
 }
 
@@ -244,8 +300,9 @@ fn colour<'a>(asked: &Asked<'_>, wavelengths: &[f64], most: f64, aim: [f64; 3]) 
 fn mean<'a>(
     asked: &Asked<'_>,
     bands: &[(f64, f64)],
-    within: impl Fn(f64) -> f64 + 'a,
+    bound: Between,
     angles: &[f64],
+    steps: usize,
 ) -> Option<Sketch<'a>> {
     let requirement = asked.requirement;
     let source = weight(requirement.under.as_ref());
@@ -271,8 +328,8 @@ fn mean<'a>(
         Quantity::PhotocurrentLoss(_) => (most, -most),
         _ => (0.0, 1.0),
     };
-    let wavelengths = fine(bands);
-    let mut weights: Vec<f64> = wavelengths.iter().map(|nm| weight.at(*nm).unwrap_or(0.0)).collect();
+    let wavelengths = fine(bands, steps);
+    let mut weights = weights_of(bands, steps, &weight);
     let tilts = |at: usize| ((at as f64 + 0.5) / TILTS as f64).sqrt().asin();
     let beams: Vec<(Light, Vec<f64>)> = if requirement.hemispherical {
         // Even steps of sin²θ carry even shares of the hemisphere's power.
@@ -285,7 +342,16 @@ fn mean<'a>(
     let whole: f64 = weights.iter().sum();
     let score = move |values: &[f64]| {
         let sum: f64 = values.iter().zip(&weights).map(|(value, weight)| value * weight).sum();
-        within(offset + factor * sum / whole)
+        bound.of(offset + factor * sum / whole)
     };
     Some(Sketch { quantity, beams, score: Box::new(score), pooled: requirement.hemispherical })
+}
+
+/// The weight of each step over the bands, whole.
+fn weights_of(bands: &[(f64, f64)], steps: usize, weight: &SpectralWeight) -> Vec<f64> {
+    let step = |(lo, hi): (f64, f64), at: usize| {
+        let end = |at: usize| lo + (hi - lo) * at as f64 / steps as f64;
+        weight.integral(&[(end(at), end(at + 1))]).unwrap_or(0.0)
+    };
+    bands.iter().flat_map(|&band| (0..steps).map(move |at| step(band, at))).collect()
 }
