@@ -31,6 +31,12 @@ Examples:
   overcoat spectrum front.coat --over 300..1100nm --step 5nm > front.csv
   overcoat spectrum splitter.coat --recipe plate --at 45deg --polarised s";
 
+const YIELD_EXAMPLES: &str = "\
+Examples:
+  overcoat yield front.coat
+  overcoat yield front.coat --parts 20000 --format csv --output parts.csv
+      A row for each part: what was drawn, and every value.";
+
 /// Checks optical-coating recipes before they reach the chamber.
 ///
 /// Recipes are text files that end in `.coat`. `overcoat check` evaluates each stack with the interference of
@@ -85,6 +91,12 @@ pub(crate) enum Command {
     /// incident power. Each number is the shortest that reads back as the same double.
     #[command(after_help = SPECTRUM_EXAMPLES)]
     Spectrum(Spectrum),
+    /// Work out how many parts of a recipe will pass, with what its chamber varies drawn anew for each.
+    ///
+    /// Prints the yield with its interval, and for every requirement how many parts meet it, how its value is distributed
+    /// and which variation is behind that. The same recipe gives the same parts on every machine.
+    #[command(after_help = YIELD_EXAMPLES)]
+    Yield(Yield),
     /// Lay recipes out in the one layout.
     ///
     /// Comments stay where they are and the meaning never changes. A file with syntax errors is reported and
@@ -123,7 +135,16 @@ pub(crate) struct Check {
     /// Give it to get the same result from the same files on any day.
     #[arg(long, value_name = "DATE")]
     pub(crate) today: Option<jiff::civil::Date>,
+    /// How many parts a `require yield` is worked out from, in place of what it says.
+    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u32).range(1..=MOST_PARTS))]
+    pub(crate) parts: Option<u32>,
+    /// Leave out `require yield`: it counts as neither met nor missed.
+    #[arg(long, conflicts_with = "parts")]
+    pub(crate) no_yield: bool,
 }
+
+/// More parts than this are a slip of the pen.
+const MOST_PARTS: i64 = 10_000_000;
 
 /// How a check is told.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
@@ -182,6 +203,36 @@ pub(crate) enum From {
     Incident,
     /// The side of `exit`, or of the substrate where that is a half-space.
     Exit,
+}
+
+#[derive(Debug, Args)]
+pub(crate) struct Yield {
+    /// The file with the recipe.
+    #[arg(value_name = "FILE")]
+    pub(crate) file: PathBuf,
+    /// Which recipe; needed where the file holds several.
+    #[arg(long, value_name = "NAME")]
+    pub(crate) recipe: Option<String>,
+    /// How many parts; by default as many as the recipe's own `require yield` says, or 2000.
+    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u32).range(1..=MOST_PARTS))]
+    pub(crate) parts: Option<u32>,
+    /// What to print.
+    #[arg(long, value_enum, default_value_t = Table::Human)]
+    pub(crate) format: Table,
+    /// Write to this file instead of the standard output.
+    #[arg(long, value_name = "FILE")]
+    pub(crate) output: Option<PathBuf>,
+}
+
+/// How a yield is told.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
+pub(crate) enum Table {
+    /// For people.
+    Human,
+    /// One JSON object.
+    Json,
+    /// A row for each part: its number, whether it passes, what was drawn, the value of each requirement.
+    Csv,
 }
 
 #[derive(Debug, Args)]

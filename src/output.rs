@@ -5,7 +5,7 @@ use crate::failure::Failure;
 use anstream::ColorChoice;
 use anstyle::{AnsiColor, Style};
 use std::io::{self, IsTerminal, Write};
-use std::path::Path;
+use std::path::{Path, PathBuf};
 
 /// Whether a stream gets colours: asked for, or a terminal without NO_COLOR.
 pub(crate) fn coloured(colour: Colour, stream: &impl IsTerminal) -> bool {
@@ -44,30 +44,77 @@ pub(crate) fn tell(text: &str) {
 
 /// Replaces a file: its new text is written beside it and takes its place in one step.
 pub(crate) fn replace(path: &Path, text: &str) -> Result<(), Failure> {
-    // A link keeps standing: what it points to is replaced.
-    let target = path.canonicalize().unwrap_or_else(|_| path.to_owned());
-    let folder = match target.parent() {
-        Some(folder) if !folder.as_os_str().is_empty() => folder,
-        _ => Path::new("."),
-    };
-    let written = (|| {
-        // A pipe or a device is written to; only a file can be replaced.
-        if std::fs::metadata(&target).is_ok_and(|about| !about.is_file()) {
-            return std::fs::OpenOptions::new().write(true).open(&target)?.write_all(text.as_bytes());
-        }
-        let mut file = tempfile::NamedTempFile::new_in(folder)?;
-        file.write_all(text.as_bytes())?;
-        // A new file gets the usual rights, a replaced one keeps its own.
-        if let Ok(before) = std::fs::metadata(&target) {
-            file.as_file().set_permissions(before.permissions())?;
+    let mut draft = Draft::beside(path)?;
+    draft.write_all(text.as_bytes()).map_err(|error| Failure::path(path, "written", &error))?;
+    draft.keep()
+}
+
+/// The new text of a file while it is written: beside it, and gone if it does not become whole.
+#[derive(Debug)]
+pub(crate) struct Draft {
+    path: PathBuf,
+    target: PathBuf,
+    kind: Kind,
+}
+
+#[derive(Debug)]
+enum Kind {
+    /// A pipe or a device is written to; only a file can be replaced.
+    Device(std::fs::File),
+    File(tempfile::NamedTempFile),
+}
+
+impl Draft {
+    /// Begins the new text of a file.
+    pub(crate) fn beside(path: &Path) -> Result<Draft, Failure> {
+        // A link keeps standing: what it points to is replaced.
+        let target = path.canonicalize().unwrap_or_else(|_| path.to_owned());
+        let folder = match target.parent() {
+            Some(folder) if !folder.as_os_str().is_empty() => folder,
+            _ => Path::new("."),
+        };
+        let kind = if std::fs::metadata(&target).is_ok_and(|about| !about.is_file()) {
+            std::fs::OpenOptions::new().write(true).open(&target).map(Kind::Device)
         } else {
-            usual_rights(file.as_file())?;
+            tempfile::NamedTempFile::new_in(folder).map(Kind::File)
+        };
+        let kind = kind.map_err(|error| Failure::path(path, "written", &error))?;
+        Ok(Draft { path: path.to_owned(), target, kind })
+    }
+
+    /// Puts the new text in the file's place.
+    pub(crate) fn keep(self) -> Result<(), Failure> {
+        let Draft { path, target, kind } = self;
+        let Kind::File(file) = kind else { return Ok(()) };
+        let kept = (|| {
+            // A new file gets the usual rights, a replaced one keeps its own.
+            if let Ok(before) = std::fs::metadata(&target) {
+                file.as_file().set_permissions(before.permissions())?;
+            } else {
+                usual_rights(file.as_file())?;
+            }
+            file.as_file().sync_all()?;
+            file.persist(&target).map_err(|error| error.error)?;
+            io::Result::Ok(())
+        })();
+        kept.map_err(|error| Failure::path(&path, "written", &error))
+    }
+}
+
+impl Write for Draft {
+    fn write(&mut self, bytes: &[u8]) -> io::Result<usize> {
+        match &mut self.kind {
+            Kind::Device(file) => file.write(bytes),
+            Kind::File(file) => file.write(bytes),
         }
-        file.as_file().sync_all()?;
-        file.persist(&target).map_err(|error| error.error)?;
-        io::Result::Ok(())
-    })();
-    written.map_err(|error| Failure::path(path, "written", &error))
+    }
+
+    fn flush(&mut self) -> io::Result<()> {
+        match &mut self.kind {
+            Kind::Device(file) => file.flush(),
+            Kind::File(file) => file.flush(),
+        }
+    }
 }
 
 #[cfg(unix)]

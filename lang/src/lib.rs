@@ -20,6 +20,6 @@ pub mod source;
 pub mod syntax;
 pub mod units;
 
-pub use check::{Options, check, engine_stack, range_of};
+pub use check::{Options, check, engine_stack, range_of, simulate};
 pub use near::nearest;
 pub use resolve::load;

@@ -164,3 +164,35 @@ pub struct WorstPart {
     /// What was drawn for it, in the cause's unit, with the cause's place in [`YieldReport::causes`] and the layer if it is drawn for one.
     pub draws: Vec<(usize, Option<usize>, f64)>,
 }
+
+/// A number that is drawn for every part.
+#[derive(Clone, Debug)]
+pub struct Column {
+    /// Why it varies.
+    pub cause: Cause,
+    /// The layer that it is drawn for, if for one alone.
+    pub layer: Option<String>,
+    /// The coated side, from 0, that it is drawn for, if it is drawn each run.
+    pub run: Option<usize>,
+}
+
+/// One part of a simulation.
+#[derive(Clone, Debug)]
+pub struct Part {
+    /// Its number, from 1.
+    pub number: u32,
+    /// What was drawn, by column, in the cause's unit: a share, nm, an index, rad.
+    pub draws: Vec<f64>,
+    /// The value of every requirement that counts; none where it has none.
+    pub values: Vec<Option<f64>>,
+    /// Whether it meets all of them.
+    pub met: bool,
+}
+
+/// Who is told of a simulation as it goes.
+pub trait Watch {
+    /// What every part will have: its draws and its requirements.
+    fn begin(&mut self, columns: &[Column], requirements: &[Arc<Requirement>], parts: u32);
+    /// A part, in order. Says whether to go on.
+    fn part(&mut self, part: &Part) -> bool;
+}

@@ -21,7 +21,7 @@ pub(super) fn run(arguments: &Check, global: &Global) -> Result<Status, Failure>
     for word in &arguments.deny {
         opened.settings.deny.add(word).map_err(|why| Failure::message(format!("--deny: {why}")))?;
     }
-    let report = checked(&opened, today(arguments.today)?)?;
+    let report = checked(&opened, arguments)?;
     let view = View {
         report: &report,
         shown: Shown::new(&report.sources, &opened.root.folder, &opened.here),
@@ -36,7 +36,8 @@ pub(super) fn run(arguments: &Check, global: &Global) -> Result<Status, Failure>
 }
 
 /// Reads and checks what was asked for.
-fn checked(opened: &Opened, today: Date) -> Result<Report, Failure> {
+fn checked(opened: &Opened, arguments: &Check) -> Result<Report, Failure> {
+    let today = today(arguments.today)?;
     let found = walk::find(&opened.root, &opened.settings)?;
     let working = working(found.asked.len());
     let project = load(&opened.files, &found.all);
@@ -46,8 +47,8 @@ fn checked(opened: &Opened, today: Date) -> Result<Report, Failure> {
         today,
         asked: Some(files.map(|(file, _)| file).collect()),
         remedies: true,
-        yields: true,
-        parts: None,
+        yields: !arguments.no_yield,
+        parts: arguments.parts,
         whole_project: found.whole,
     };
     let mut report = check(project, &options);

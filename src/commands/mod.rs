@@ -5,7 +5,9 @@ mod completions;
 mod explain;
 mod fmt;
 mod handbook;
+mod one;
 mod spectrum;
+mod yields;
 
 use crate::cli::{Cli, Command};
 use crate::failure::Failure;
@@ -18,6 +20,7 @@ pub(crate) fn run(cli: Cli) -> Result<Status, Failure> {
     match cli.command {
         Command::Check(arguments) => check::run(&arguments, global),
         Command::Spectrum(arguments) => spectrum::run(&arguments, global),
+        Command::Yield(arguments) => yields::run(&arguments, global),
         Command::Fmt(arguments) => fmt::run(&arguments, global),
         Command::Explain(arguments) => explain::run(&arguments),
         Command::Handbook(arguments) => handbook::run(&arguments),

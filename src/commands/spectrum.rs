@@ -1,18 +1,15 @@
 //! `overcoat spectrum`: reflectance, transmittance and absorptance of one recipe as CSV.
 
-use super::{Opened, open};
+use super::one::{self, One};
 use crate::Status;
 use crate::cli::{From, Global, Polarised, Spectrum};
 use crate::failure::Failure;
-use crate::settings::did_you_mean;
+use crate::views::Shown;
 use crate::views::amount::shortest;
-use crate::views::{self, Shown};
-use crate::{output, quantity, walk};
+use crate::{output, quantity};
 use overcoat_engine::{IndexError, OpticsError, Polarisation, Response};
-use overcoat_lang::messages::render;
 use overcoat_lang::model::{Element, Material, Recipe};
-use overcoat_lang::project::Project;
-use overcoat_lang::{engine_stack, load, nearest, range_of};
+use overcoat_lang::{engine_stack, range_of};
 use std::sync::Arc;
 
 /// Where a recipe without requirements is shown: the visible range.
@@ -30,25 +27,12 @@ pub(super) fn run(arguments: &Spectrum, global: &Global) -> Result<Status, Failu
         Some(Polarised::P) => Polarisation::P,
         None => Polarisation::Mean,
     };
-    let file = arguments.file.display().to_string();
-    if arguments.file.is_dir() {
-        return Err(Failure::message(format!("`{file}` is a folder; name one file")));
-    }
-    let opened = open(std::slice::from_ref(&arguments.file), global.root.as_deref())?;
-    let paths: Vec<String> =
-        walk::asked(&opened.root, &opened.settings, walk::Documents::Not)?.into_iter().collect();
-    let project = load(&opened.files, &paths);
-    let first = project.modules.iter().find(|module| {
-        module.file.is_some_and(|file| paths.first() == Some(&project.sources.get(file).path))
-    });
-    let recipes = first.map_or(&[][..], |module| &module.recipes);
-    // A recipe that can be evaluated is; another is told why not, as a check would.
-    let recipe = chosen(recipes, arguments.recipe.as_deref(), &file);
-    let sound = recipe.as_ref().is_ok_and(|recipe| recipe.sound());
-    if !sound && !project.findings.is_empty() {
-        return not_understood(&project, &opened, global);
-    }
-    let recipe = recipe?;
+    let Some(One { project, opened, recipe }) =
+        one::named(&arguments.file, arguments.recipe.as_deref(), global)?
+    else {
+        return Ok(Status::NotUnderstood);
+    };
+    let recipe = &*recipe;
     let no_spectrum = |why: &str| Failure::message(format!("`{}` has no spectrum: {why}", recipe.name));
     let written = recipe.stack.as_ref().ok_or_else(|| no_spectrum("it has no stack"))?;
     let band = band(range_of(written), recipe, over)?;
@@ -62,37 +46,6 @@ pub(super) fn run(arguments: &Spectrum, global: &Global) -> Result<Status, Failu
     }
     output::print(&csv(&rows))?;
     Ok(Status::Met)
-}
-
-/// Says on the standard error what keeps a file from being understood.
-fn not_understood(project: &Project, opened: &Opened, global: &Global) -> Result<Status, Failure> {
-    let diagnostics = project.findings.iter().map(|finding| render(finding, &project.sources)).collect();
-    views::complain_of(&project.sources, diagnostics, &opened.root.folder, &opened.here, global.color);
-    Ok(Status::NotUnderstood)
-}
-
-/// The recipe asked for, or the only one.
-fn chosen<'r>(
-    recipes: &'r [Arc<Recipe>],
-    name: Option<&str>,
-    file: &str,
-) -> Result<&'r Arc<Recipe>, Failure> {
-    let names = || recipes.iter().map(|recipe| recipe.name.as_str());
-    match (recipes, name) {
-        ([], _) => Err(Failure::message(format!("`{file}` holds no recipe"))),
-        ([only], None) => Ok(only),
-        (_, None) => {
-            let names: Vec<&str> = names().collect();
-            let names = names.join(", ");
-            Err(Failure::message(format!(
-                "`{file}` holds several recipes; choose one with --recipe: {names}"
-            )))
-        }
-        (_, Some(name)) => recipes.iter().find(|recipe| recipe.name == name).ok_or_else(|| {
-            let near = did_you_mean(&nearest(name, names()));
-            Failure::message(format!("`{file}` holds no recipe `{name}`{near}"))
-        }),
-    }
 }
 
 /// The band asked for, if all materials have data over it; else the band of the requirements, as far as they have.

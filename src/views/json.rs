@@ -41,7 +41,19 @@ struct RecipeEntry<'r> {
     revision: Option<&'r str>,
     met: bool,
     requirements: Vec<RequirementEntry<'r>>,
+    /// Null where no yield is asked for.
+    #[serde(rename = "yield")]
+    yields: Option<YieldEntry>,
     process: Option<ProcessEntry>,
+}
+
+/// How many parts will pass, with the interval that holds the true share with 95 % confidence.
+#[derive(Debug, Serialize)]
+struct YieldEntry {
+    value: f64,
+    low: f64,
+    high: f64,
+    parts: u32,
 }
 
 /// One requirement.
@@ -186,6 +198,12 @@ fn recipe_entry<'r>(view: &'r View<'_>, report: &'r RecipeReport) -> RecipeEntry
         revision: recipe.revision.as_deref(),
         met: report.met,
         requirements: report.requirements.iter().map(|asked| requirement_entry(view, asked)).collect(),
+        yields: report.yields.as_ref().map(|found| YieldEntry {
+            value: found.value(),
+            low: found.interval.0,
+            high: found.interval.1,
+            parts: found.parts,
+        }),
         process,
     }
 }

@@ -8,6 +8,7 @@ pub(crate) mod junit;
 mod picture;
 pub(crate) mod sarif;
 mod table;
+pub(crate) mod yields;
 
 use crate::cli::Colour;
 use crate::settings::Deny;

@@ -11,6 +11,8 @@ mod sketch;
 mod waive;
 mod yields;
 
+pub use yields::simulate;
+
 use crate::code::Family;
 use crate::diagnostic::{Diagnostic, Severity};
 use crate::finding::Finding;

@@ -36,10 +36,8 @@ pub(super) fn check(
     options: &Options,
     findings: &mut Vec<Finding>,
 ) -> (Vec<RequirementReport>, Option<YieldReport>) {
-    let spans: Vec<(f64, f64)> =
-        recipe.all_requirements().flat_map(|(requirement, _)| quantity::spans(requirement)).collect();
-    let angle = recipe.all_requirements().map(|(requirement, _)| steepest(requirement)).fold(0.0, f64::max);
-    let optics = Optics::new(stack, &spans, angle);
+    let light = Light::of(recipe);
+    let optics = Optics::new(stack, &light.spans, light.angle);
     let chamber = recipe.chamber.as_ref().map(|(chamber, _)| &**chamber);
     let mut reports = Vec::new();
     let mut missed = Vec::new();
@@ -102,7 +100,7 @@ pub(super) fn check(
         let asked = Asked { requirement: &requirement, stack, optics, engine };
         let again = |requirement: &Requirement, place: Place, thickness: f64| {
             let stack = with_thickness(stack, place, thickness);
-            let optics = Optics::new(&stack, &spans, angle).ok()??;
+            let optics = Optics::new(&stack, &light.spans, light.angle).ok()??;
             evaluate(requirement, &stack, &optics).ok()
         };
         let changed = |place: Place, thickness: f64| again(&requirement, place, thickness);
@@ -119,19 +117,29 @@ pub(super) fn check(
             fact.remedy = remedy;
         }
     }
-    let beams = Beams { spans: &spans, angle };
     let yields = all_valued.then(|| {
-        let case = yields::Case { recipe, stack, optics, chamber, counted: &counted, beams };
+        let case = yields::Case { recipe, stack, optics, chamber, counted: &counted, light: &light };
         yields::promised(&case, options, &mut reports, findings)
     });
     (reports, yields.flatten())
 }
 
 /// The light that a recipe's graded films are integrated for.
-#[derive(Clone, Copy)]
-pub(super) struct Beams<'a> {
-    pub(super) spans: &'a [(f64, f64)],
+pub(super) struct Light {
+    /// Every stretch of wavelengths, nm.
+    pub(super) spans: Vec<(f64, f64)>,
+    /// The greatest angle of incidence, rad.
     pub(super) angle: f64,
+}
+
+impl Light {
+    pub(super) fn of(recipe: &Recipe) -> Light {
+        let requirements = || recipe.all_requirements().map(|(requirement, _)| requirement);
+        Light {
+            spans: requirements().flat_map(|requirement| quantity::spans(requirement)).collect(),
+            angle: requirements().map(|requirement| steepest(requirement)).fold(0.0, f64::max),
+        }
+    }
 }
 
 /// The stack with the layers of a statement at another thickness, nm.

@@ -45,6 +45,8 @@ impl Words {
     }
 }
 
+pub use yields::{cause, size};
+
 /// Puts a finding into words.
 pub fn render(finding: &Finding, sources: &Sources) -> Diagnostic {
     let place = finding.place;

@@ -89,8 +89,8 @@ pub(super) fn sensitive(recipe: &str, sensitive: &Sensitive) -> Words {
     )
 }
 
-/// "the thickness of nitride, each run".
-fn cause(cause: &Cause) -> String {
+/// What varies and how often: "the thickness of nitride, each run".
+pub fn cause(cause: &Cause) -> String {
     let each = match cause.each {
         Each::Layer => "each layer",
         Each::Run => "each run",
@@ -107,8 +107,8 @@ fn of(cause: &Cause) -> String {
     }
 }
 
-/// "± 1.5 %", at a share of what it is.
-fn size(cause: &Cause, share: f64) -> String {
+/// How much it varies, at a share of what it does: "± 1.5 %".
+pub fn size(cause: &Cause, share: f64) -> String {
     let amount = match (cause.spread, cause.varying) {
         (Spread::Relative(of), _) => format!("{} %", significant(100.0 * share * of, 2)),
         (Spread::Absolute(nm), Varying::Thickness) => format!("{} nm", significant(share * nm, 2)),

@@ -14,6 +14,8 @@ pub(super) struct Draw {
     pub(super) kind: SpreadKind,
     /// The layer, as an element of the stack, if it is drawn for one layer alone.
     pub(super) layer: Option<usize>,
+    /// The coated side, if it is drawn each run.
+    pub(super) run: Option<usize>,
     /// What one unit of it changes: half the width of a rectangular distribution, or a standard deviation.
     effects: Vec<Effect>,
 }
@@ -186,7 +188,7 @@ impl Collecting {
     fn add(&mut self, key: Key, kind: SpreadKind, effect: Effect) {
         let draws = &mut self.draws.draws;
         let at = *self.known.entry(key).or_insert_with(|| {
-            draws.push(Draw { cause: key.0, kind, layer: key.1, effects: Vec::new() });
+            draws.push(Draw { cause: key.0, kind, layer: key.1, run: key.2, effects: Vec::new() });
             draws.len() - 1
         });
         draws[at].effects.push(effect);

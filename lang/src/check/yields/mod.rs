@@ -8,9 +8,11 @@ mod draws;
 mod interval;
 mod points;
 mod promised;
+mod simulate;
 mod tally;
 
 pub(super) use promised::{Case, promised};
+pub use simulate::simulate;
 
 use super::optics::{Optics, Trouble};
 use super::quantity;
@@ -36,15 +38,14 @@ const ACROSS: [usize; 4] = [24, 48, 96, 192];
 const FEW: f64 = 0.02;
 
 /// One part: its draws, and what each requirement comes to.
-pub(crate) struct Part {
-    pub(crate) number: u32,
-    pub(crate) units: Vec<f64>,
-    pub(crate) verdicts: Vec<Verdict>,
+pub(super) struct Judgement {
+    pub(super) number: u32,
+    pub(super) units: Vec<f64>,
+    pub(super) verdicts: Vec<Verdict>,
 }
 
 /// A recipe ready to be evaluated part by part.
 pub(super) struct Simulation<'a> {
-    recipe: &'a Recipe,
     stack: &'a Stack,
     optics: &'a Optics,
     draws: Draws,
@@ -65,14 +66,14 @@ struct Promise {
 impl<'a> Simulation<'a> {
     /// For the requirements that count, each with its value as written.
     pub(super) fn new(
-        recipe: &'a Recipe,
+        recipe: &Recipe,
         stack: &'a Stack,
         optics: &'a Optics,
         counted: &[(Arc<Requirement>, Judged)],
     ) -> Result<Simulation<'a>, Trouble> {
         let draws = Draws::of(recipe, stack);
         let seed = draws.seed(recipe, stack);
-        let mut simulation = Simulation { recipe, stack, optics, draws, seed, promises: Vec::new() };
+        let mut simulation = Simulation { stack, optics, draws, seed, promises: Vec::new() };
         for (requirement, judged) in counted {
             let promise = simulation.promise(requirement, judged)?;
             simulation.promises.push(promise);
@@ -166,7 +167,7 @@ impl<'a> Simulation<'a> {
     }
 
     /// A part: by its samples, or in full where they lie too near to a bound to tell.
-    fn judge(&self, number: u32, scales: &[f64]) -> Result<Part, Trouble> {
+    fn judge(&self, number: u32, scales: &[f64]) -> Result<Judgement, Trouble> {
         let mut units = self.units(number);
         for (unit, draw) in units.iter_mut().zip(&self.draws.draws) {
             *unit *= scales.get(draw.cause).copied().unwrap_or(1.0);
@@ -177,19 +178,24 @@ impl<'a> Simulation<'a> {
             let sure = promise.sketch.is_none() || sampled.margin.abs() > promise.doubt;
             verdicts.push(if sure { sampled } else { self.full(&promise.requirement, &units)? });
         }
-        Ok(Part { number, units, verdicts })
+        Ok(Judgement { number, units, verdicts })
     }
 
     /// Evaluates so many parts, each cause at a share of its size; hands every part on, in order.
-    fn run(&self, parts: u32, scales: &[f64], each: &mut dyn FnMut(&Part) -> bool) -> Result<(), Trouble> {
+    fn run(
+        &self,
+        parts: u32,
+        scales: &[f64],
+        each: &mut dyn FnMut(&Judgement) -> bool,
+    ) -> Result<(), Trouble> {
         let mut from = 0;
         while from < parts {
             let to = parts.min(from + BLOCK * BLOCKS);
             let starts: Vec<u32> = (from..to).step_by(BLOCK as usize).collect();
-            let block = |start: &u32| -> Result<Vec<Part>, Trouble> {
+            let block = |start: &u32| -> Result<Vec<Judgement>, Trouble> {
                 (*start..to.min(start + BLOCK)).map(|number| self.judge(number, scales)).collect()
             };
-            let blocks: Vec<Result<Vec<Part>, Trouble>> = starts.par_iter().map(block).collect();
+            let blocks: Vec<Result<Vec<Judgement>, Trouble>> = starts.par_iter().map(block).collect();
             for block in blocks {
                 for part in block? {
                     if !each(&part) {
@@ -206,7 +212,7 @@ impl<'a> Simulation<'a> {
     pub(super) fn report(
         &self,
         parts: u32,
-        each: &mut dyn FnMut(&Part) -> bool,
+        each: &mut dyn FnMut(&Judgement) -> bool,
     ) -> Result<YieldReport, Trouble> {
         // Where nothing varies one part says all.
         let parts = if self.draws.draws.is_empty() { 1 } else { parts };

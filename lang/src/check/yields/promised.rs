@@ -2,7 +2,7 @@
 
 use super::Simulation;
 use crate::check::optics::Optics;
-use crate::check::require::{self, Asked, Beams, Judged};
+use crate::check::require::{self, Asked, Judged, Light};
 use crate::check::{Options, blame};
 use crate::finding::{Driver, Finding, PromiseFact, Remedy, Sensitive, ShortYield, Verdict};
 use crate::model::{Bound, Chamber, Quantity, Recipe, Requirement, Stack};
@@ -26,7 +26,8 @@ pub(in crate::check) struct Case<'a> {
     pub(in crate::check) chamber: Option<&'a Chamber>,
     /// The requirements that count, with their values as written.
     pub(in crate::check) counted: &'a [(Arc<Requirement>, Judged)],
-    pub(in crate::check) beams: Beams<'a>,
+    /// The light that graded films are integrated for.
+    pub(in crate::check) light: &'a Light,
 }
 
 /// Evaluates every `require yield` of a recipe, fills its report and tells what is short.
@@ -147,12 +148,12 @@ fn moved(case: &Case<'_>, weakest: &RequirementYield, bound: f64) -> Option<(cra
     let asked = Asked { requirement, stack: case.stack, optics: case.optics, engine };
     let changed = |place, thickness| {
         let stack = require::with_thickness(case.stack, place, thickness);
-        let optics = Optics::new(&stack, case.beams.spans, case.beams.angle).ok()??;
+        let optics = Optics::new(&stack, &case.light.spans, case.light.angle).ok()??;
         require::evaluate(requirement, &stack, &optics).ok()
     };
     let Remedy::Thickness(aid) = blame::blame(&asked, case.chamber, judged, &changed) else { return None };
     let stack = require::with_thickness(case.stack, aid.layer.thickness_place?, aid.thickness);
-    let optics = Optics::new(&stack, case.beams.spans, case.beams.angle).ok()??;
+    let optics = Optics::new(&stack, &case.light.spans, case.light.angle).ok()??;
     let mut counted = Vec::new();
     for (requirement, _) in case.counted {
         counted.push((requirement.clone(), require::evaluate(requirement, &stack, &optics).ok()?));

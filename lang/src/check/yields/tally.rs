@@ -1,6 +1,6 @@
 //! What adds up over the parts: counts, moments, quantiles, the worst part.
 
-use super::Part;
+use super::Judgement;
 use crate::check::sketch::Verdict;
 
 /// Quantiles come from so many parts at most: the first ones, which fill the distributions evenly.
@@ -34,7 +34,7 @@ impl Tally {
         }
     }
 
-    pub(super) fn add(&mut self, part: &Part, verdict: Verdict) {
+    pub(super) fn add(&mut self, part: &Judgement, verdict: Verdict) {
         self.passed += u32::from(verdict.margin >= 0.0);
         if verdict.margin < self.worst.1.margin {
             self.worst = (part.number, verdict);
