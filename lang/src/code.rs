@@ -96,7 +96,6 @@ codes! {
     OutsideData "outside_data" Optics Error "a wavelength without optical constants",
     AbsorbingIncident "absorbing_incident" Optics Error "light that comes through an absorbing medium",
     NotConverged "not_converged" Optics Error "a number that did not settle",
-    NotEvaluated "not_evaluated" Optics Error "a promise that is not evaluated yet",
     RequirementMissed "requirement_missed" Promise Error "a requirement is not met",
     YieldShort "yield_short" Promise Error "too few parts will pass",
     EdgeMisplaced "edge_misplaced" Promise Error "an edge is not where it must be",

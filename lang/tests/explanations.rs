@@ -10,7 +10,7 @@ use overcoat_lang::syntax::ast::Date;
 use overcoat_lang::{Options, check, load};
 
 /// Codes that this version explains and can't be made to raise with a short recipe: they show no example.
-const WITHOUT_EXAMPLE: [Code; 3] = [Code::NotConverged, Code::YieldShort, Code::SensitiveLayer];
+const WITHOUT_EXAMPLE: [Code; 1] = [Code::NotConverged];
 
 /// The files of a section: fenced blocks, each but the first with its name before it.
 fn files(section: &str) -> MemoryFiles {

@@ -138,7 +138,7 @@ pub enum Verdict {
     },
     /// It is not evaluated by this version; what, as a noun phrase.
     NotEvaluated {
-        /// What: "a yield", "a stack with a graded layer".
+        /// What: "a requirement without wavelengths".
         what: String,
     },
     /// A mean or an extreme that did not settle.

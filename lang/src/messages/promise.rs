@@ -196,8 +196,8 @@ fn verdict(fact: &PromiseFact) -> Words {
         )
         .related(*defined, format!("`{name}` is defined here")),
         Verdict::NotEvaluated { what } => Words::new(
-            Code::NotEvaluated,
-            format!("in `{recipe}`, this requirement is not evaluated: this version does not work out {what}"),
+            Code::NotConverged,
+            format!("in `{recipe}`, {} has no value: {what} can't be worked out", name(requirement)),
         ),
         Verdict::NotConverged { estimate, error, wavelength: nm } => {
             let known = if error.is_finite() {
