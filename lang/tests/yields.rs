@@ -261,3 +261,24 @@ fn a_short_yield_says_what_fails_what_drives_it_and_what_helps() {
     let text = format!("{MATERIALS}{}", MIRROR.replace("sigma 1 % each layer", "± 0 % each layer"));
     assert!(report(&text).recipes[0].yields.is_some());
 }
+
+#[test]
+fn the_angle_varies_for_every_quantity() {
+    for promise in [
+        "reflected group_delay_dispersion -9 .. 9 fs^2 at 545 nm",
+        "peak_field <= 9 at 545 nm",
+        "reflectance >= 0.1 % at 545 nm",
+        "reflected colour within 90 of lab(50, 0, 0)",
+        "absorptance in film <= 1 % over 540 .. 550 nm at 0 .. 10 deg",
+        "reflectance <= 99 % at 545 nm at 20 deg cone 5 deg",
+        "mean transmittance >= 1 % over 540 .. 550 nm from exit",
+        "emittance <= 99 % over 500 .. 600 nm at 300 K hemispherical",
+    ] {
+        let text = format!(
+            "chamber c {{ angle varies ± 2 deg each part }}\nrecipe r {{ chamber c stack {{ incident air layer film 70 nm \
+             substrate crown }} require {promise} }}"
+        );
+        let (found, all) = simulated(&text, 50);
+        assert!(found.passed == 50 && all.parts.iter().all(|part| part.values[0].is_some()), "{promise}");
+    }
+}

@@ -20,3 +20,4 @@ mod spectra;
 mod stacks;
 mod tables;
 mod trade;
+mod yields;

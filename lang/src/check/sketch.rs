@@ -32,6 +32,8 @@ pub(super) struct Sketch<'a> {
     score: Score<'a>,
     /// Whether the beams are parts of one mean; else the worst of them counts.
     pooled: bool,
+    /// The polarisation asked for: at normal incidence s stands for both.
+    polarisation: Polarisation,
 }
 
 /// The samples of a stack: values, and their derivatives in the thickness of every film.
@@ -56,6 +58,7 @@ impl<'a> Sketch<'a> {
             beams: angles.iter().map(|angle| (beam(asked, *angle), wavelengths.clone())).collect(),
             score,
             pooled: false,
+            polarisation: requirement.polarisation,
         };
         let extremes = |quantity, wavelengths: Vec<f64>, scale: f64| {
             let places = wavelengths.clone();
@@ -116,12 +119,13 @@ impl<'a> Sketch<'a> {
 
     /// What the samples of a stack come to, its light tilted by so many rad.
     pub(super) fn verdict(&self, stack: &Stack, tilt: f64) -> Result<Verdict, OpticsError> {
-        let beam = |(light, wavelengths): &(Light, Vec<f64>)| {
-            let light = Light { angle_rad: (light.angle_rad + tilt).abs(), ..*light };
-            engine::values(stack, &self.quantity, &light, wavelengths)
-        };
-        let values: Result<Vec<Vec<f64>>, OpticsError> = self.beams.iter().map(beam).collect();
-        Ok(self.total(values?))
+        let mut values = Vec::with_capacity(self.beams.len());
+        for (light, wavelengths) in &self.beams {
+            for light in self.tilted(light, tilt) {
+                values.push(engine::values(stack, &self.quantity, &light, wavelengths)?);
+            }
+        }
+        Ok(self.total(values))
     }
 
     /// The samples of a stack.
@@ -154,6 +158,22 @@ impl<'a> Sketch<'a> {
         };
         let beams = near.0.iter().zip(&far.0);
         self.total(beams.map(|(near, far)| near.iter().zip(far).map(one).collect()).collect()).margin
+    }
+
+    /// A beam as it meets a tilted part. The hemisphere is all there is; away from normal incidence s and p have phases of their
+    /// own.
+    fn tilted(&self, light: &Light, tilt: f64) -> Vec<Light> {
+        if tilt == 0.0 || self.pooled {
+            return vec![*light];
+        }
+        let angle_rad = (light.angle_rad + tilt).abs();
+        let light = |polarisation| Light { polarisation, angle_rad, ..*light };
+        match (&self.quantity, self.polarisation) {
+            (engine::Quantity::Phase(..), Polarisation::Mean) => {
+                [Polarisation::S, Polarisation::P].map(light).to_vec()
+            }
+            _ => vec![light(self.polarisation)],
+        }
     }
 
     /// What the values of all beams come to.
@@ -344,7 +364,13 @@ fn mean<'a>(
         let sum: f64 = values.iter().zip(&weights).map(|(value, weight)| value * weight).sum();
         bound.of(offset + factor * sum / whole)
     };
-    Some(Sketch { quantity, beams, score: Box::new(score), pooled: requirement.hemispherical })
+    Some(Sketch {
+        quantity,
+        beams,
+        score: Box::new(score),
+        pooled: requirement.hemispherical,
+        polarisation: requirement.polarisation,
+    })
 }
 
 /// The weight of each step over the bands, whole.

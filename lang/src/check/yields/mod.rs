@@ -18,7 +18,7 @@ use super::optics::{Optics, Trouble};
 use super::quantity;
 use super::require::{Asked, Judged};
 use super::sketch::{Sketch, Verdict};
-use crate::model::{Angles, Recipe, Requirement, Stack};
+use crate::model::{Angles, Beam, Recipe, Requirement, Stack};
 use crate::report::{RequirementYield, WorstPart, YieldReport};
 use crate::syntax::ast::SpreadKind;
 use draws::Draws;
@@ -139,10 +139,17 @@ impl<'a> Simulation<'a> {
     /// A requirement of a part, evaluated as that of the recipe itself is.
     fn full(&self, requirement: &Requirement, units: &[f64]) -> Result<Verdict, Trouble> {
         let (engine, tilt) = self.part(requirement, units)?;
-        let tilted = tilted(requirement, tilt);
-        let asked = Asked { requirement: &tilted, stack: self.stack, optics: self.optics, engine: &engine };
-        let judged = quantity::judge(&asked)?;
-        Ok(Verdict { margin: judged.margin, value: judged.value.unwrap_or(f64::NAN) })
+        let mut worst: Option<Verdict> = None;
+        for tilted in tilted(requirement, tilt) {
+            let asked =
+                Asked { requirement: &tilted, stack: self.stack, optics: self.optics, engine: &engine };
+            let judged = quantity::judge(&asked)?;
+            let found = Verdict { margin: judged.margin, value: judged.value.unwrap_or(f64::NAN) };
+            worst =
+                Some(worst.map_or(found, |worst| if found.margin < worst.margin { found } else { worst }));
+        }
+        // There is always one.
+        Ok(worst.unwrap_or(Verdict { margin: f64::NEG_INFINITY, value: f64::NAN }))
     }
 
     fn part(
@@ -298,14 +305,20 @@ impl<'a> Simulation<'a> {
     }
 }
 
-/// A requirement under light tilted by so many rad.
-fn tilted(requirement: &Requirement, tilt: f64) -> Requirement {
+/// A requirement under light tilted by so many rad: away from normal incidence s and p have phases of their own.
+fn tilted(requirement: &Requirement, tilt: f64) -> Vec<Requirement> {
     let mut tilted = requirement.clone();
-    if tilt != 0.0 && !requirement.hemispherical {
-        tilted.angles = match &requirement.angles {
-            Angles::List(angles) => Angles::List(angles.iter().map(|angle| (angle + tilt).abs()).collect()),
-            Angles::Range(from, to) => Angles::Range((from + tilt).max(0.0), (to + tilt).max(0.0)),
-        };
+    if tilt == 0.0 || requirement.hemispherical {
+        return vec![tilted];
     }
-    tilted
+    tilted.angles = match &requirement.angles {
+        Angles::List(angles) => Angles::List(angles.iter().map(|angle| (angle + tilt).abs()).collect()),
+        Angles::Range(from, to) => Angles::Range((from + tilt).max(0.0), (to + tilt).max(0.0)),
+    };
+    if quantity::phase::is_phase(&requirement.quantity) && requirement.polarisation == Beam::Mean {
+        return [Beam::S, Beam::P]
+            .map(|polarisation| Requirement { polarisation, ..tilted.clone() })
+            .to_vec();
+    }
+    vec![tilted]
 }
