@@ -75,6 +75,11 @@ fn promise(found: &YieldReport, one: &RequirementYield, paint: Paint) -> String 
             size(of, 1.0)
         );
     }
+    let rest = 1.0 - one.shares.iter().sum::<f64>();
+    if rest > 0.05 {
+        let rest = percent((1e2 * rest).round() / 1e2);
+        let _ = writeln!(text, "    {rest:>5} is where the value bends, or where draws act together");
+    }
     let worst = &one.worst;
     if worst.value.is_finite() {
         let _ = writeln!(text, "    the worst part is number {} with {}", worst.number, value(worst.value));

@@ -15,3 +15,4 @@ mod project;
 mod reference;
 mod settings;
 mod spectrum;
+mod yields;
