@@ -117,11 +117,9 @@ pub(super) fn check(
             fact.remedy = remedy;
         }
     }
-    let yields = all_valued.then(|| {
-        let case = yields::Case { recipe, stack, optics, chamber, counted: &counted, light: &light };
-        yields::promised(&case, options, &mut reports, findings)
-    });
-    (reports, yields.flatten())
+    let case = yields::Case { recipe, stack, optics, chamber, counted: &counted, all_valued, light: &light };
+    let yields = yields::promised(&case, options, &mut reports, findings);
+    (reports, yields)
 }
 
 /// The light that a recipe's graded films are integrated for.

@@ -1,7 +1,7 @@
 //! `require yield`: the share of parts that pass against its bound, and what would bring it there.
 
 use super::Simulation;
-use crate::check::optics::Optics;
+use crate::check::optics::{Optics, Trouble};
 use crate::check::require::{self, Asked, Judged, Light};
 use crate::check::{Options, blame};
 use crate::finding::{Driver, Finding, PromiseFact, Remedy, Sensitive, ShortYield, Verdict};
@@ -26,6 +26,8 @@ pub(in crate::check) struct Case<'a> {
     pub(in crate::check) chamber: Option<&'a Chamber>,
     /// The requirements that count, with their values as written.
     pub(in crate::check) counted: &'a [(Arc<Requirement>, Judged)],
+    /// Whether every requirement that counts has a value.
+    pub(in crate::check) all_valued: bool,
     /// The light that graded films are integrated for.
     pub(in crate::check) light: &'a Light,
 }
@@ -47,13 +49,34 @@ pub(in crate::check) fn promised(
         asked.iter().for_each(|at| reports[*at].met = true);
         return None;
     }
-    let simulation = Simulation::new(case.recipe, case.stack, case.optics, case.counted).ok()?;
+    let simulation = if case.all_valued {
+        Simulation::new(case.recipe, case.stack, case.optics, case.counted)
+    } else {
+        let what = "a requirement that it counts".to_owned();
+        Err(Trouble::Verdict(Verdict::NotEvaluated { what }))
+    };
     let mut told: Option<YieldReport> = None;
     for at in asked {
         let report = &mut reports[at];
         let requirement = report.requirement.clone();
+        let asked_at = report.asked_at;
+        let tell = |verdict| {
+            let (requirement, recipe) = (requirement.clone(), case.recipe.name.clone());
+            PromiseFact { requirement, recipe, asked_at, verdict, remedy: Remedy::NotSought }
+        };
         let parts = options.parts.or(requirement.parts).unwrap_or(PARTS);
-        let found = simulation.report(parts, &mut |_| true).ok()?;
+        let found = simulation.as_ref().map_err(Trouble::clone);
+        let found = match found.and_then(|simulation| simulation.report(parts, &mut |_| true)) {
+            Ok(found) => found,
+            Err(Trouble::Fact(fact)) => {
+                findings.push(Finding { fact: *fact, place: requirement.place });
+                continue;
+            }
+            Err(Trouble::Verdict(verdict)) => {
+                findings.push(Finding::new(tell(verdict), requirement.place));
+                continue;
+            }
+        };
         let (min, max) = match requirement.bound {
             Bound::Range { min, max } => (min, max),
             _ => (None, None),
@@ -64,13 +87,9 @@ pub(in crate::check) fn promised(
         report.value = Some(found.value());
         (report.min, report.max) = (min, max);
         report.margin = Some(margin);
-        let tell = |verdict| {
-            let (requirement, recipe) = (requirement.clone(), case.recipe.name.clone());
-            let asked_at = report.asked_at;
-            PromiseFact { requirement, recipe, asked_at, verdict, remedy: Remedy::NotSought }
-        };
         if margin < 0.0 {
-            let short = short(case, &simulation, &found, min.unwrap_or(0.0), options.remedies);
+            let Ok(simulation) = &simulation else { continue };
+            let short = short(case, simulation, &found, min.unwrap_or(0.0), options.remedies);
             findings.push(Finding::new(tell(Verdict::YieldShort(Box::new(short))), requirement.place));
         } else if let Some(min) = min.filter(|min| *min > 0.0 && *min < 1.0) {
             // As for any share, the nearer of 0 and 1 is the room there is.
