@@ -161,8 +161,19 @@ pub struct WorstPart {
     pub number: u32,
     /// Its value.
     pub value: f64,
-    /// What was drawn for it, in the cause's unit, with the cause's place in [`YieldReport::causes`] and the layer if it is drawn for one.
-    pub draws: Vec<(usize, Option<usize>, f64)>,
+    /// What was drawn for it.
+    pub draws: Vec<WorstDraw>,
+}
+
+/// One draw of such a part.
+#[derive(Clone, Debug)]
+pub struct WorstDraw {
+    /// The place of its cause in [`YieldReport::causes`].
+    pub cause: usize,
+    /// What the layer is called that it is drawn for, if for one alone.
+    pub layer: Option<String>,
+    /// In half widths of a rectangular distribution, or in standard deviations.
+    pub units: f64,
 }
 
 /// A number that is drawn for every part.

@@ -4,8 +4,8 @@ use super::amount::{self, Scale};
 use super::picture::harmless;
 use super::{View, called};
 use anstyle::{AnsiColor, Style};
-use overcoat_lang::model::{Beam, Bound};
-use overcoat_lang::report::{RecipeReport, RequirementReport};
+use overcoat_lang::model::{Beam, Bound, Quantity};
+use overcoat_lang::report::{RecipeReport, RequirementReport, YieldReport};
 use std::fmt::Write;
 
 /// Styles for verdicts; plain ones where nothing is coloured.
@@ -56,7 +56,7 @@ pub(super) fn draw(view: &View<'_>, report: &RecipeReport, paint: Paint) -> Stri
         paint.verdict(report.met, verdict)
     );
     for requirement in &report.requirements {
-        text.push_str(&row(requirement, paint));
+        text.push_str(&row(requirement, report.yields.as_ref(), paint));
     }
     if report.requirements.is_empty() {
         text.push_str("  no requirements\n");
@@ -71,7 +71,7 @@ pub(super) fn draw(view: &View<'_>, report: &RecipeReport, paint: Paint) -> Stri
     text
 }
 
-fn row(report: &RequirementReport, paint: Paint) -> String {
+fn row(report: &RequirementReport, yields: Option<&YieldReport>, paint: Paint) -> String {
     let requirement = &report.requirement;
     let verdict = paint.verdict(report.met, if report.met { "met   " } else { "missed" });
     let mut text = format!("  {verdict}   {}\n", harmless(&requirement.text));
@@ -79,7 +79,17 @@ fn row(report: &RequirementReport, paint: Paint) -> String {
     match report.value {
         Some(value) => {
             let shown = scale.value(value, &[report.min, report.max]);
-            let _ = writeln!(text, "           {shown}{}{}", place(report), margin(report, scale));
+            let of = match yields.filter(|_| matches!(requirement.quantity, Quantity::Yield)) {
+                Some(found) if found.causes.is_empty() => ", for nothing varies".to_owned(),
+                Some(found) => format!(
+                    " of {} parts ({} to {})",
+                    found.parts,
+                    scale.value(found.interval.0, &[]),
+                    scale.value(found.interval.1, &[])
+                ),
+                None => String::new(),
+            };
+            let _ = writeln!(text, "           {shown}{of}{}{}", place(report), margin(report, scale));
         }
         None => text.push_str("           not evaluated\n"),
     }

@@ -14,6 +14,9 @@ use std::sync::Arc;
 /// A cause below this share of the variance is left out of the table.
 const SMALL: f64 = 0.01;
 
+/// So many of the worst part's draws are told.
+const TOLD: usize = 3;
+
 /// Whether the yield is below what the recipe promises; a recipe that promises none asks for every part.
 pub(crate) fn short(recipe: &Recipe, found: &YieldReport) -> bool {
     let promised = recipe.all_requirements().filter_map(|(requirement, _)| match requirement.bound {
@@ -82,12 +85,56 @@ fn promise(found: &YieldReport, one: &RequirementYield, paint: Paint) -> String 
     }
     let worst = &one.worst;
     if worst.value.is_finite() {
-        let _ = writeln!(text, "    the worst part is number {} with {}", worst.number, value(worst.value));
+        let drawn = worst_draws(found, one);
+        let _ = writeln!(
+            text,
+            "    the worst part is number {} with {}{drawn}",
+            worst.number,
+            value(worst.value)
+        );
     }
     if let Some(corner) = one.corner {
         let _ = writeln!(text, "    with every ± at its worst end it is {}", value(corner));
     }
     text
+}
+
+/// The draws of the worst part that count most, by their size and by how much the value depends on their cause.
+fn worst_draws(found: &YieldReport, one: &RequirementYield) -> String {
+    let mut draws: Vec<(f64, String)> = one
+        .worst
+        .draws
+        .iter()
+        .map(|draw| {
+            let cause = &found.causes[draw.cause];
+            let of = draw.layer.clone().unwrap_or_else(|| cause.of.clone());
+            let what = match cause.varying {
+                Varying::Thickness => of,
+                Varying::Index => format!("index of {of}"),
+                Varying::Angle => "angle".to_owned(),
+            };
+            (
+                one.shares[draw.cause] * draw.units.powi(2),
+                format!("{} {}", harmless(&what), amount(cause, draw.units)),
+            )
+        })
+        .collect();
+    draws.sort_by(|a, b| b.0.total_cmp(&a.0));
+    let told: Vec<String> =
+        draws.into_iter().filter(|draw| draw.0 > 0.0).take(TOLD).map(|draw| draw.1).collect();
+    if told.is_empty() { String::new() } else { format!(", mostly by {}", told.join(", ")) }
+}
+
+/// A draw with its sign and unit.
+fn amount(cause: &Cause, units: f64) -> String {
+    let (size, unit) = match (cause.spread, cause.varying) {
+        (Spread::Relative(share), _) => (100.0 * share, " %"),
+        (Spread::Absolute(nm), Varying::Thickness) => (nm, " nm"),
+        (Spread::Absolute(by), Varying::Index) => (by, ""),
+        (Spread::Absolute(radians), Varying::Angle) => (radians.to_degrees(), " deg"),
+    };
+    let amount = trimmed(significant((size * units).abs(), 2));
+    format!("{}{amount}{unit}", if units < 0.0 { "−" } else { "+" })
 }
 
 /// The first row: names of columns with their units.
@@ -180,7 +227,8 @@ pub(crate) fn json(recipe: &Recipe, found: &YieldReport) -> Result<String, serde
         Spread::Absolute(size) | Spread::Relative(size) => size,
     };
     let requirement = |one: &'_ RequirementYield| -> WorstEntry {
-        let draws = one.worst.draws.iter().map(|(cause, _, unit)| (*cause, unit * size_of(*cause))).collect();
+        let draws =
+            one.worst.draws.iter().map(|draw| (draw.cause, draw.units * size_of(draw.cause))).collect();
         let value = Some(one.worst.value).filter(|value| value.is_finite());
         WorstEntry { part: one.worst.number, value, draws }
     };

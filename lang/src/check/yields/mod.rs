@@ -19,7 +19,7 @@ use super::quantity;
 use super::require::{Asked, Judged};
 use super::sketch::{Sketch, Verdict};
 use crate::model::{Angles, Beam, Recipe, Requirement, Stack};
-use crate::report::{RequirementYield, WorstPart, YieldReport};
+use crate::report::{RequirementYield, WorstDraw, WorstPart, YieldReport};
 use crate::syntax::ast::SpreadKind;
 use draws::Draws;
 use rayon::prelude::*;
@@ -266,7 +266,12 @@ impl<'a> Simulation<'a> {
             }
         }
         let drawn = |units: &[f64]| {
-            draws.iter().zip(units).map(|(draw, unit)| (draw.cause, draw.layer, *unit)).collect()
+            let one = |(draw, units): (&draws::Draw, &f64)| WorstDraw {
+                cause: draw.cause,
+                layer: draw.layer.and_then(|element| self.stack.layer(element)).map(|layer| layer.call()),
+                units: *units,
+            };
+            draws.iter().zip(units).map(one).collect()
         };
         let rectangular = draws.iter().any(|draw| draw.kind == SpreadKind::Rectangular);
         let corner = if rectangular {
