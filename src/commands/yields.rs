@@ -7,8 +7,8 @@ use crate::failure::Failure;
 use crate::output;
 use crate::views::{Shown, yields};
 use indicatif::{ProgressBar, ProgressStyle};
-use overcoat_lang::model::Requirement;
-use overcoat_lang::report::{Column, Part, Watch};
+use overcoat_lang::model::{Recipe, Requirement};
+use overcoat_lang::report::{Column, Part, Watch, YieldReport};
 use overcoat_lang::simulate;
 use std::io::{IsTerminal, Write};
 use std::sync::Arc;
@@ -32,7 +32,7 @@ pub(super) fn run(arguments: &Yield, global: &Global) -> Result<Status, Failure>
             return Err(error.into());
         }
         rows.out.finish(arguments)?;
-        return Ok(if found.passed == found.parts { Status::Met } else { Status::Missed });
+        return Ok(status(&recipe, &found));
     }
     let mut bar = Bar::hidden();
     let found = simulate(&recipe, arguments.parts, &mut bar).map_err(no_yield)?;
@@ -52,7 +52,12 @@ pub(super) fn run(arguments: &Yield, global: &Global) -> Result<Status, Failure>
         Some(path) => output::replace(path, &text)?,
         None => output::print(&text)?,
     }
-    Ok(if yields::short(&recipe, &found) { Status::Missed } else { Status::Met })
+    Ok(status(&recipe, &found))
+}
+
+/// Whether the yield is what the recipe promises, in whatever format it is told.
+fn status(recipe: &Recipe, found: &YieldReport) -> Status {
+    if yields::short(recipe, found) { Status::Missed } else { Status::Met }
 }
 
 /// Whether it was stopped from the keyboard.

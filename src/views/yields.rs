@@ -17,7 +17,7 @@ const SMALL: f64 = 0.01;
 /// So many of the worst part's draws are told.
 const TOLD: usize = 3;
 
-/// Whether the yield is below what the recipe promises; a recipe that promises none asks for every part.
+/// Whether the yield is below what the recipe promises, if it promises one.
 pub(crate) fn short(recipe: &Recipe, found: &YieldReport) -> bool {
     let promised = recipe.all_requirements().filter_map(|(requirement, _)| match requirement.bound {
         Bound::Range { min, .. } if matches!(requirement.quantity, Quantity::Yield) => min,
