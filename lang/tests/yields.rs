@@ -282,3 +282,25 @@ fn the_angle_varies_for_every_quantity() {
         assert!(found.passed == 50 && all.parts.iter().all(|part| part.values[0].is_some()), "{promise}");
     }
 }
+
+#[test]
+fn a_layer_that_a_promise_hangs_on_is_told_and_can_be_waived() {
+    let recipe = |waiver: &str| {
+        format!(
+            "{MATERIALS}material high {{ source \"x\" index 2.35 }}\n\
+             chamber c {{ deposit high {{ rate 1 nm/s thickness varies sigma 1 % each layer }}\n\
+             deposit low {{ rate 1 nm/s thickness varies sigma 0.1 % each layer }} }}\n\
+             recipe r {{ chamber c stack {{ incident air layer low 88 nm layer high 110 nm as main layer low 35 nm \
+             layer high 13 nm substrate crown }} require reflectance <= 0.95 % over 450 .. 640 nm require yield >= 5 % {waiver} }}\n"
+        )
+    };
+    let told = |text: &str| {
+        let report = report(text);
+        report.diagnostics.into_iter().find(|one| one.code.slug() == "sensitive_layer")
+    };
+    let plain = told(&recipe("")).unwrap();
+    assert!(plain.message.contains("main alone brings about") && plain.waived.is_none(), "{}", plain.message);
+    let waived =
+        told(&recipe("waive sensitive_layer on main because \"its own witness in every run\"")).unwrap();
+    assert!(waived.waived.is_some());
+}

@@ -2,7 +2,7 @@
 
 use crate::code::Code;
 use crate::diagnostic::{Diagnostic, Waived};
-use crate::finding::{Fact, Finding, HouseFact, LayerName, OpticsFact, Trouble};
+use crate::finding::{Fact, Finding, HouseFact, LayerName, OpticsFact, Trouble, Verdict};
 use crate::messages::render;
 use crate::model::{LimitKind, Recipe, Waiver};
 use crate::source::Sources;
@@ -132,6 +132,10 @@ fn about(fact: &Fact) -> Vec<String> {
             }
         },
         Fact::Promise(fact) => {
+            if let Verdict::Sensitive(sensitive) = &fact.verdict {
+                // The layer's name, or what it is made of.
+                return sensitive.layer.split(" (").next().map(str::to_owned).into_iter().collect();
+            }
             let words = fact.requirement.text.split_whitespace();
             words
                 .take_while(|word| word.starts_with(|first: char| first.is_alphabetic()))
