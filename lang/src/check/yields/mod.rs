@@ -280,7 +280,8 @@ impl<'a> Simulation<'a> {
                 SpreadKind::Normal => 0.0,
             });
             let ends: Vec<f64> = ends.collect();
-            Some(self.full(&promise.requirement, &ends)?.value).filter(|value| value.is_finite())
+            let found = self.full(&promise.requirement, &ends).ok();
+            found.map(|found| found.value).filter(|value| value.is_finite())
         } else {
             None
         };
