@@ -30,6 +30,7 @@ SCRIPTS = [
     "graded",
     "facets",
     "promises",
+    "parts",
     "yields",
 ]
 
