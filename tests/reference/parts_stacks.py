@@ -108,6 +108,11 @@ STACKS = {
         layer("nitride", 45, "buffer"), layer("film_cell", 420, "absorber"), layer("conductor", 70),
         layer("metal", 160, "mirror"), body("substrate", "glass", 2, "mm"),
     ], "air", False),
+    # The mirror is behind the piece: much of the light passes the layers twice, once from each side.
+    "twice": ([
+        body("slab", "glass", 3, "mm"), layer("conductor", 210, "front_contact"), layer("film_cell", 55, "absorber"),
+        layer("conductor", 150, "rear_contact"), body("substrate", "glass", 4, "mm"), layer("metal", 85),
+    ], "air", False),
     "covered": ([
         layer("oxide", 98), body("slab", "glass", 4, "mm"), layer("nitride", 61), layer("crystal", 24, "seed"),
         layer("oxide", 9),
