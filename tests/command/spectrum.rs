@@ -8,8 +8,8 @@ fn rows(text: &str) -> Vec<Vec<f64>> {
     lines.map(|line| line.split(',').map(|field| field.parse().unwrap()).collect()).collect()
 }
 
-/// One quarter-wave of index n₁ on n₂ reflects ((n₂ − n₁²)/(n₂ + n₁²))² at its wavelength (H. A. Macleod, Thin-Film
-/// Optical Filters, 4th edition, CRC Press 2010, chapter 4; the formula is from memory).
+/// One quarter-wave of index n₁ on n₂ reflects ((n₂ − n₁²)/(n₂ + n₁²))² at its wavelength (M. Born, E. Wolf, Principles of
+/// Optics, 1.6; the formula is from memory).
 #[test]
 fn a_quarter_wave_reflects_what_the_formula_says() {
     let thickness = 550.0 / 4.0 / 1.38;
