@@ -158,3 +158,16 @@ fn a_film_on_a_crest_is_taken_over_the_hill() {
     let stack = "incident air  layer titania 58.5 nm  substrate crown";
     mends(stack, "require reflectance <= 4.3 % at 550 nm", "titania (layer 1) 58.5 → 11");
 }
+
+#[test]
+fn a_film_too_thick_to_follow_is_told_without_a_made_up_figure() {
+    // Millimetres written for nanometres.
+    let stack = "incident air  layer nitride 51.5 mm  substrate crown";
+    let (error, _) = missed(stack, "require reflectance <= 5 % over 400 .. 1100 nm");
+    assert_eq!(error.code.slug(), "not_converged");
+    assert!(
+        error.message.contains("look for a thickness") && !error.message.contains("give or take"),
+        "{}",
+        error.message
+    );
+}

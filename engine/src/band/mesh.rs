@@ -134,7 +134,7 @@ impl Builder<'_> {
             if samples.len() + open.len() + pieces > MOST {
                 return Err(OpticsError::NotConverged {
                     estimate: 0.0,
-                    error: 1.0,
+                    error: f64::INFINITY,
                     wavelength_nm: self.wavelength(from),
                 });
             }
@@ -272,7 +272,7 @@ impl Builder<'_> {
         }
         if merged.len() > MOST {
             let wavelength_nm = merged.last().map_or(0.0, |sample| self.wavelength(sample.x));
-            return Err(OpticsError::NotConverged { estimate: 0.0, error: 1.0, wavelength_nm });
+            return Err(OpticsError::NotConverged { estimate: 0.0, error: f64::INFINITY, wavelength_nm });
         }
         Ok(merged)
     }

@@ -203,7 +203,7 @@ fn verdict(fact: &PromiseFact) -> Words {
             let known = if error.is_finite() {
                 format!("it is {} give or take {}", significant(*estimate, 6), significant(*error, 2))
             } else {
-                "it has no finite value".to_owned()
+                "no value can be told there; look for a thickness, an index or a k that can't be meant".to_owned()
             };
             Words::new(
                 Code::NotConverged,
