@@ -22,6 +22,8 @@ mod error;
 mod facets;
 mod field;
 mod graded;
+mod kernel;
+mod lanes;
 mod matrix;
 mod number;
 mod phase;

@@ -39,10 +39,10 @@ struct Mixture {
 
 /// The mean of two media with the share of the first, which may lie beyond 1.
 #[derive(Clone, Copy, Debug)]
-struct Mean {
-    one: usize,
-    share: f64,
-    other: usize,
+pub(crate) struct Mean {
+    pub(crate) one: usize,
+    pub(crate) share: f64,
+    pub(crate) other: usize,
     /// The share of the back material at the two faces of the layer that it stands for.
     faces: (f64, f64),
 }
@@ -52,12 +52,12 @@ struct Mean {
 pub(crate) struct Plan {
     pub(crate) materials: Vec<Index>,
     mixtures: Vec<Mixture>,
-    means: Vec<Mean>,
+    pub(crate) means: Vec<Mean>,
     pub(crate) coatings: Vec<Vec<Layer>>,
     pub(crate) bodies: Vec<Layer>,
     pub(crate) exit: usize,
     /// The facets of the exit half-space that light meets, where it is textured.
-    bounces: Option<Vec<Bounce>>,
+    pub(crate) bounces: Option<Vec<Bounce>>,
 }
 
 impl Plan {
@@ -179,6 +179,19 @@ impl Plan {
     /// The stack at one wavelength and angle.
     pub(crate) fn at(&self, wavelength_nm: f64, angle_rad: f64) -> Result<Tilted<'_>, OpticsError> {
         self.tilted(&self.indices(wavelength_nm)?, wavelength_nm, angle_rad)
+    }
+
+    /// How many materials and mixtures there are: media with an index of their own.
+    pub(crate) fn pure(&self) -> usize {
+        self.materials.len() + self.mixtures.len()
+    }
+
+    /// Which of them are half-spaces or thick bodies.
+    pub(crate) fn ends(&self) -> Vec<bool> {
+        let mut ends = vec![false; self.pure()];
+        let bodies = self.bodies.iter().map(|body| body.material);
+        bodies.chain([0, self.exit]).for_each(|medium| ends[medium] = true);
+        ends
     }
 
     /// How many films a coating has.

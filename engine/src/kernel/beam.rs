@@ -1,0 +1,80 @@
+//! A stack under one beam at many points, with everything prepared that its thicknesses have no part in.
+
+use std::f64::consts::FRAC_PI_2;
+
+use pulp::Arch;
+
+use super::{Channel, Media, Outcome, Points, Program, Spectrum, Tilt, Within};
+use crate::error::OpticsError;
+use crate::plan::Plan;
+
+/// The media of a stack under one beam.
+#[derive(Clone, Debug)]
+pub(crate) struct Beam {
+    media: Media,
+    facets: Vec<Media>,
+}
+
+impl Beam {
+    /// # Errors
+    /// An angle that is not from 0 to below 90°; one other than 0 where the exit is textured.
+    pub(crate) fn new(plan: &Plan, points: &Points, angles_rad: &[f64]) -> Result<Beam, OpticsError> {
+        for &angle_rad in angles_rad {
+            if !(0.0..FRAC_PI_2).contains(&angle_rad) {
+                return Err(OpticsError::Angle { angle_rad });
+            }
+            if plan.is_textured() && angle_rad > 0.0 {
+                return Err(OpticsError::Textured { angle_rad });
+            }
+        }
+        let media = Media::new(plan, points, Tilt { from: 0, incident: true, angles_rad });
+        let from = plan.bodies.last().map_or(0, |body| body.material);
+        let facet = |angle_rad: f64| {
+            Media::new(plan, points, Tilt { from, incident: false, angles_rad: &[angle_rad] })
+        };
+        let facets = plan.bounces.iter().flatten().map(|bounce| facet(bounce.angle_rad)).collect();
+        Ok(Beam { media, facets })
+    }
+
+    /// What the stack does to light of the given polarisations (0 is s, 1 is p), by block.
+    pub(crate) fn outcomes(
+        &self,
+        program: &Program,
+        points: &Points,
+        modes: &[usize],
+        within: Option<&Within>,
+    ) -> Vec<[Outcome; 2]> {
+        let mut outcomes = vec![[Outcome::ZERO; 2]; points.blocks()];
+        let (media, facets) = (&self.media, &self.facets[..]);
+        let outcomes_to = &mut outcomes[..];
+        let run =
+            Spectrum { program, points, media, facets, modes, within, outcomes: outcomes_to, channels: None };
+        Arch::new().dispatch(run);
+        outcomes
+    }
+
+    /// The same, with N and D of every coating: so many a block, by polarisation and coating, then those of the facets.
+    pub(crate) fn channels(
+        &self,
+        program: &Program,
+        points: &Points,
+        modes: &[usize],
+        within: Option<&Within>,
+    ) -> (Vec<[Outcome; 2]>, Vec<Channel>) {
+        let mut outcomes = vec![[Outcome::ZERO; 2]; points.blocks()];
+        let mut channels = vec![Channel::ZERO; points.blocks() * program.channels(modes.len())];
+        let (media, facets) = (&self.media, &self.facets[..]);
+        let run = Spectrum {
+            program,
+            points,
+            media,
+            facets,
+            modes,
+            within,
+            outcomes: &mut outcomes,
+            channels: Some(&mut channels),
+        };
+        Arch::new().dispatch(run);
+        (outcomes, channels)
+    }
+}

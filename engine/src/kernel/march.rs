@@ -1,0 +1,262 @@
+//! The tangential fields (B, C) carried through the films, from the far side towards the light.
+//!
+//! A film's matrix is [[cos δ, −i sin δ/η], [−i η sin δ, cos δ]] (F. Abelès, Ann. Phys. (Paris) 5, 596 (1950)). Sine and cosine
+//! come up to a common factor, whose square is kept in `norm` and whose sign in the parity of `turned`; what absorption takes is
+//! kept out of the fields, in `halved`. So the fields themselves stay numbers through a thousand films or a millimetre of metal.
+
+use pulp::{Simd, bytemuck};
+
+use super::media::{Kind, Slab, Wave};
+use crate::lanes::{Complex, Lanes, decay, half_turn, power_of_two};
+use crate::plan::Layer;
+
+/// After how many films the fields' size is looked at. Between two looks it changes by less than 10^64.
+const LOOK: usize = 16;
+/// Outside of which the fields are brought back to a size of 1.
+const SMALL: f64 = 1e-60;
+const LARGE: f64 = 1e60;
+
+/// Electric and magnetic field.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct Pair<S: Simd> {
+    pub(crate) b: Complex<S>,
+    pub(crate) c: Complex<S>,
+}
+
+impl<S: Simd> Pair<S> {
+    #[inline(always)]
+    pub(crate) fn of_wave(simd: S, wave: &Wave, lane: usize) -> Self {
+        Pair { b: wave.b.load(simd, lane), c: wave.c.load(simd, lane) }
+    }
+
+    /// The mean normal power flow Re(B* C), in the fields' own scale.
+    #[inline(always)]
+    pub(crate) fn flux(self) -> Lanes<S> {
+        self.b.dot(self.c)
+    }
+
+    /// Through a film in which all is real: `over` is sin δ/η, `times` is η sin δ.
+    #[inline(always)]
+    fn clear(self, cosine: Lanes<S>, over: Lanes<S>, times: Lanes<S>) -> Self {
+        let Pair { b, c } = self;
+        Pair {
+            b: Complex {
+                re: over.mul_add(c.im, cosine * b.re),
+                im: over.neg_mul_add(c.re, cosine * b.im),
+            },
+            c: Complex {
+                re: times.mul_add(b.im, cosine * c.re),
+                im: times.neg_mul_add(b.re, cosine * c.im),
+            },
+        }
+    }
+
+    /// Through any film: `over` is −i sin δ/η, `times` is −i η sin δ.
+    #[inline(always)]
+    fn dim(self, cosine: Complex<S>, over: Complex<S>, times: Complex<S>) -> Self {
+        let Pair { b, c } = self;
+        Pair { b: over.mul_add(c, cosine * b), c: times.mul_add(b, cosine * c) }
+    }
+}
+
+/// The fields at one face for `P` polarisations. The true ones are these times 2^(halved/2)/√norm, and times −1 where `turned`
+/// is odd: s and p have these in common.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct Fields<S: Simd, const P: usize> {
+    pub(crate) pairs: [Pair<S>; P],
+    pub(crate) norm: Lanes<S>,
+    pub(crate) turned: Lanes<S>,
+    pub(crate) halved: Lanes<S>,
+}
+
+/// The sine and cosine of a film that absorbs, up to what is kept beside the fields.
+#[derive(Clone, Copy, Debug)]
+struct Turn<S: Simd> {
+    cosine: Complex<S>,
+    /// −i sin δ.
+    lift: Complex<S>,
+    norm: Lanes<S>,
+    whole: Lanes<S>,
+    halvings: Lanes<S>,
+}
+
+impl<S: Simd> Turn<S> {
+    /// With δ = x + iy: cos δ = cos x cosh y − i sin x sinh y, and −i sin δ = cos x sinh y − i sin x cosh y.
+    #[inline(always)]
+    fn new(simd: S, slab: &Slab, lane: usize, thickness: Lanes<S>) -> Self {
+        let (sine, cosine, whole) = half_turn(Lanes::load(simd, &slab.turns.0[lane..]) * thickness);
+        let halvings = Lanes::load(simd, &slab.halvings.0[lane..]) * thickness;
+        // Both hyperbolic functions over e^y, whose square is 2^halvings.
+        let (left, lost) = decay(halvings);
+        let half = thickness.of(0.5);
+        let (cosh, sinh) = (left.mul_add(half, half), lost * half);
+        Turn {
+            cosine: Complex { re: cosine * cosh, im: -(sine * sinh) },
+            lift: Complex { re: cosine * sinh, im: -(sine * cosh) },
+            norm: sine.mul_add(sine, cosine * cosine),
+            whole,
+            halvings,
+        }
+    }
+
+    /// With nothing kept beside the fields.
+    #[inline(always)]
+    fn whole(self) -> Self {
+        let (left, _) = decay(self.halvings);
+        let factor = sign_of(self.whole) / (self.norm * left).sqrt();
+        Turn { cosine: self.cosine.scale(factor), lift: self.lift.scale(factor), ..self }
+    }
+}
+
+impl<S: Simd, const P: usize> Fields<S, P> {
+    #[inline(always)]
+    pub(crate) fn new(simd: S, waves: &[Wave; 2], modes: [usize; P], lane: usize) -> Self {
+        let zero = Lanes::splat(simd, 0.0);
+        let mut pairs = [Pair { b: Complex { re: zero, im: zero }, c: Complex { re: zero, im: zero } }; P];
+        for (pair, mode) in pairs.iter_mut().zip(modes) {
+            *pair = Pair::of_wave(simd, &waves[mode], lane);
+        }
+        Fields { pairs, norm: zero.of(1.0), turned: zero, halved: zero }
+    }
+
+    /// Through one film. The sign is kept only if `SIGNED`.
+    #[inline(always)]
+    pub(crate) fn through<const SIGNED: bool>(
+        &mut self,
+        simd: S,
+        slabs: &[Slab; 2],
+        kind: Kind,
+        modes: [usize; P],
+        lane: usize,
+        thickness_nm: f64,
+    ) {
+        let thickness = Lanes::splat(simd, thickness_nm);
+        if kind == Kind::Clear {
+            let (sine, cosine, whole) = half_turn(Lanes::load(simd, &slabs[0].turns.0[lane..]) * thickness);
+            let norm = sine.mul_add(sine, cosine * cosine);
+            for p in 0..P {
+                let slab = &slabs[modes[p]];
+                let over = sine * Lanes::load(simd, &slab.impedance.re.0[lane..]);
+                let times = sine * Lanes::load(simd, &slab.admittance.re.0[lane..]);
+                self.pairs[p] = self.pairs[p].clear(cosine, over, times);
+            }
+            self.norm = self.norm * norm;
+            if SIGNED {
+                self.turned = self.turned + whole;
+            }
+            return;
+        }
+        let mut turn = Turn::new(simd, &slabs[modes[0]], lane, thickness);
+        for p in 0..P {
+            let slab = &slabs[modes[p]];
+            if kind == Kind::Mean {
+                turn = Turn::new(simd, slab, lane, thickness).whole();
+            }
+            let over = turn.lift * slab.impedance.load(simd, lane);
+            let times = turn.lift * slab.admittance.load(simd, lane);
+            self.pairs[p] = self.pairs[p].dim(turn.cosine, over, times);
+        }
+        if kind == Kind::Mean {
+            self.look();
+            return;
+        }
+        self.norm = self.norm * turn.norm;
+        self.halved = self.halved + turn.halvings;
+        if SIGNED {
+            self.turned = self.turned + turn.whole;
+        }
+    }
+
+    /// Brings fields that have become very large or small back to a size near 1.
+    #[inline(always)]
+    pub(crate) fn look(&mut self) {
+        let mut size = self.norm.of(0.0);
+        for Pair { b, c } in self.pairs {
+            size = size.max(b.re.abs().max(b.im.abs())).max(c.re.abs().max(c.im.abs()));
+        }
+        let (least, greatest) = (size.least(), size.greatest());
+        if least < SMALL || greatest > LARGE || self.norm.greatest() > LARGE {
+            self.rescale(size);
+        }
+    }
+
+    #[inline(always)]
+    fn rescale(&mut self, size: Lanes<S>) {
+        let (of_fields, of_norm) = (exponent(size), exponent(self.norm));
+        let factor = power_of_two(-of_fields);
+        for pair in &mut self.pairs {
+            *pair = Pair { b: pair.b.scale(factor), c: pair.c.scale(factor) };
+        }
+        self.norm = self.norm * power_of_two(-of_norm);
+        self.halved = self.halved + of_fields + of_fields - of_norm;
+    }
+}
+
+/// −1 where a whole number is odd, else 1.
+#[inline(always)]
+pub(crate) fn sign_of<S: Simd>(turned: Lanes<S>) -> Lanes<S> {
+    let half = turned * turned.of(0.5);
+    // The rest of a half is a half itself, of either sign, or nothing.
+    let (_, _, whole) = half_turn(half);
+    (half - whole).abs().mul_add(turned.of(-4.0), turned.of(1.0))
+}
+
+/// The exponent of a positive normal number, as a number; 0 of zero.
+#[inline(always)]
+fn exponent<S: Simd>(size: Lanes<S>) -> Lanes<S> {
+    let mut values = size.values;
+    let each: &mut [f64] = bytemuck::cast_slice_mut(std::slice::from_mut(&mut values));
+    for value in each {
+        let exponent = ((value.to_bits() >> 52) & 0x7ff) as i64 - 1023;
+        *value = if *value > 0.0 && exponent > -1023 && exponent < 1024 { exponent as f64 } else { 0.0 };
+    }
+    Lanes { values, ..size }
+}
+
+/// The power flow at a face, Re(B* C), in a scale of its own.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct Flow<S: Simd, const P: usize> {
+    pub(crate) flux: [Lanes<S>; P],
+    pub(crate) norm: Lanes<S>,
+    pub(crate) halved: Lanes<S>,
+}
+
+impl<S: Simd, const P: usize> Fields<S, P> {
+    #[inline(always)]
+    pub(crate) fn flow(&self) -> Flow<S, P> {
+        let mut flux = [self.norm; P];
+        for (flux, pair) in flux.iter_mut().zip(self.pairs) {
+            *flux = pair.flux();
+        }
+        Flow { flux, norm: self.norm, halved: self.halved }
+    }
+}
+
+/// The fields at a coating's front from those behind it, its films listed from the far side towards the light. With `FLOWS`
+/// the power flow at every face is added to a list, in the same order.
+#[inline(always)]
+pub(crate) fn march<S: Simd, const P: usize, const SIGNED: bool, const FLOWS: bool>(
+    simd: S,
+    (slabs, kinds): (&[[Slab; 2]], &[Kind]),
+    layers: &[Layer],
+    exit: &[Wave; 2],
+    modes: [usize; P],
+    lane: usize,
+    flows: &mut Vec<Flow<S, P>>,
+) -> Fields<S, P> {
+    let mut fields = Fields::new(simd, exit, modes, lane);
+    if FLOWS {
+        flows.push(fields.flow());
+    }
+    for some in layers.chunks(LOOK) {
+        for layer in some {
+            let (slab, kind) = (&slabs[layer.material], kinds[layer.material]);
+            fields.through::<SIGNED>(simd, slab, kind, modes, lane, layer.thickness_nm);
+            if FLOWS {
+                flows.push(fields.flow());
+            }
+        }
+        fields.look();
+    }
+    fields
+}

@@ -1,0 +1,130 @@
+//! The points at which a stack is evaluated together, in blocks of as many as the widest processor takes at once.
+
+use num_complex::Complex64;
+
+use crate::error::{IndexError, OpticsError};
+use crate::plan::Plan;
+
+/// How many points a block has.
+pub(crate) const WIDTH: usize = 8;
+
+/// One value at each point of a block.
+#[derive(Clone, Copy, Debug, PartialEq)]
+#[repr(align(64))]
+pub(crate) struct Row(pub(crate) [f64; WIDTH]);
+
+impl Row {
+    pub(crate) const ZERO: Row = Row([0.0; WIDTH]);
+}
+
+/// Vacuum wavelengths with the indices of a stack's materials and mixtures there. The last block is filled up with copies of the
+/// last point.
+#[derive(Clone, Debug)]
+pub(crate) struct Points {
+    count: usize,
+    media: usize,
+    wavelengths: Vec<Row>,
+    /// n and k by block, and by material and mixture within it.
+    indices: Vec<[Row; 2]>,
+}
+
+impl Points {
+    /// # Errors
+    /// A material without constants at one of the wavelengths; an incident medium that absorbs.
+    pub(crate) fn new(plan: &Plan, wavelengths_nm: &[f64]) -> Result<Points, OpticsError> {
+        let media = plan.pure();
+        let blocks = wavelengths_nm.len().div_ceil(WIDTH);
+        let mut points = Points {
+            count: wavelengths_nm.len(),
+            media,
+            wavelengths: Vec::with_capacity(blocks),
+            indices: vec![[Row::ZERO; 2]; blocks * media],
+        };
+        for some in wavelengths_nm.chunks(WIDTH) {
+            let last = some[some.len() - 1];
+            points.wavelengths.push(Row(std::array::from_fn(|at| some.get(at).copied().unwrap_or(last))));
+        }
+        for (medium, index) in plan.materials.iter().enumerate() {
+            let failed = |cause: IndexError| OpticsError::Material { index: index.clone(), cause };
+            for block in 0..blocks {
+                let rows = &mut points.indices[block * media + medium];
+                index.at_all(&points.wavelengths[block].0, rows).map_err(failed)?;
+            }
+        }
+        points.check_incident()?;
+        if plan.materials.len() < media {
+            points.mix(plan)?;
+        }
+        Ok(points)
+    }
+
+    /// How many points there are.
+    pub(crate) fn count(&self) -> usize {
+        self.count
+    }
+
+    pub(crate) fn blocks(&self) -> usize {
+        self.wavelengths.len()
+    }
+
+    /// The wavelengths of a block, nm.
+    pub(crate) fn wavelengths(&self, block: usize) -> &Row {
+        &self.wavelengths[block]
+    }
+
+    /// n and k of a material or mixture over a block.
+    pub(crate) fn index(&self, block: usize, medium: usize) -> &[Row; 2] {
+        &self.indices[block * self.media + medium]
+    }
+
+    /// Whether a material or mixture takes no power anywhere in a block; of a mean of two it is not told.
+    pub(crate) fn is_lossless(&self, block: usize, medium: usize) -> bool {
+        medium < self.media && self.index(block, medium)[1].0 == [0.0; WIDTH]
+    }
+
+    /// Whether none of them does, but for the half-space behind.
+    pub(crate) fn all_lossless(&self, block: usize, exit: usize) -> bool {
+        (0..self.media).all(|medium| medium == exit || self.is_lossless(block, medium))
+    }
+
+    /// N of a material or mixture at a point.
+    pub(crate) fn at(&self, point: usize, medium: usize) -> Complex64 {
+        let [n, k] = self.index(point / WIDTH, medium);
+        Complex64::new(n.0[point % WIDTH], k.0[point % WIDTH])
+    }
+
+    /// The same points with the indices of some materials greater by dn each.
+    pub(crate) fn shift(&mut self, medium: usize, dn: f64) {
+        for block in 0..self.blocks() {
+            self.indices[block * self.media + medium][0].0.iter_mut().for_each(|n| *n += dn);
+        }
+    }
+
+    fn check_incident(&self) -> Result<(), OpticsError> {
+        for point in 0..self.count {
+            let k = self.at(point, 0).im;
+            if k > 0.0 {
+                let wavelength_nm = self.wavelengths[point / WIDTH].0[point % WIDTH];
+                return Err(OpticsError::AbsorbingIncident { wavelength_nm, k });
+            }
+        }
+        Ok(())
+    }
+
+    /// Fills in the mixtures.
+    fn mix(&mut self, plan: &Plan) -> Result<(), OpticsError> {
+        for block in 0..self.blocks() {
+            for lane in 0..WIDTH {
+                let point = block * WIDTH + lane;
+                let mut indices: Vec<Complex64> =
+                    (0..plan.materials.len()).map(|medium| self.at(point, medium)).collect();
+                plan.mix(&mut indices, self.wavelengths[block].0[lane])?;
+                for (medium, index) in indices.iter().enumerate().skip(plan.materials.len()) {
+                    let rows = &mut self.indices[block * self.media + medium];
+                    (rows[0].0[lane], rows[1].0[lane]) = (index.re, index.im);
+                }
+            }
+        }
+        Ok(())
+    }
+}

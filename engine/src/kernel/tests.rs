@@ -1,0 +1,202 @@
+//! The kernels against the scalar definition, over stacks that no one would build.
+
+use proptest::prelude::*;
+
+use super::{Beam, Points, Program, WIDTH, Within};
+use crate::dispersion::Index;
+use crate::matrix::Mode;
+use crate::plan::Plan;
+use crate::stack::{Body, Film, Stack};
+
+/// n and k of something that may be a film: clear, absorbing from hardly to like a metal.
+fn material() -> impl Strategy<Value = (f64, f64)> {
+    let clear = (1.2..4.0_f64).prop_map(|n| (n, 0.0));
+    let dim = (0.1..4.0_f64, -12.0..1.0_f64).prop_map(|(n, k)| (n, 10_f64.powf(k)));
+    prop_oneof![3 => clear, 1 => dim]
+}
+
+/// A thickness in nm from nothing to a millimetre.
+fn thickness() -> impl Strategy<Value = f64> {
+    prop_oneof![8 => 1.0..400.0_f64, 1 => Just(0.0), 1 => (0.0..6.0_f64).prop_map(|nm| 10_f64.powf(nm))]
+}
+
+/// Films of a few materials, told by their numbers.
+fn films(most: usize) -> impl Strategy<Value = Vec<(usize, f64)>> {
+    proptest::collection::vec((0..4_usize, thickness()), 0..most)
+}
+
+fn stack(
+    incident: f64,
+    materials: &[(f64, f64)],
+    coatings: &[Vec<(usize, f64)>],
+    bodies: &[(usize, f64)],
+    exit: usize,
+) -> Stack {
+    let indices: Vec<Index> =
+        materials.iter().map(|&(n, k)| Index::constant(n, k).expect("valid")).collect();
+    let film = |&(material, nm): &(usize, f64)| Film::new(indices[material].clone(), nm);
+    Stack {
+        incident: Index::constant(incident, 0.0).expect("valid"),
+        coatings: coatings.iter().map(|films| films.iter().map(film).collect()).collect(),
+        bodies: bodies
+            .iter()
+            .map(|&(material, thickness_nm)| Body { index: indices[material].clone(), thickness_nm })
+            .collect(),
+        exit: indices[exit].clone(),
+        facets_rad: None,
+    }
+}
+
+/// What the last digits of the wavelength and the angle may change: as much for either of two right answers.
+fn allowed(plan: &Plan, mode: Mode, wavelength_nm: f64, angle_rad: f64) -> [f64; 4] {
+    let at = |stretch: f64, turn: f64| {
+        let angle = (angle_rad * (1.0 + turn)).min(1.5707);
+        let found = plan.at(wavelength_nm * (1.0 + stretch), angle).and_then(|tilted| tilted.response(mode));
+        found.map(|found| {
+            [found.reflectance, found.transmittance, found.absorptance, found.ln_transmittance.max(-1e300)]
+        })
+    };
+    let steps = [(0.0, 0.0), (1e-11, 0.0), (-1e-11, 0.0), (0.0, 1e-11), (0.0, -1e-11)];
+    let values: Vec<[f64; 4]> = steps.iter().filter_map(|step| at(step.0, step.1).ok()).collect();
+    [0, 1, 2, 3].map(|part: usize| {
+        let off = values.iter().map(|value| (value[part] - values[0][part]).abs()).fold(0.0, f64::max);
+        1e-12 + 1e-3 * off
+    })
+}
+
+/// R, T, A and ln T of both, at several wavelengths.
+fn agree(stack: &Stack, wavelengths: &[f64], angle_rad: f64) -> Result<(), TestCaseError> {
+    let plan = Plan::new(stack).expect("well formed");
+    let program = Program::new(&plan);
+    let points = Points::new(&plan, wavelengths).expect("constants");
+    let beam = Beam::new(&plan, &points, &[angle_rad]).expect("an angle");
+    let within = Within {
+        layers: plan.coatings.iter().map(|layers| vec![true; layers.len()]).collect(),
+        bodies: vec![true; plan.bodies.len()],
+        exit: false,
+    };
+    let (outcomes, channels) = beam.channels(&program, &points, &[0, 1], Some(&within));
+    for (at, wavelength_nm) in wavelengths.iter().enumerate() {
+        let tilted = plan.at(*wavelength_nm, angle_rad).expect("a point");
+        for (p, mode) in [Mode::S, Mode::P].into_iter().enumerate() {
+            let (block, lane) = (at / WIDTH, at % WIDTH);
+            let found = &outcomes[block][p];
+            let Ok(expected) = tilted.response(mode) else {
+                // What rounding has lost is told by both.
+                continue;
+            };
+            let allowed = allowed(&plan, mode, *wavelength_nm, angle_rad);
+            let most = allowed[0].max(allowed[1]).max(allowed[2]);
+            let near = |found: f64, expected: f64, allowed: f64, what: &str| {
+                prop_assert!(
+                    (found - expected).abs() <= allowed,
+                    "{what} {mode:?} at {wavelength_nm}: {found} {expected} allowed {allowed}"
+                );
+                Ok(())
+            };
+            near(found.reflectance.0[lane], expected.reflectance, allowed[0], "R")?;
+            let transmittance = found.passed.0[lane] * (-found.halved.0[lane]).exp2();
+            near(transmittance, expected.transmittance, allowed[1], "T")?;
+            near(found.absorptance.0[lane], expected.absorptance, allowed[2], "A")?;
+            let ln = found.passed.0[lane].ln() - found.halved.0[lane] * std::f64::consts::LN_2;
+            if expected.transmittance > 1e-9 {
+                let allowed = allowed[3] + 1e-9;
+                near(ln, expected.ln_transmittance, allowed, "ln T")?;
+            }
+            let absorbed = tilted.absorption(mode).expect("a point");
+            let sum: f64 =
+                absorbed.films.iter().flatten().sum::<f64>() + absorbed.bodies.iter().sum::<f64>();
+            near(found.within.0[lane], sum, most, "absorbed")?;
+            for (coating, resonator) in tilted.resonators(mode).enumerate() {
+                let flat = program.flat();
+                let channel = &channels[block * program.channels(2) + p * flat + coating];
+                let scale = (channel.ln_scale.0[lane] - resonator.ln_scale).exp();
+                let size = resonator.denominator.norm() + resonator.numerator.norm();
+                for (found, expected) in [
+                    (&channel.denominator, resonator.denominator),
+                    (&channel.numerator, resonator.numerator),
+                ] {
+                    let off = (found[0].0[lane] * scale - expected.re)
+                        .hypot(found[1].0[lane] * scale - expected.im);
+                    prop_assert!(off <= 1e-9 * size, "N, D: {off} of {size}");
+                }
+            }
+        }
+    }
+    Ok(())
+}
+
+const WAVELENGTHS: [f64; 11] =
+    [400.0, 437.0, 501.0, 555.0, 620.0, 700.0, 801.0, 1000.0, 1064.0, 1550.0, 10600.0];
+
+proptest! {
+    #![proptest_config(ProptestConfig::with_cases(256))]
+
+    #[test]
+    fn a_coating_is_what_the_definition_says(
+        materials in proptest::collection::vec(material(), 4),
+        films in films(60),
+        exit in 0..4_usize,
+        incident in 1.0..2.0_f64,
+        angle in 0.0..1.57_f64,
+    ) {
+        agree(&stack(incident, &materials, &[films], &[], exit), &WAVELENGTHS, angle)?;
+    }
+
+    #[test]
+    fn so_is_a_stack_with_thick_bodies(
+        materials in proptest::collection::vec(material(), 4),
+        coatings in proptest::collection::vec(films(12), 3),
+        bodies in proptest::collection::vec((0..4_usize, 1e3..1e7_f64), 2),
+        exit in 0..4_usize,
+        angle in 0.0..1.57_f64,
+    ) {
+        agree(&stack(1.0, &materials, &coatings, &bodies, exit), &WAVELENGTHS, angle)?;
+    }
+}
+
+#[test]
+#[ignore]
+fn timing() {
+    use std::time::Instant;
+    for k in [0.0, 1e-4] {
+        let materials = [(2.35, k), (1.46, k), (1.9, k), (1.52, k)];
+        let films: Vec<(usize, f64)> = (0..40).map(|at| (at % 3, 60.0 + at as f64)).collect();
+        let stack = stack(1.0, &materials, &[films], &[], 3);
+        let plan = Plan::new(&stack).expect("well formed");
+        let program = Program::new(&plan);
+        let wavelengths: Vec<f64> = (0..1001).map(|at| 400.0 + 0.4 * at as f64).collect();
+        let start = Instant::now();
+        let points = Points::new(&plan, &wavelengths).expect("constants");
+        println!("points {:?}", start.elapsed());
+        let start = Instant::now();
+        let beam = Beam::new(&plan, &points, &[0.5]).expect("an angle");
+        println!("beam {:?}", start.elapsed());
+        for _ in 0..20 {
+            let start = Instant::now();
+            let points = Points::new(&plan, &wavelengths).expect("constants");
+            let a = start.elapsed();
+            let start = Instant::now();
+            let beam = Beam::new(&plan, &points, &[0.5]).expect("an angle");
+            println!("again points {a:?} beam {:?}", start.elapsed());
+            std::hint::black_box(beam);
+        }
+        let mut best = f64::INFINITY;
+        let mut sum = 0.0;
+        for _ in 0..300 {
+            let start = Instant::now();
+            let outcomes = beam.outcomes(&program, &points, &[0, 1], None);
+            best = best.min(start.elapsed().as_secs_f64());
+            sum += outcomes[3][0].reflectance.0[0];
+        }
+        println!("k {k}: {:.1} us, {:.0} M/s {sum}", best * 1e6, 80080.0 / best / 1e6);
+        let start = Instant::now();
+        for _ in 0..3 {
+            for w in &wavelengths {
+                let t = plan.at(*w, 0.5).unwrap();
+                sum += t.response(Mode::S).unwrap().reflectance + t.response(Mode::P).unwrap().reflectance;
+            }
+        }
+        println!("scalar {:.0} us", start.elapsed().as_secs_f64() * 1e6 / 3.0);
+    }
+}
