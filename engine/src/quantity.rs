@@ -1,9 +1,11 @@
 //! What can be promised of a stack, and the light that it is promised for.
 
+use std::f64::consts::LN_2;
+
 use crate::error::OpticsError;
-use crate::plan::Plan;
+use crate::kernel::{Outcome, Within};
+use crate::plan::{Layer, Plan};
 use crate::response::Polarisation;
-use crate::tilted::Tilted;
 
 /// A quantity that a stack has at every wavelength and angle.
 #[derive(Clone, Debug, PartialEq)]
@@ -118,35 +120,39 @@ impl Quantity {
         Ok(())
     }
 
-    /// Of a prepared stack, with the given shares of s and p.
-    pub(crate) fn tally(&self, tilted: &Tilted<'_>, shares: [f64; 2]) -> Result<Tally, OpticsError> {
-        let mut total = Tally::NONE;
-        for (mode, share) in [crate::matrix::Mode::S, crate::matrix::Mode::P].into_iter().zip(shares) {
-            if share == 0.0 {
-                continue;
-            }
-            let plain = |value: f64| Tally { value, ln_scale: 0.0 };
-            let tally = match self {
-                Quantity::Reflectance => plain(tilted.response(mode)?.reflectance),
-                Quantity::Transmittance => plain(tilted.response(mode)?.transmittance),
-                Quantity::Absorptance => plain(tilted.response(mode)?.absorptance),
-                // These do not add up; the probe works them out without a tally.
-                Quantity::Phase(..) | Quantity::PeakField => Tally::NONE,
-                Quantity::OpticalDensity => {
-                    Tally { value: 1.0, ln_scale: tilted.response(mode)?.ln_transmittance }
-                }
-                Quantity::AbsorptanceIn { films, bodies, exit } => {
-                    let absorption = tilted.absorption(mode)?;
-                    let of_films: f64 =
-                        films.iter().map(|&(coating, film)| absorption.films[coating][film]).sum();
-                    let of_bodies: f64 = bodies.iter().map(|&body| absorption.bodies[body]).sum();
-                    let behind = if *exit { absorption.response.transmittance } else { 0.0 };
-                    plain(of_films + of_bodies + behind)
-                }
-            };
-            total = total.plus(share, tally);
+    /// The layers and bodies in which the absorptance counts, where it is only some.
+    pub(crate) fn within(&self, plan: &Plan) -> Option<Within> {
+        let Quantity::AbsorptanceIn { films, bodies, exit } = self else { return None };
+        let counts = |(coating, layers): (usize, &Vec<Layer>)| {
+            layers.iter().map(|layer| films.contains(&(coating, layer.film))).collect()
+        };
+        Some(Within {
+            layers: plan.coatings.iter().enumerate().map(counts).collect(),
+            bodies: (0..plan.bodies.len()).map(|body| bodies.contains(&body)).collect(),
+            exit: *exit,
+        })
+    }
+
+    /// What adds up of one polarisation at a point of a block; none where a number was lost.
+    pub(crate) fn tally(&self, outcome: &Outcome, lane: usize) -> Option<Tally> {
+        let (reflectance, passed) = (outcome.reflectance.0[lane], outcome.passed.0[lane]);
+        let halved = outcome.halved.0[lane];
+        if !(reflectance.is_finite() && passed.is_finite() && halved.is_finite()) {
+            return None;
         }
-        Ok(total)
+        let plain = |value: f64| Tally { value, ln_scale: 0.0 };
+        let ln_scale = -halved * LN_2;
+        Some(match self {
+            Quantity::Reflectance => plain(reflectance),
+            Quantity::Transmittance if halved == 0.0 => plain(passed),
+            Quantity::Transmittance => plain(passed * ln_scale.exp()),
+            Quantity::Absorptance => plain(outcome.absorptance.0[lane]),
+            Quantity::AbsorptanceIn { .. } => plain(outcome.within.0[lane]),
+            Quantity::OpticalDensity if passed <= 0.0 => Tally::NONE,
+            Quantity::OpticalDensity => Tally { value: passed, ln_scale },
+            // These do not add up; the probe works them out without a tally.
+            Quantity::Phase(..) | Quantity::PeakField => Tally::NONE,
+        })
     }
 
     /// The quantity itself from what adds up.

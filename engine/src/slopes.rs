@@ -72,24 +72,24 @@ pub fn slopes(
     wavelengths_nm.iter().map(|wavelength_nm| at(&probe, *wavelength_nm)).collect()
 }
 
-fn at(probe: &Probe, wavelength_nm: f64) -> Result<Slopes, OpticsError> {
-    let (plan, light) = (&probe.plan, &probe.light);
-    match probe.quantity {
+fn at(probe: &Probe<'_>, wavelength_nm: f64) -> Result<Slopes, OpticsError> {
+    let (plan, light) = (&*probe.plan, &probe.light);
+    match *probe.quantity {
         Quantity::Phase(outgoing, kind) => return phase::slopes(plan, light, outgoing, kind, wavelength_nm),
         Quantity::PeakField => return field::slopes(plan, light, wavelength_nm),
         _ => {}
     }
     let indices = plan.indices(wavelength_nm)?;
     let mut sum = Slopes::zero(plan);
-    for (angle_rad, shares) in probe.rays() {
+    for (angle_rad, shares) in probe.all_rays() {
         let tilted = plan.tilted(&indices, wavelength_nm, angle_rad)?;
         for (mode, share) in [Mode::S, Mode::P].into_iter().zip(shares) {
             if share != 0.0 {
-                sum.add(share, &of_mode(&tilted, &probe.quantity, mode)?);
+                sum.add(share, &of_mode(&tilted, probe.quantity, mode)?);
             }
         }
     }
-    if probe.quantity != Quantity::OpticalDensity {
+    if *probe.quantity != Quantity::OpticalDensity {
         return Ok(sum);
     }
     // What was added up is the transmittance.

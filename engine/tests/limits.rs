@@ -134,7 +134,7 @@ fn thick_bodies_in_total_reflection_pass_nothing() {
         }
     }
     let dark = value(&stack, &Quantity::OpticalDensity, &Light::parallel(0.8, Polarisation::S), 550.0);
-    assert!(matches!(dark, Err(OpticsError::Dark { .. })));
+    assert!(matches!(dark, Err(OpticsError::Dark { .. })), "{dark:?}");
 }
 
 #[test]

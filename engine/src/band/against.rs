@@ -1,8 +1,9 @@
 //! A quantity against a curve: masks.
 
-use super::extremes::{Extreme, Extremes, check_band, mesh_points};
+use super::extremes::{Extreme, Extremes, check_band, mesh_values};
 use super::least::along;
 use super::probe::Probe;
+use super::search::Point;
 use crate::error::OpticsError;
 use crate::quantity::{Light, Quantity};
 use crate::stack::Stack;
@@ -31,7 +32,12 @@ pub fn extremes_against(
             continue;
         }
         let line = |x: f64| y0 + (y1 - y0) * ((x - x0) / (x1 - x0)).clamp(0.0, 1.0);
-        let (min, max) = along(&mesh_points(&probe, piece)?, |x| Ok(probe.at(x)? - line(x)))?;
+        let off = |point: Point| Point { y: point.y - line(point.x), ..point };
+        let start = mesh_values(&probe, piece)?.into_iter().map(off).collect();
+        let (min, max) = along(start, &mut |xs| {
+            let values = probe.values(xs)?;
+            Ok(xs.iter().zip(values).map(|(x, value)| value - line(*x)).collect())
+        })?;
         let extreme = |x: f64, value: f64| Extreme { value, wavelength_nm: x, angle_rad };
         let (min, max) = (extreme(min.x, min.y), extreme(max.x, max.y));
         all = Some(match all {

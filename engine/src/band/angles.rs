@@ -1,7 +1,7 @@
 //! The least and the greatest value over a band and a range of angles.
 
 use super::extremes::{Extreme, Extremes, check_band, over_band};
-use super::least::along;
+use super::least::{along, valued};
 use super::mesh::{Along, Mesh};
 use super::probe::Probe;
 use super::search::{Point, minimum};
@@ -71,31 +71,29 @@ pub fn extremes_over_angles(
 }
 
 /// The extremes along a range of angles at one wavelength.
-fn over_angles(probe: &Probe, wavelength_nm: f64, angles_rad: (f64, f64)) -> Result<Extremes, OpticsError> {
-    let mesh = Mesh::build(
-        &probe.plan,
-        &probe.light,
-        probe.cone.is_some(),
-        Along::Angle { wavelength_nm },
-        angles_rad,
-    )?;
-    let points: Vec<f64> = mesh.points().collect();
-    let (min, max) = along(&points, |angle_rad| probe.at_angle(angle_rad)?.at(wavelength_nm))?;
+fn over_angles(probe: &Probe<'_>, wavelength_nm: f64, angles_rad: (f64, f64)) -> Result<Extremes, OpticsError> {
+    let mesh = Mesh::build(probe, probe.cone.is_some(), Along::Angle { wavelength_nm }, angles_rad)?;
+    let mut function = |angles_rad: &[f64]| probe.over_angles(wavelength_nm, angles_rad);
+    let start = match mesh.values() {
+        Some(values) => values.to_vec(),
+        None => valued(&mesh.points().collect::<Vec<f64>>(), &mut function)?,
+    };
+    let (min, max) = along(start, &mut function)?;
     let extreme = |point: Point| Extreme { value: point.y, wavelength_nm, angle_rad: point.x };
     Ok(Extremes { min: extreme(min), max: extreme(max) })
 }
 
 /// Angles at which the band is searched: the mesh that the shortest wavelength's fringes ask for, thinned to
 /// the spacing of its plain steps, because resonances are followed by the search along the band.
-fn angles(probe: &Probe, band_nm: (f64, f64), angles_rad: (f64, f64)) -> Result<Vec<f64>, OpticsError> {
+fn angles(probe: &Probe<'_>, band_nm: (f64, f64), angles_rad: (f64, f64)) -> Result<Vec<f64>, OpticsError> {
     let along = Along::Angle { wavelength_nm: band_nm.0 };
-    let mesh = Mesh::base_points(&probe.plan, along, angles_rad)?;
+    let mesh = Mesh::base_points(probe, along, angles_rad)?;
     Ok(mesh)
 }
 
 /// Searches in angle about the best of the scanned ones, the whole band being searched at each step.
 fn refined(
-    probe: &Probe,
+    probe: &Probe<'_>,
     band_nm: (f64, f64),
     angles: &[f64],
     scanned: &[Extremes],

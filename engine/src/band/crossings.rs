@@ -1,7 +1,7 @@
 //! Where a quantity crosses a level: the edges of filters.
 
-use super::extremes::{check_band, mesh_points};
-use super::least::bounds;
+use super::extremes::{check_band, mesh_values};
+use super::least::{Function, bounds, merged, valued};
 use super::probe::Probe;
 use super::search::Point;
 use crate::error::OpticsError;
@@ -38,51 +38,43 @@ pub fn crossings(
 ) -> Result<Vec<Crossing>, OpticsError> {
     check_band(band_nm)?;
     let probe = Probe::new(stack, quantity, light)?;
-    let points = mesh_points(&probe, band_nm)?;
-    let above = |wavelength_nm: f64| Ok::<f64, OpticsError>(probe.at(wavelength_nm)? - level);
-    let mut values = Vec::with_capacity(points.len());
-    for x in points {
-        values.push(Point { x, y: above(x)? });
-    }
-    refine(&mut values, &above)?;
+    let off = |point: Point| Point { y: point.y - level, ..point };
+    let values: Vec<Point> = mesh_values(&probe, band_nm)?.into_iter().map(off).collect();
+    let mut above = |wavelengths_nm: &[f64]| -> Result<Vec<f64>, OpticsError> {
+        Ok(probe.values(wavelengths_nm)?.into_iter().map(|value| value - level).collect())
+    };
+    let values = refined(values, &mut above)?;
     let mut found = Vec::new();
     for step in values.windows(2) {
         if (step[0].y < 0.0) != (step[1].y < 0.0) {
             let rising = step[0].y < 0.0;
-            found.push(Crossing { wavelength_nm: root(step[0], step[1], &above)?, rising });
+            found.push(Crossing { wavelength_nm: root(step[0], step[1], &mut above)?, rising });
         }
     }
     Ok(found)
 }
 
 /// Halves the steps that may hide two crossings.
-fn refine(
-    values: &mut Vec<Point>,
-    function: &dyn Fn(f64) -> Result<f64, OpticsError>,
-) -> Result<(), OpticsError> {
+fn refined(mut values: Vec<Point>, function: Function<'_>) -> Result<Vec<Point>, OpticsError> {
     for _ in 0..PASSES {
         if values.len() < 5 {
-            return Ok(());
+            break;
         }
-        let mirrored: Vec<Point> = values.iter().map(|point| Point { x: point.x, y: -point.y }).collect();
-        let (below, above) = (bounds(values), bounds(&mirrored));
-        let mut finer = Vec::with_capacity(values.len());
-        for (at, value) in values.iter().enumerate() {
-            finer.push(*value);
-            let Some(next) = values.get(at + 1) else { continue };
-            let side = if value.y < 0.0 { &above } else { &below };
-            let Some(bound) = side.get(at).filter(|_| (value.y < 0.0) == (next.y < 0.0)) else { continue };
-            if bound.least - bound.slack < 0.0 && next.x - value.x > 1e-9 * next.x {
-                let x = 0.5 * (value.x + next.x);
-                finer.push(Point { x, y: function(x)? });
+        let mut wanted = Vec::new();
+        for (bound, step) in bounds(&values).iter().zip(values.windows(2)) {
+            let below = step[0].y < 0.0;
+            let crosses = if below { bound.highest() >= 0.0 } else { bound.lowest() < 0.0 };
+            if below == (step[1].y < 0.0) && crosses && step[1].x - step[0].x > 1e-9 * step[1].x {
+                wanted.push(0.5 * (step[0].x + step[1].x));
             }
         }
-        if finer.len() == values.len() || finer.len() > MOST {
-            return Ok(());
+        if wanted.is_empty() || values.len() + wanted.len() > MOST {
+            break;
         }
-        *values = finer;
+        let found = valued(&wanted, function)?;
+        values = merged(values, found);
     }
-    Ok(())
+    Ok(values)
 }
 
 /// The zero between two points of opposite sign, by false position with halved ordinates and bisection.
@@ -91,7 +83,7 @@ fn refine(
 fn root(
     mut a: Point,
     mut b: Point,
-    function: &dyn Fn(f64) -> Result<f64, OpticsError>,
+    function: Function<'_>,
 ) -> Result<f64, OpticsError> {
     for turn in 0..200 {
         if (b.x - a.x).abs() <= 1e-7 {
@@ -102,7 +94,7 @@ fn root(
         if turn % 4 == 3 || !(x > a.x.min(b.x) && x < a.x.max(b.x)) {
             x = 0.5 * (a.x + b.x);
         }
-        let next = Point { x, y: function(x)? };
+        let next = Point { x, y: function(&[x])?[0] };
         if next.y == 0.0 {
             return Ok(x);
         }

@@ -1,6 +1,6 @@
 //! The least and the greatest value over a band.
 
-use super::least::along;
+use super::least::{along, valued};
 use super::mesh::{Along, Mesh};
 use super::probe::Probe;
 use super::search::Point;
@@ -53,28 +53,32 @@ pub(crate) fn check_band(band_nm: (f64, f64)) -> Result<(), OpticsError> {
 }
 
 /// The same for a prepared stack.
-pub(crate) fn over_band(probe: &Probe, band_nm: (f64, f64)) -> Result<Extremes, OpticsError> {
-    let points = mesh_points(probe, band_nm)?;
-    let (min, max) = along(&points, |wavelength_nm| probe.at(wavelength_nm))?;
+pub(crate) fn over_band(probe: &Probe<'_>, band_nm: (f64, f64)) -> Result<Extremes, OpticsError> {
+    let values = mesh_values(probe, band_nm)?;
+    let (min, max) = along(values, &mut |wavelengths_nm| probe.values(wavelengths_nm))?;
     let angle_rad = probe.light.angle_rad;
     let extreme = |point: Point| Extreme { value: point.y, wavelength_nm: point.x, angle_rad };
     Ok(Extremes { min: extreme(min), max: extreme(max) })
 }
 
-/// The points that show a quantity's structure over a band, both ends among them, ascending.
-pub(super) fn mesh_points(probe: &Probe, band_nm: (f64, f64)) -> Result<Vec<f64>, OpticsError> {
+/// The points that show a quantity's structure over a band, both ends among them, ascending, with its values.
+pub(super) fn mesh_values(probe: &Probe<'_>, band_nm: (f64, f64)) -> Result<Vec<Point>, OpticsError> {
     let mut points = Vec::new();
     for angle_rad in mesh_angles(probe) {
         let along = Along::Wavelength { angle_rad };
-        points.extend(Mesh::build(&probe.plan, &probe.light, probe.cone.is_some(), along, band_nm)?.points());
+        let mesh = Mesh::build(probe, probe.cone.is_some(), along, band_nm)?;
+        if let Some(values) = mesh.values() {
+            return Ok(values.to_vec());
+        }
+        points.extend(mesh.points());
     }
     points.sort_by(f64::total_cmp);
     points.dedup();
-    Ok(points)
+    valued(&points, &mut |wavelengths_nm| probe.values(wavelengths_nm))
 }
 
 /// The angles whose resonances shape a quantity: a cone blurs those of all its rays.
-pub(crate) fn mesh_angles(probe: &Probe) -> Vec<f64> {
+pub(crate) fn mesh_angles(probe: &Probe<'_>) -> Vec<f64> {
     match &probe.cone {
         None => vec![probe.light.angle_rad],
         Some(cone) => {

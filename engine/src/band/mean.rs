@@ -164,34 +164,43 @@ impl Sum {
     }
 }
 
-/// The quantity over a band, as series that have settled.
-fn panels(probe: &Probe, band_nm: (f64, f64), total_nm: f64) -> Result<Vec<Series>, OpticsError> {
+/// The quantity over a band, as series that have settled, in order.
+fn panels(probe: &Probe<'_>, band_nm: (f64, f64), total_nm: f64) -> Result<Vec<Series>, OpticsError> {
     let mut ends: Vec<f64> = Vec::new();
     for angle_rad in mesh_angles(probe) {
         let along = Along::Wavelength { angle_rad };
-        let mesh = Mesh::build(&probe.plan, &probe.light, probe.cone.is_some(), along, band_nm)?;
-        let points: Vec<f64> = mesh.points().collect();
-        ends.extend(points.iter().step_by(STEPS));
+        let mesh = Mesh::build(probe, probe.cone.is_some(), along, band_nm)?;
+        ends.extend(mesh.points().step_by(STEPS));
     }
     ends.extend([band_nm.0, band_nm.1]);
     let knots = probe.plan.materials.iter().flat_map(|material| material.knots_nm());
     ends.extend(knots.filter(|&knot| band_nm.0 < knot && knot < band_nm.1));
     ends.sort_by(f64::total_cmp);
     ends.dedup();
-    let mut open: Vec<(f64, f64, u32)> = ends.windows(2).rev().map(|ends| (ends[0], ends[1], 0)).collect();
+    let mut open: Vec<(f64, f64)> = ends.windows(2).map(|ends| (ends[0], ends[1])).collect();
     let mut settled = Vec::new();
-    while let Some((lo, hi, depth)) = open.pop() {
-        let series = Series::of(lo, hi, |wavelength_nm| probe.at(wavelength_nm))?;
-        let tail = series.tail();
-        let share = (hi - lo) / total_nm;
-        let middle = 0.5 * (lo + hi);
-        let fine = tail <= PANEL || tail * share <= 1e-3 * PANEL;
-        if fine || depth >= DEEPEST || settled.len() + open.len() >= MOST || middle <= lo || middle >= hi {
-            settled.push(series);
-        } else {
-            open.push((middle, hi, depth + 1));
-            open.push((lo, middle, depth + 1));
+    for depth in 0.. {
+        let places: Vec<f64> = open.iter().flat_map(|&(lo, hi)| Series::places(lo, hi)).collect();
+        let values = probe.values(&places)?;
+        let mut halves = Vec::new();
+        for (&(lo, hi), values) in open.iter().zip(values.chunks(DEGREE + 1)) {
+            let series = Series::new(lo, hi, values);
+            let tail = series.tail();
+            let share = (hi - lo) / total_nm;
+            let middle = 0.5 * (lo + hi);
+            let fine = tail <= PANEL || tail * share <= 1e-3 * PANEL;
+            let most = settled.len() + open.len() + halves.len() >= MOST;
+            if fine || depth >= DEEPEST || most || middle <= lo || middle >= hi {
+                settled.push(series);
+            } else {
+                halves.extend([(lo, middle), (middle, hi)]);
+            }
         }
+        if halves.is_empty() {
+            break;
+        }
+        open = halves;
     }
+    settled.sort_by(|a, b| a.lo.total_cmp(&b.lo));
     Ok(settled)
 }

@@ -1,13 +1,13 @@
 //! One quantity of one stack under one beam, as a function of the wavelength.
 
+use std::borrow::Cow;
 use std::collections::BTreeMap;
-
-use num_complex::Complex64;
 
 use super::cone::{Cone, Stretch};
 use super::mesh::{Along, Mesh};
 use crate::error::OpticsError;
 use crate::field::{self, peak};
+use crate::kernel::{Beam, Outcome, Points, Program, WIDTH, Within};
 use crate::phase::phase;
 use crate::plan::Plan;
 use crate::quadrature::gauss_legendre;
@@ -43,59 +43,161 @@ pub fn values(
     light: &Light,
     wavelengths_nm: &[f64],
 ) -> Result<Vec<f64>, OpticsError> {
-    let probe = Probe::new(stack, quantity, light)?;
-    wavelengths_nm.iter().map(|wavelength_nm| probe.at(*wavelength_nm)).collect()
+    Probe::new(stack, quantity, light)?.values(wavelengths_nm)
 }
 
 /// A stack prepared for many evaluations of one quantity.
 #[derive(Clone, Debug)]
-pub(crate) struct Probe {
-    pub(crate) plan: Plan,
-    pub(crate) quantity: Quantity,
+pub(crate) struct Probe<'a> {
+    pub(crate) plan: Cow<'a, Plan>,
+    pub(crate) program: Cow<'a, Program>,
+    pub(crate) quantity: &'a Quantity,
+    pub(crate) within: Option<Cow<'a, Within>>,
     pub(crate) light: Light,
     pub(crate) cone: Option<Cone>,
-    rules: BTreeMap<usize, Vec<(f64, f64)>>,
+    rules: Cow<'a, BTreeMap<usize, Vec<(f64, f64)>>>,
 }
 
-impl Probe {
-    pub(crate) fn new(stack: &Stack, quantity: &Quantity, light: &Light) -> Result<Probe, OpticsError> {
+impl<'a> Probe<'a> {
+    pub(crate) fn new(
+        stack: &Stack,
+        quantity: &'a Quantity,
+        light: &Light,
+    ) -> Result<Probe<'a>, OpticsError> {
         let plan = if *quantity == Quantity::PeakField { field::plan(stack)? } else { Plan::new(stack)? };
         quantity.check(&plan)?;
         let cone = Cone::new(light)?;
         let sizes: &[usize] = if cone.is_some() { &NODES } else { &[] };
         let rules = sizes.iter().map(|&size| (size, gauss_legendre(size))).collect();
-        Ok(Probe { plan, quantity: quantity.clone(), light: *light, cone, rules })
+        Ok(Probe {
+            program: Cow::Owned(Program::new(&plan)),
+            within: quantity.within(&plan).map(Cow::Owned),
+            plan: Cow::Owned(plan),
+            quantity,
+            light: *light,
+            cone,
+            rules: Cow::Owned(rules),
+        })
     }
 
     /// The same under a beam of another angle.
-    pub(crate) fn at_angle(&self, angle_rad: f64) -> Result<Probe, OpticsError> {
+    pub(crate) fn at_angle(&self, angle_rad: f64) -> Result<Probe<'_>, OpticsError> {
         let light = Light { angle_rad, ..self.light };
-        Ok(Probe { cone: Cone::new(&light)?, light, ..self.clone() })
+        Ok(Probe {
+            plan: Cow::Borrowed(&self.plan),
+            program: Cow::Borrowed(&self.program),
+            quantity: self.quantity,
+            within: self.within.as_deref().map(Cow::Borrowed),
+            cone: Cone::new(&light)?,
+            light,
+            rules: Cow::Borrowed(&self.rules),
+        })
     }
 
     /// The value at a vacuum wavelength in nm.
     pub(crate) fn at(&self, wavelength_nm: f64) -> Result<f64, OpticsError> {
-        if let Quantity::Phase(outgoing, kind) = self.quantity {
-            return phase(&self.plan, &self.light, outgoing, kind, wavelength_nm);
-        }
-        if self.quantity == Quantity::PeakField {
-            return Ok(peak(&self.plan, &self.light, wavelength_nm)?.value);
-        }
-        let indices = self.plan.indices(wavelength_nm)?;
-        let Some(cone) = &self.cone else {
-            let tilted = self.plan.tilted(&indices, wavelength_nm, self.light.angle_rad)?;
-            let tally = self.quantity.tally(&tilted, self.light.polarisation.shares())?;
-            return self.quantity.value(tally, wavelength_nm);
+        Ok(self.values(&[wavelength_nm])?[0])
+    }
+
+    /// Whether the values come out of the kernel that also tells N and D.
+    pub(crate) fn is_plain(&self) -> bool {
+        self.cone.is_none() && !matches!(self.quantity, Quantity::Phase(..) | Quantity::PeakField)
+    }
+
+    /// The values at vacuum wavelengths in nm.
+    pub(crate) fn values(&self, wavelengths_nm: &[f64]) -> Result<Vec<f64>, OpticsError> {
+        let each = |of: &dyn Fn(f64) -> Result<f64, OpticsError>| {
+            wavelengths_nm.iter().map(|wavelength_nm| of(*wavelength_nm)).collect()
         };
-        let mut total = Tally::NONE;
-        for stretch in cone.stretches() {
-            total = total.plus(1.0, self.stretch(cone, stretch, &indices, wavelength_nm)?);
+        match *self.quantity {
+            Quantity::Phase(outgoing, kind) => {
+                return each(&|nm| phase(&self.plan, &self.light, outgoing, kind, nm));
+            }
+            Quantity::PeakField => return each(&|nm| Ok(peak(&self.plan, &self.light, nm)?.value)),
+            _ => {}
         }
-        self.quantity.value(total, wavelength_nm)
+        let points = Points::new(&self.plan, wavelengths_nm)?;
+        self.values_at(&points)
+    }
+
+    /// The values of a quantity in power at points.
+    pub(crate) fn values_at(&self, points: &Points) -> Result<Vec<f64>, OpticsError> {
+        let tallies = match &self.cone {
+            None => self.rays(points, &[self.light.angle_rad], self.light.polarisation.shares())?,
+            Some(cone) => self.cones(cone, points)?,
+        };
+        self.told(points, &tallies)
+    }
+
+    /// The values at one vacuum wavelength in nm under beams of several angles.
+    pub(crate) fn over_angles(
+        &self,
+        wavelength_nm: f64,
+        angles_rad: &[f64],
+    ) -> Result<Vec<f64>, OpticsError> {
+        if !self.is_plain() || angles_rad.is_empty() {
+            return angles_rad.iter().map(|angle| self.at_angle(*angle)?.at(wavelength_nm)).collect();
+        }
+        let points = Points::new(&self.plan, &[wavelength_nm])?.repeated(angles_rad.len());
+        let tallies = self.rays(&points, angles_rad, self.light.polarisation.shares())?;
+        self.told(&points, &tallies)
+    }
+
+    /// The quantity itself from what adds up.
+    pub(crate) fn told(&self, points: &Points, tallies: &[Tally]) -> Result<Vec<f64>, OpticsError> {
+        let value = |(at, tally): (usize, &Tally)| self.quantity.value(*tally, points.wavelength(at));
+        tallies.iter().enumerate().map(value).collect()
+    }
+
+    /// Which polarisations have a share.
+    pub(crate) fn modes(shares: [f64; 2]) -> &'static [usize] {
+        match shares {
+            [_, 0.0] => &[0],
+            [0.0, _] => &[1],
+            _ => &[0, 1],
+        }
+    }
+
+    /// What adds up of rays of one angle, or of one for each point.
+    fn rays(
+        &self,
+        points: &Points,
+        angles_rad: &[f64],
+        shares: [f64; 2],
+    ) -> Result<Vec<Tally>, OpticsError> {
+        let beam = Beam::new(&self.plan, points, angles_rad)?;
+        let modes = Probe::modes(shares);
+        let outcomes = beam.outcomes(&self.program, points, modes, self.within.as_deref());
+        self.tallies(points, angles_rad, shares, &outcomes)
+    }
+
+    /// What adds up over the polarisations.
+    pub(crate) fn tallies(
+        &self,
+        points: &Points,
+        angles_rad: &[f64],
+        shares: [f64; 2],
+        outcomes: &[[Outcome; 2]],
+    ) -> Result<Vec<Tally>, OpticsError> {
+        let modes = Probe::modes(shares);
+        let of = |at: usize| {
+            let mut sum = Tally::NONE;
+            for &mode in modes {
+                let outcome = &outcomes[at / WIDTH][mode];
+                let Some(tally) = self.quantity.tally(outcome, at % WIDTH) else {
+                    let wavelength_nm = points.wavelength(at);
+                    let angle_rad = angles_rad[at.min(angles_rad.len() - 1)];
+                    return Err(OpticsError::NotFinite { wavelength_nm, angle_rad });
+                };
+                sum = sum.plus(shares[mode], tally);
+            }
+            Ok(sum)
+        };
+        (0..points.count()).map(of).collect()
     }
 
     /// The rays that the light consists of, each with its shares of s and p: of a cone, those of one fixed rule.
-    pub(crate) fn rays(&self) -> Vec<(f64, [f64; 2])> {
+    pub(crate) fn all_rays(&self) -> Vec<(f64, [f64; 2])> {
         let Some(cone) = &self.cone else {
             return vec![(self.light.angle_rad, self.light.polarisation.shares())];
         };
@@ -109,69 +211,99 @@ impl Probe {
         rays
     }
 
-    /// The part of a cone that one stretch contributes.
-    fn stretch(
-        &self,
-        cone: &Cone,
-        stretch: Stretch,
-        indices: &[Complex64],
-        wavelength_nm: f64,
-    ) -> Result<Tally, OpticsError> {
-        let ray = |x: f64| {
-            let ray = cone.ray(stretch, x);
-            let tilted = self.plan.tilted(indices, wavelength_nm, ray.angle_rad)?;
-            self.quantity.tally(&tilted, ray.shares)
-        };
-        let mut before: Option<Tally> = None;
-        for rule in self.rules.values() {
-            let mut sum = Tally::NONE;
-            for &(x, weight) in rule {
-                sum = sum.plus(weight, ray(x)?);
+    /// What adds up over a whole cone, at every point.
+    fn cones(&self, cone: &Cone, points: &Points) -> Result<Vec<Tally>, OpticsError> {
+        let mut total = vec![Tally::NONE; points.count()];
+        for stretch in cone.stretches() {
+            // Where it has not settled yet.
+            let mut open: Vec<usize> = (0..points.count()).collect();
+            let mut before: Vec<Option<Tally>> = vec![None; points.count()];
+            for rule in self.rules.values() {
+                if open.is_empty() {
+                    break;
+                }
+                let some = points.some(&open);
+                let mut sums = vec![Tally::NONE; open.len()];
+                for &(x, weight) in rule {
+                    let ray = cone.ray(stretch, x);
+                    let found = self.rays(&some, &[ray.angle_rad], ray.shares)?;
+                    sums.iter_mut().zip(found).for_each(|(sum, tally)| *sum = sum.plus(weight, tally));
+                }
+                let mut left = Vec::new();
+                for (&point, sum) in open.iter().zip(sums) {
+                    if before[point].is_some_and(|before| differ(before, sum) <= SETTLED) {
+                        total[point] = total[point].plus(1.0, sum);
+                    } else {
+                        left.push(point);
+                    }
+                    before[point] = Some(sum);
+                }
+                open = left;
             }
-            if before.is_some_and(|before| differ(before, sum) <= SETTLED) {
-                return Ok(sum);
+            for point in open {
+                total[point] =
+                    total[point].plus(1.0, self.pieces(cone, stretch, &points.some(&[point]))?);
             }
-            before = Some(sum);
         }
-        self.pieces(cone, stretch, wavelength_nm, &ray)
+        Ok(total)
     }
 
-    /// The same by pieces, halved until each has settled: for resonances that are narrow in angle.
-    fn pieces(
-        &self,
-        cone: &Cone,
-        stretch: Stretch,
-        wavelength_nm: f64,
-        ray: &dyn Fn(f64) -> Result<Tally, OpticsError>,
-    ) -> Result<Tally, OpticsError> {
+    /// The same at one point by pieces, halved until each has settled: for resonances that are narrow in angle.
+    fn pieces(&self, cone: &Cone, stretch: Stretch, point: &Points) -> Result<Tally, OpticsError> {
+        let wavelength_nm = point.wavelength(0);
         let along = Along::Angle { wavelength_nm };
-        let mesh = Mesh::build(&self.plan, &self.light, true, along, cone.range_rad())?;
+        let mesh = Mesh::build(self, true, along, cone.range_rad())?;
         let mut ends = vec![-1.0];
         ends.extend(mesh.points().map(|angle| cone.place(stretch, angle)).filter(|x| x.abs() < 1.0));
         ends.push(1.0);
         let rule = &self.rules[&NODES[0]];
-        let gauss = |lo: f64, hi: f64| {
-            let (middle, half) = (0.5 * (lo + hi), 0.5 * (hi - lo));
-            let mut sum = Tally::NONE;
-            for &(x, weight) in rule {
-                sum = sum.plus(weight * half, ray(middle + half * x)?);
+        // All nodes of some pieces at once.
+        let gauss = |pieces: &[(f64, f64)]| -> Result<Vec<Tally>, OpticsError> {
+            let mut rays = Vec::with_capacity(pieces.len() * rule.len());
+            for &(lo, hi) in pieces {
+                let (middle, half) = (0.5 * (lo + hi), 0.5 * (hi - lo));
+                rays.extend(
+                    rule.iter().map(|&(x, weight)| (weight * half, cone.ray(stretch, middle + half * x))),
+                );
             }
-            Ok::<Tally, OpticsError>(sum)
+            let angles: Vec<f64> = rays.iter().map(|ray| ray.1.angle_rad).collect();
+            let points = point.repeated(angles.len());
+            let both = |mode: usize| {
+                let shares = [f64::from(mode == 0), f64::from(mode == 1)];
+                self.rays(&points, &angles, shares)
+            };
+            let (s, p) = (both(0)?, both(1)?);
+            let each = rays.iter().zip(s.iter().zip(&p)).map(|((weight, ray), (s, p))| {
+                Tally::NONE.plus(weight * ray.shares[0], *s).plus(weight * ray.shares[1], *p)
+            });
+            let each: Vec<Tally> = each.collect();
+            let sum = |some: &[Tally]| some.iter().fold(Tally::NONE, |sum, tally| sum.plus(1.0, *tally));
+            Ok(each.chunks(rule.len()).map(sum).collect())
         };
-        let mut open: Vec<(f64, f64, Tally, u32)> = Vec::new();
-        for ends in ends.windows(2) {
-            open.push((ends[0], ends[1], gauss(ends[0], ends[1])?, 0));
-        }
+        let pieces: Vec<(f64, f64)> = ends.windows(2).map(|ends| (ends[0], ends[1])).collect();
+        let mut open: Vec<((f64, f64), Tally)> =
+            pieces.iter().copied().zip(gauss(&pieces)?).collect();
         let mut total = Tally::NONE;
-        while let Some((lo, hi, whole, depth)) = open.pop() {
-            let middle = 0.5 * (lo + hi);
-            let (left, right) = (gauss(lo, middle)?, gauss(middle, hi)?);
-            let both = Tally::NONE.plus(1.0, left).plus(1.0, right);
-            if depth > 40 || differ(whole, both) <= SETTLED * (hi - lo).max(1e-3) {
-                total = total.plus(1.0, both);
-            } else {
-                open.push((lo, middle, left, depth + 1));
-                open.push((middle, hi, right, depth + 1));
+        for depth in 0.. {
+            let halves: Vec<(f64, f64)> = open
+                .iter()
+                .flat_map(|&((lo, hi), _)| [(lo, 0.5 * (lo + hi)), (0.5 * (lo + hi), hi)])
+                .collect();
+            let found = gauss(&halves)?;
+            let mut next = Vec::new();
+            for ((&((lo, hi), whole), parts), tallies) in
+                open.iter().zip(halves.chunks(2)).zip(found.chunks(2))
+            {
+                let both = Tally::NONE.plus(1.0, tallies[0]).plus(1.0, tallies[1]);
+                if depth > 40 || differ(whole, both) <= SETTLED * (hi - lo).max(1e-3) {
+                    total = total.plus(1.0, both);
+                } else {
+                    next.extend(parts.iter().copied().zip(tallies.iter().copied()));
+                }
+            }
+            open = next;
+            if open.is_empty() {
+                break;
             }
         }
         Ok(total)

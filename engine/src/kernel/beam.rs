@@ -4,9 +4,12 @@ use std::f64::consts::FRAC_PI_2;
 
 use pulp::Arch;
 
-use super::{Channel, Media, Outcome, Points, Program, Spectrum, Tilt, Within};
+use super::{Channel, Media, Outcome, Points, Program, Spectrum, Tilt, WIDTH, Within};
 use crate::error::OpticsError;
-use crate::plan::Plan;
+use crate::plan::{Layer, Plan};
+
+/// So many halvings of the power on a single pass leave nothing that could make a fringe.
+const OPAQUE: f64 = 58.0;
 
 /// The media of a stack under one beam.
 #[derive(Clone, Debug)]
@@ -34,6 +37,26 @@ impl Beam {
         };
         let facets = plan.bounces.iter().flatten().map(|bounce| facet(bounce.angle_rad)).collect();
         Ok(Beam { media, facets })
+    }
+
+    /// The half-turns of one pass through each coating at a point. Light that does not come back from a film's far side makes no
+    /// fringe with the rest: there the film counts as none.
+    pub(crate) fn phases<'a>(
+        &'a self,
+        program: &'a Program,
+        point: usize,
+    ) -> impl Iterator<Item = f64> + 'a {
+        let (block, lane) = (point / WIDTH, point % WIDTH);
+        let (slabs, _) = self.media.slabs(block);
+        let turns = move |layer: &Layer| {
+            let slab = &slabs[layer.material][0];
+            if slab.halvings.0[lane] * layer.thickness_nm > OPAQUE {
+                0.0
+            } else {
+                slab.turns.0[lane] * layer.thickness_nm
+            }
+        };
+        program.coatings.iter().map(move |order| order.from_behind.iter().map(turns).sum())
     }
 
     /// What the stack does to light of the given polarisations (0 is s, 1 is p), by block.

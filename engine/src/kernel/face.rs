@@ -111,7 +111,7 @@ pub(crate) fn faces<S: Simd, const P: usize>(
         face.passed = zero.where_less(flux_in, passed, zero);
         face.share = zero.where_less(flux_in, share, zero);
         if lossless.before {
-            let both = reflectance + passed * power(fields.halved);
+            let both = face.reflectance + face.passed * power(fields.halved);
             face.reflectance = zero.of(1.0 + LOST).where_less(both, zero.of(f64::NAN), face.reflectance);
         }
         (face.numerator, face.denominator) = (difference, sum);

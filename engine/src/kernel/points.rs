@@ -72,6 +72,49 @@ impl Points {
         &self.wavelengths[block]
     }
 
+    /// The wavelength of a point, nm.
+    pub(crate) fn wavelength(&self, point: usize) -> f64 {
+        self.wavelengths[point / WIDTH].0[point % WIDTH]
+    }
+
+    /// The first point so many times.
+    pub(crate) fn repeated(&self, count: usize) -> Points {
+        let first = |row: &Row| Row([row.0[0]; WIDTH]);
+        let blocks = count.div_ceil(WIDTH);
+        let indices: Vec<[Row; 2]> =
+            self.indices[..self.media].iter().map(|[n, k]| [first(n), first(k)]).collect();
+        Points {
+            count,
+            media: self.media,
+            wavelengths: vec![first(&self.wavelengths[0]); blocks],
+            indices: indices.repeat(blocks),
+        }
+    }
+
+    /// Some of the points, by their numbers.
+    pub(crate) fn some(&self, chosen: &[usize]) -> Points {
+        let blocks = chosen.len().div_ceil(WIDTH);
+        let mut points = Points {
+            count: chosen.len(),
+            media: self.media,
+            wavelengths: Vec::with_capacity(blocks),
+            indices: Vec::with_capacity(blocks * self.media),
+        };
+        for some in chosen.chunks(WIDTH) {
+            let of = |lane: usize| some[lane.min(some.len() - 1)];
+            points.wavelengths.push(Row(std::array::from_fn(|lane| self.wavelength(of(lane)))));
+            for medium in 0..self.media {
+                let part = |part: usize| {
+                    Row(std::array::from_fn(|lane| {
+                        self.index(of(lane) / WIDTH, medium)[part].0[of(lane) % WIDTH]
+                    }))
+                };
+                points.indices.push([part(0), part(1)]);
+            }
+        }
+        points
+    }
+
     /// n and k of a material or mixture over a block.
     pub(crate) fn index(&self, block: usize, medium: usize) -> &[Row; 2] {
         &self.indices[block * self.media + medium]

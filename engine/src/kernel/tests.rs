@@ -106,7 +106,7 @@ fn agree(stack: &Stack, wavelengths: &[f64], angle_rad: f64) -> Result<(), TestC
             let absorbed = tilted.absorption(mode).expect("a point");
             let sum: f64 =
                 absorbed.films.iter().flatten().sum::<f64>() + absorbed.bodies.iter().sum::<f64>();
-            near(found.within.0[lane], sum, most, "absorbed")?;
+            near(found.within.0[lane], sum, 10.0 * most, "absorbed")?;
             for (coating, resonator) in tilted.resonators(mode).enumerate() {
                 let flat = program.flat();
                 let channel = &channels[block * program.channels(2) + p * flat + coating];
