@@ -71,7 +71,11 @@ pub fn extremes_over_angles(
 }
 
 /// The extremes along a range of angles at one wavelength.
-fn over_angles(probe: &Probe<'_>, wavelength_nm: f64, angles_rad: (f64, f64)) -> Result<Extremes, OpticsError> {
+fn over_angles(
+    probe: &Probe<'_>,
+    wavelength_nm: f64,
+    angles_rad: (f64, f64),
+) -> Result<Extremes, OpticsError> {
     let mesh = Mesh::build(probe, probe.cone.is_some(), Along::Angle { wavelength_nm }, angles_rad)?;
     let mut function = |angles_rad: &[f64]| probe.over_angles(wavelength_nm, angles_rad);
     let start = match mesh.values() {

@@ -80,11 +80,7 @@ fn refined(mut values: Vec<Point>, function: Function<'_>) -> Result<Vec<Point>,
 /// The zero between two points of opposite sign, by false position with halved ordinates and bisection.
 ///
 /// Source: M. Dowell, P. Jarratt, BIT 11, 168–174 (1971), "Illinois" modification.
-fn root(
-    mut a: Point,
-    mut b: Point,
-    function: Function<'_>,
-) -> Result<f64, OpticsError> {
+fn root(mut a: Point, mut b: Point, function: Function<'_>) -> Result<f64, OpticsError> {
     for turn in 0..200 {
         if (b.x - a.x).abs() <= 1e-7 {
             break;

@@ -27,10 +27,7 @@ pub(super) fn valued(points: &[f64], function: Function<'_>) -> Result<Vec<Point
 }
 
 /// The least and the greatest value over a mesh, its points ascending and with their values.
-pub(super) fn along(
-    mut values: Vec<Point>,
-    function: Function<'_>,
-) -> Result<(Point, Point), OpticsError> {
+pub(super) fn along(mut values: Vec<Point>, function: Function<'_>) -> Result<(Point, Point), OpticsError> {
     let nothing = OpticsError::Band { band_nm: (f64::NAN, f64::NAN) };
     let mut least = *values.iter().min_by(|a, b| a.y.total_cmp(&b.y)).ok_or(nothing.clone())?;
     let mut most = *values.iter().rev().max_by(|a, b| a.y.total_cmp(&b.y)).ok_or(nothing)?;

@@ -272,8 +272,7 @@ impl Builder<'_> {
         let (coatings, media) = (self.plan().coatings.len(), self.plan().pure());
         let phases = |sample: Sample| &self.found.phases[sample.at * coatings..(sample.at + 1) * coatings];
         let indices = |sample: Sample| &self.found.indices[sample.at * media..(sample.at + 1) * media];
-        let turned =
-            phases(left).iter().zip(phases(right)).map(|(a, b)| (a - b).abs()).fold(0.0, f64::max);
+        let turned = phases(left).iter().zip(phases(right)).map(|(a, b)| (a - b).abs()).fold(0.0, f64::max);
         let changed = indices(left)
             .iter()
             .zip(indices(right))
@@ -298,9 +297,8 @@ impl Builder<'_> {
                     && x <= triple[2].x + if triple[2].x == last.x { reach_right } else { 0.0 }
             };
             for channel in 0..self.channels {
-                let parts = [0, 1, 2].map(|place: usize| {
-                    &self.found.channels[triple[place].at * self.channels + channel]
-                });
+                let parts = [0, 1, 2]
+                    .map(|place: usize| &self.found.channels[triple[place].at * self.channels + channel]);
                 for zero in roots(triple, parts.map(|part| part.denominator), parts) {
                     if near(zero.re) {
                         let centre = zero.re.clamp(first.x, last.x);
@@ -353,11 +351,7 @@ impl Builder<'_> {
     }
 
     /// The mesh with new samples at ascending points between its own, and which are new.
-    fn merge(
-        &mut self,
-        mesh: Vec<Sample>,
-        between: &[f64],
-    ) -> Result<(Vec<Sample>, Vec<bool>), OpticsError> {
+    fn merge(&mut self, mesh: Vec<Sample>, between: &[f64]) -> Result<(Vec<Sample>, Vec<bool>), OpticsError> {
         let mut new = self.sample(between)?.into_iter().peekable();
         let mut merged = Vec::with_capacity(mesh.len() + between.len());
         let mut fresh = Vec::with_capacity(merged.capacity());
@@ -397,16 +391,16 @@ fn cluster(mesh: &[Sample], centre: f64, width: f64, wanted: &mut Vec<f64>) {
 
 /// The zeros of the parabola through three complex values at three real points, but for those so far off that a step of the
 /// mesh is finer than they are wide.
-fn roots(
-    triple: &[Sample],
-    values: [Complex64; 3],
-    parts: [&Channel; 3],
-) -> impl Iterator<Item = Complex64> {
+fn roots(triple: &[Sample], values: [Complex64; 3], parts: [&Channel; 3]) -> impl Iterator<Item = Complex64> {
     let scales = parts.map(|part| part.ln_scale);
     let greatest = scales[0].max(scales[1]).max(scales[2]);
     let [v0, v1, v2] = [0, 1, 2].map(|place: usize| {
         // Most fields have no scale of their own.
-        if scales[place] == greatest { values[place] } else { values[place] * (scales[place] - greatest).exp() }
+        if scales[place] == greatest {
+            values[place]
+        } else {
+            values[place] * (scales[place] - greatest).exp()
+        }
     });
     let (x0, x1, x2) = (triple[0].x, triple[1].x, triple[2].x);
     let first = (v1 - v0) * (1.0 / (x1 - x0));

@@ -159,12 +159,7 @@ impl<'a> Probe<'a> {
     }
 
     /// What adds up of rays of one angle, or of one for each point.
-    fn rays(
-        &self,
-        points: &Points,
-        angles_rad: &[f64],
-        shares: [f64; 2],
-    ) -> Result<Vec<Tally>, OpticsError> {
+    fn rays(&self, points: &Points, angles_rad: &[f64], shares: [f64; 2]) -> Result<Vec<Tally>, OpticsError> {
         let beam = Beam::new(&self.plan, points, angles_rad)?;
         let modes = Probe::modes(shares);
         let outcomes = beam.outcomes(&self.program, points, modes, self.within.as_deref());
@@ -241,8 +236,7 @@ impl<'a> Probe<'a> {
                 open = left;
             }
             for point in open {
-                total[point] =
-                    total[point].plus(1.0, self.pieces(cone, stretch, &points.some(&[point]))?);
+                total[point] = total[point].plus(1.0, self.pieces(cone, stretch, &points.some(&[point]))?);
             }
         }
         Ok(total)
@@ -281,8 +275,7 @@ impl<'a> Probe<'a> {
             Ok(each.chunks(rule.len()).map(sum).collect())
         };
         let pieces: Vec<(f64, f64)> = ends.windows(2).map(|ends| (ends[0], ends[1])).collect();
-        let mut open: Vec<((f64, f64), Tally)> =
-            pieces.iter().copied().zip(gauss(&pieces)?).collect();
+        let mut open: Vec<((f64, f64), Tally)> = pieces.iter().copied().zip(gauss(&pieces)?).collect();
         let mut total = Tally::NONE;
         for depth in 0.. {
             let halves: Vec<(f64, f64)> = open

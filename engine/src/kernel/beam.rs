@@ -41,11 +41,7 @@ impl Beam {
 
     /// The half-turns of one pass through each coating at a point. Light that does not come back from a film's far side makes no
     /// fringe with the rest: there the film counts as none.
-    pub(crate) fn phases<'a>(
-        &'a self,
-        program: &'a Program,
-        point: usize,
-    ) -> impl Iterator<Item = f64> + 'a {
+    pub(crate) fn phases<'a>(&'a self, program: &'a Program, point: usize) -> impl Iterator<Item = f64> + 'a {
         let (block, lane) = (point / WIDTH, point % WIDTH);
         let (slabs, _) = self.media.slabs(block);
         let turns = move |layer: &Layer| {

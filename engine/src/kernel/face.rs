@@ -118,4 +118,3 @@ pub(crate) fn faces<S: Simd, const P: usize>(
     }
     faces
 }
-

@@ -40,14 +40,8 @@ impl<S: Simd> Pair<S> {
     fn clear(self, cosine: Lanes<S>, over: Lanes<S>, times: Lanes<S>) -> Self {
         let Pair { b, c } = self;
         Pair {
-            b: Complex {
-                re: over.mul_add(c.im, cosine * b.re),
-                im: over.neg_mul_add(c.re, cosine * b.im),
-            },
-            c: Complex {
-                re: times.mul_add(b.im, cosine * c.re),
-                im: times.neg_mul_add(b.re, cosine * c.im),
-            },
+            b: Complex { re: over.mul_add(c.im, cosine * b.re), im: over.neg_mul_add(c.re, cosine * b.im) },
+            c: Complex { re: times.mul_add(b.im, cosine * c.re), im: times.neg_mul_add(b.re, cosine * c.im) },
         }
     }
 

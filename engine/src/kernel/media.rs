@@ -162,10 +162,8 @@ impl WithSimd for Tables<'_> {
                 let alpha = entry * Lanes::load(simd, &sine.0[lane..]);
                 for medium in 0..media.pure {
                     let [n, k] = points.index(block, medium);
-                    let index = Complex {
-                        re: Lanes::load(simd, &n.0[lane..]),
-                        im: Lanes::load(simd, &k.0[lane..]),
-                    };
+                    let index =
+                        Complex { re: Lanes::load(simd, &n.0[lane..]), im: Lanes::load(simd, &k.0[lane..]) };
                     let permittivity = index * index;
                     let cosine = Lanes::load(simd, &cosine.0[lane..]);
                     let square = if tilt.incident && medium == tilt.from {
@@ -183,7 +181,14 @@ impl WithSimd for Tables<'_> {
                         let inverse = normal.of(1.0) / normal;
                         let permittivity = permittivity.re;
                         fill_clear(s, lane, inverse_wavelength, normal, normal, inverse);
-                        fill_clear(p, lane, inverse_wavelength, normal, permittivity * inverse, normal / permittivity);
+                        fill_clear(
+                            p,
+                            lane,
+                            inverse_wavelength,
+                            normal,
+                            permittivity * inverse,
+                            normal / permittivity,
+                        );
                     } else {
                         media.kinds[at] = Kind::Dim;
                         let normal = at_least(square.upper_sqrt());

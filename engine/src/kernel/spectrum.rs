@@ -138,9 +138,7 @@ struct Run<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool
     both: Vec<Flow<S, 2>>,
 }
 
-impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool>
-    Run<'a, S, P, CHANNELS, LAYERS>
-{
+impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<'a, S, P, CHANNELS, LAYERS> {
     #[inline(always)]
     fn new(simd: S, modes: [usize; P], given: Spectrum<'a>) -> Self {
         let count = given.program.coatings.len();
@@ -285,7 +283,8 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool>
         let back = [0, 1].map(|mode: usize| returned[mode].mul_add(zero.of(share), lost[mode]));
         let transmittance = (passed[0] + passed[1]) * half;
         let reflectance = (back[0] + back[1]) * half;
-        self.links.front[at] = [Powers { reflectance, transmittance, passed: transmittance, halved: zero }; P];
+        self.links.front[at] =
+            [Powers { reflectance, transmittance, passed: transmittance, halved: zero }; P];
         if LAYERS {
             let to = &mut self.links.front_layers[at];
             to.clear();
@@ -306,7 +305,12 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool>
             let far = &links.front[last][p];
             if last == 0 {
                 let within = if LAYERS { self.sum_within(block, p, &[(one, zero)], &[]) } else { zero };
-                self.store(block, lane, p, [far.reflectance, far.passed, far.halved, far.transmittance, within]);
+                self.store(
+                    block,
+                    lane,
+                    p,
+                    [far.reflectance, far.passed, far.halved, far.transmittance, within],
+                );
                 continue;
             }
             // From the exit towards the light: the reflectance of everything from each coating on.
@@ -317,8 +321,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool>
                 let body = &program.bodies[at];
                 let (slabs, _) = self.given.media.slabs(block);
                 let slab = &slabs[body.material][self.modes[p]];
-                let halvings =
-                    Lanes::load(self.simd, &slab.halvings.0[lane..]) * one.of(body.thickness_nm);
+                let halvings = Lanes::load(self.simd, &slab.halvings.0[lane..]) * one.of(body.thickness_nm);
                 let passed = decay(halvings).0;
                 left[at] = (passed, halvings);
                 let (front, back) = (&links.front[at][p], &links.back[at][p]);
@@ -351,7 +354,13 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool>
 
     /// The absorptance in the layers and bodies that count.
     #[inline(always)]
-    fn sum_within(&self, block: usize, p: usize, arriving: &[(Lanes<S>, Lanes<S>)], bodies: &[(Lanes<S>, Lanes<S>)]) -> Lanes<S> {
+    fn sum_within(
+        &self,
+        block: usize,
+        p: usize,
+        arriving: &[(Lanes<S>, Lanes<S>)],
+        bodies: &[(Lanes<S>, Lanes<S>)],
+    ) -> Lanes<S> {
         let mut sum = Lanes::splat(self.simd, 0.0);
         let Some(within) = self.given.within else { return sum };
         let links = &self.links;
@@ -376,7 +385,14 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool>
     /// What the body behind a coating takes: what enters it, less what leaves it, less what the films about it take of the
     /// light in it.
     #[inline(always)]
-    fn body(&self, block: usize, p: usize, at: usize, arriving: &[(Lanes<S>, Lanes<S>)], bodies: &[(Lanes<S>, Lanes<S>)]) -> Lanes<S> {
+    fn body(
+        &self,
+        block: usize,
+        p: usize,
+        at: usize,
+        arriving: &[(Lanes<S>, Lanes<S>)],
+        bodies: &[(Lanes<S>, Lanes<S>)],
+    ) -> Lanes<S> {
         let zero = Lanes::splat(self.simd, 0.0);
         if self.given.points.is_lossless(block, self.given.program.bodies[at].material) {
             return zero;
@@ -384,16 +400,11 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool>
         let links = &self.links;
         let last = bodies.len();
         let (near, far) = (&links.front[at][p], &links.front[at + 1][p]);
-        let from_far = if at + 1 < last {
-            links.back[at + 1][p].transmittance * arriving[at + 1].1
-        } else {
-            zero
-        };
+        let from_far =
+            if at + 1 < last { links.back[at + 1][p].transmittance * arriving[at + 1].1 } else { zero };
         let entering = near.transmittance.mul_add(arriving[at].0, from_far);
-        let leaving = links.back[at][p].transmittance.mul_add(
-            arriving[at].1,
-            far.transmittance * arriving[at + 1].0,
-        );
+        let leaving =
+            links.back[at][p].transmittance.mul_add(arriving[at].1, far.transmittance * arriving[at + 1].0);
         let mut sum = entering - leaving;
         for layer in &links.back_layers[at] {
             sum = layer[p].neg_mul_add(arriving[at].1, sum);

@@ -32,8 +32,7 @@ fn stack(
     bodies: &[(usize, f64)],
     exit: usize,
 ) -> Stack {
-    let indices: Vec<Index> =
-        materials.iter().map(|&(n, k)| Index::constant(n, k).expect("valid")).collect();
+    let indices: Vec<Index> = materials.iter().map(|&(n, k)| Index::constant(n, k).expect("valid")).collect();
     let film = |&(material, nm): &(usize, f64)| Film::new(indices[material].clone(), nm);
     Stack {
         incident: Index::constant(incident, 0.0).expect("valid"),
@@ -104,18 +103,16 @@ fn agree(stack: &Stack, wavelengths: &[f64], angle_rad: f64) -> Result<(), TestC
                 near(ln, expected.ln_transmittance, allowed, "ln T")?;
             }
             let absorbed = tilted.absorption(mode).expect("a point");
-            let sum: f64 =
-                absorbed.films.iter().flatten().sum::<f64>() + absorbed.bodies.iter().sum::<f64>();
+            let sum: f64 = absorbed.films.iter().flatten().sum::<f64>() + absorbed.bodies.iter().sum::<f64>();
             near(found.within.0[lane], sum, 10.0 * most, "absorbed")?;
             for (coating, resonator) in tilted.resonators(mode).enumerate() {
                 let flat = program.flat();
                 let channel = &channels[block * program.channels(2) + p * flat + coating];
                 let scale = (channel.ln_scale.0[lane] - resonator.ln_scale).exp();
                 let size = resonator.denominator.norm() + resonator.numerator.norm();
-                for (found, expected) in [
-                    (&channel.denominator, resonator.denominator),
-                    (&channel.numerator, resonator.numerator),
-                ] {
+                for (found, expected) in
+                    [(&channel.denominator, resonator.denominator), (&channel.numerator, resonator.numerator)]
+                {
                     let off = (found[0].0[lane] * scale - expected.re)
                         .hypot(found[1].0[lane] * scale - expected.im);
                     prop_assert!(off <= 1e-9 * size, "N, D: {off} of {size}");
