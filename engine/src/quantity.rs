@@ -3,7 +3,7 @@
 use std::f64::consts::LN_2;
 
 use crate::error::OpticsError;
-use crate::kernel::{Outcome, Within};
+use crate::kernel::{Outcome, Wanted, Within};
 use crate::plan::{Layer, Plan};
 use crate::response::Polarisation;
 
@@ -131,6 +131,17 @@ impl Quantity {
             bodies: (0..plan.bodies.len()).map(|body| bodies.contains(&body)).collect(),
             exit: *exit,
         })
+    }
+
+    /// How what adds up changes with the powers of the whole.
+    pub(crate) fn wanted<'a>(&self, within: Option<&'a Within>) -> Wanted<'a> {
+        let nothing = Wanted { reflectance: 0.0, transmittance: 0.0, absorptance: false, within };
+        match self {
+            Quantity::Reflectance => Wanted { reflectance: 1.0, ..nothing },
+            Quantity::Transmittance | Quantity::OpticalDensity => Wanted { transmittance: 1.0, ..nothing },
+            Quantity::Absorptance => Wanted { absorptance: true, ..nothing },
+            _ => nothing,
+        }
     }
 
     /// What adds up of one polarisation at a point of a block; none where a number was lost.

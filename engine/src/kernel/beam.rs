@@ -4,7 +4,7 @@ use std::f64::consts::FRAC_PI_2;
 
 use pulp::Arch;
 
-use super::{Channel, Media, Outcome, Points, Program, Spectrum, Tilt, WIDTH, Within};
+use super::{Channel, Gradient, Media, Outcome, Points, Program, Row, Spectrum, Tilt, WIDTH, Wanted, Within};
 use crate::error::OpticsError;
 use crate::plan::{Layer, Plan};
 
@@ -95,5 +95,35 @@ impl Beam {
         };
         Arch::new().dispatch(run);
         (outcomes, channels)
+    }
+
+    /// A quantity and its changes with the thickness of every layer: by block, and by block and layer.
+    pub(crate) fn slopes(
+        &self,
+        program: &Program,
+        points: &Points,
+        shares: [f64; 2],
+        wanted: Wanted<'_>,
+    ) -> (Vec<Row>, Vec<Row>) {
+        let layers: usize = program.coatings.iter().map(|order| order.from_front.len()).sum();
+        let mut values = vec![Row::ZERO; points.blocks()];
+        let mut slopes = vec![Row::ZERO; points.blocks() * layers];
+        let modes: &[usize] = match shares {
+            [_, 0.0] => &[0],
+            [0.0, _] => &[1],
+            _ => &[0, 1],
+        };
+        Arch::new().dispatch(Gradient {
+            program,
+            points,
+            media: &self.media,
+            facets: &self.facets,
+            modes,
+            shares,
+            wanted,
+            values: &mut values,
+            slopes: &mut slopes,
+        });
+        (values, slopes)
     }
 }

@@ -11,7 +11,7 @@ use crate::lanes::{Complex, Lanes, decay, half_turn, power_of_two};
 use crate::plan::Layer;
 
 /// After how many films the fields' size is looked at. Between two looks it changes by less than 10^64.
-const LOOK: usize = 16;
+pub(crate) const LOOK: usize = 16;
 /// Outside of which the fields are brought back to a size of 1.
 const SMALL: f64 = 1e-60;
 const LARGE: f64 = 1e60;
@@ -65,10 +65,10 @@ pub(crate) struct Fields<S: Simd, const P: usize> {
 
 /// The sine and cosine of a film that absorbs, up to what is kept beside the fields.
 #[derive(Clone, Copy, Debug)]
-struct Turn<S: Simd> {
-    cosine: Complex<S>,
+pub(crate) struct Turn<S: Simd> {
+    pub(crate) cosine: Complex<S>,
     /// −i sin δ.
-    lift: Complex<S>,
+    pub(crate) lift: Complex<S>,
     norm: Lanes<S>,
     whole: Lanes<S>,
     halvings: Lanes<S>,
@@ -77,7 +77,7 @@ struct Turn<S: Simd> {
 impl<S: Simd> Turn<S> {
     /// With δ = x + iy: cos δ = cos x cosh y − i sin x sinh y, and −i sin δ = cos x sinh y − i sin x cosh y.
     #[inline(always)]
-    fn new(simd: S, slab: &Slab, lane: usize, thickness: Lanes<S>) -> Self {
+    pub(crate) fn new(simd: S, slab: &Slab, lane: usize, thickness: Lanes<S>) -> Self {
         let (sine, cosine, whole) = half_turn(Lanes::load(simd, &slab.turns.0[lane..]) * thickness);
         let halvings = Lanes::load(simd, &slab.halvings.0[lane..]) * thickness;
         // Both hyperbolic functions over e^y, whose square is 2^halvings.
@@ -95,7 +95,7 @@ impl<S: Simd> Turn<S> {
 
     /// With nothing kept beside the fields.
     #[inline(always)]
-    fn whole(self) -> Self {
+    pub(crate) fn whole(self) -> Self {
         let (left, _) = decay(self.halvings);
         let factor = sign_of(self.whole) / (self.norm * left).sqrt();
         Turn { cosine: self.cosine.scale(factor), lift: self.lift.scale(factor), ..self }
@@ -113,7 +113,8 @@ impl<S: Simd, const P: usize> Fields<S, P> {
         Fields { pairs, norm: zero.of(1.0), turned: zero, halved: zero }
     }
 
-    /// Through one film. The sign is kept only if `SIGNED`.
+    /// Through one film; its sine and cosine, up to the factor that was taken out, and of a mean of two media those for the last
+    /// polarisation. The sign is kept only if `SIGNED`.
     #[inline(always)]
     pub(crate) fn through<const SIGNED: bool>(
         &mut self,
@@ -123,7 +124,7 @@ impl<S: Simd, const P: usize> Fields<S, P> {
         modes: [usize; P],
         lane: usize,
         thickness_nm: f64,
-    ) {
+    ) -> (Complex<S>, Complex<S>) {
         let thickness = Lanes::splat(simd, thickness_nm);
         if kind == Kind::Clear {
             let (sine, cosine, whole) = half_turn(Lanes::load(simd, &slabs[0].turns.0[lane..]) * thickness);
@@ -138,7 +139,8 @@ impl<S: Simd, const P: usize> Fields<S, P> {
             if SIGNED {
                 self.turned = self.turned + whole;
             }
-            return;
+            let zero = thickness.of(0.0);
+            return (Complex { re: cosine, im: zero }, Complex { re: zero, im: -sine });
         }
         let mut turn = Turn::new(simd, &slabs[modes[0]], lane, thickness);
         for p in 0..P {
@@ -151,31 +153,30 @@ impl<S: Simd, const P: usize> Fields<S, P> {
             self.pairs[p] = self.pairs[p].dim(turn.cosine, over, times);
         }
         if kind == Kind::Mean {
-            self.look();
-            return;
+            return (turn.cosine, turn.lift);
         }
         self.norm = self.norm * turn.norm;
         self.halved = self.halved + turn.halvings;
         if SIGNED {
             self.turned = self.turned + turn.whole;
         }
+        (turn.cosine, turn.lift)
     }
 
-    /// Brings fields that have become very large or small back to a size near 1.
+    /// Brings fields that have become very large or small back to a size near 1; by which factor, if so.
     #[inline(always)]
-    pub(crate) fn look(&mut self) {
+    pub(crate) fn look(&mut self) -> Option<Lanes<S>> {
         let mut size = self.norm.of(0.0);
         for Pair { b, c } in self.pairs {
             size = size.max(b.re.abs().max(b.im.abs())).max(c.re.abs().max(c.im.abs()));
         }
         let (least, greatest) = (size.least(), size.greatest());
-        if least < SMALL || greatest > LARGE || self.norm.greatest() > LARGE {
-            self.rescale(size);
-        }
+        let extreme = least < SMALL || greatest > LARGE || self.norm.greatest() > LARGE;
+        if extreme { Some(self.rescale(size)) } else { None }
     }
 
     #[inline(always)]
-    fn rescale(&mut self, size: Lanes<S>) {
+    fn rescale(&mut self, size: Lanes<S>) -> Lanes<S> {
         let (of_fields, of_norm) = (exponent(size), exponent(self.norm));
         let factor = power_of_two(-of_fields);
         for pair in &mut self.pairs {
@@ -183,6 +184,7 @@ impl<S: Simd, const P: usize> Fields<S, P> {
         }
         self.norm = self.norm * power_of_two(-of_norm);
         self.halved = self.halved + of_fields + of_fields - of_norm;
+        factor
     }
 }
 
@@ -246,6 +248,9 @@ pub(crate) fn march<S: Simd, const P: usize, const SIGNED: bool, const FLOWS: bo
         for layer in some {
             let (slab, kind) = (&slabs[layer.material], kinds[layer.material]);
             fields.through::<SIGNED>(simd, slab, kind, modes, lane, layer.thickness_nm);
+            if kind == Kind::Mean {
+                fields.look();
+            }
             if FLOWS {
                 flows.push(fields.flow());
             }

@@ -5,16 +5,19 @@
 
 mod beam;
 mod face;
+mod gradient;
 mod march;
 mod media;
 mod points;
 mod program;
+mod slopes;
 mod spectrum;
 
 pub(crate) use beam::Beam;
 pub(crate) use media::{Media, Tilt};
 pub(crate) use points::{Points, Row, WIDTH};
 pub(crate) use program::Program;
+pub(crate) use slopes::{Gradient, Wanted};
 pub(crate) use spectrum::{Channel, Outcome, Spectrum, Within};
 
 #[cfg(test)]

@@ -1,0 +1,488 @@
+//! The change of a whole stack's quantity with the thickness of every layer, at every point.
+//!
+//! The sums over bodies and facets of [`Spectrum`](super::Spectrum) are gone through backwards: every intermediate result hands
+//! on how the quantity changes with it to those that it was made from.
+
+use pulp::{Simd, WithSimd};
+
+use super::gradient::{Coat, Passage, Place, Seeds};
+use super::media::Media;
+use super::points::{Points, Row, WIDTH};
+use super::program::Program;
+use super::spectrum::Within;
+use crate::lanes::{Lanes, decay};
+
+/// How a quantity changes with R and T of the whole; of the absorptance of some layers, which.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct Wanted<'a> {
+    pub(crate) reflectance: f64,
+    pub(crate) transmittance: f64,
+    /// Whether it is no less than zero by rounding.
+    pub(crate) absorptance: bool,
+    pub(crate) within: Option<&'a Within>,
+}
+
+/// One run over all points.
+pub(crate) struct Gradient<'a> {
+    pub(crate) program: &'a Program,
+    pub(crate) points: &'a Points,
+    pub(crate) media: &'a Media,
+    pub(crate) facets: &'a [Media],
+    /// Which polarisations, and the share of each.
+    pub(crate) modes: &'a [usize],
+    pub(crate) shares: [f64; 2],
+    pub(crate) wanted: Wanted<'a>,
+    /// By block: the quantity.
+    pub(crate) values: &'a mut [Row],
+    /// By block and layer, all coatings one after the other: its changes per nm.
+    pub(crate) slopes: &'a mut [Row],
+}
+
+impl WithSimd for Gradient<'_> {
+    type Output = ();
+
+    #[inline(always)]
+    fn with_simd<S: Simd>(self, simd: S) {
+        match (self.modes, self.wanted.within.is_some()) {
+            (&[mode], false) => Run::<S, 1, false>::new(simd, [mode], self).run(),
+            (&[mode], true) => Run::<S, 1, true>::new(simd, [mode], self).run(),
+            (_, false) => Run::<S, 2, false>::new(simd, [0, 1], self).run(),
+            (_, true) => Run::<S, 2, true>::new(simd, [0, 1], self).run(),
+        }
+    }
+}
+
+/// A value and how the quantity changes with it.
+#[derive(Clone, Copy, Debug)]
+struct Var<S: Simd> {
+    is: Lanes<S>,
+    bar: Lanes<S>,
+}
+
+impl<S: Simd> Var<S> {
+    #[inline(always)]
+    fn of(is: Lanes<S>) -> Self {
+        Var { is, bar: is.of(0.0) }
+    }
+
+    /// Something made from this changes by `by` for each unit of it.
+    #[inline(always)]
+    fn hands_on(&mut self, by: Lanes<S>) {
+        self.bar = self.bar + by;
+    }
+}
+
+/// A coating from one side for one polarisation.
+#[derive(Clone, Debug)]
+struct Link<S: Simd> {
+    reflectance: Var<S>,
+    transmittance: Var<S>,
+    /// What the layers take, from the far side towards the light, and how the quantity changes with each.
+    layers: Vec<Var<S>>,
+}
+
+impl<S: Simd> Link<S> {
+    #[inline(always)]
+    fn none(simd: S) -> Self {
+        let zero = Var::of(Lanes::splat(simd, 0.0));
+        Link { reflectance: zero, transmittance: zero, layers: Vec::new() }
+    }
+
+    /// What all layers take.
+    #[inline(always)]
+    fn sum(&self) -> Lanes<S> {
+        let mut sum = self.reflectance.is.of(0.0);
+        for layer in &self.layers {
+            sum = sum + layer.is;
+        }
+        sum
+    }
+
+    #[inline(always)]
+    fn hands_on_to_layers(&mut self, by: Lanes<S>) {
+        for layer in &mut self.layers {
+            layer.hands_on(by);
+        }
+    }
+}
+
+struct Run<'a, S: Simd, const P: usize, const LAYERS: bool> {
+    simd: S,
+    modes: [usize; P],
+    given: Gradient<'a>,
+    /// By coating: from the front and from behind.
+    passages: Vec<[Passage<S, P>; 2]>,
+    links: Vec<[[Link<S>; 2]; P]>,
+    /// By facet, s and p.
+    facets: Vec<Passage<S, 2>>,
+    weights: [Vec<Lanes<S>>; P],
+    both: [Vec<Lanes<S>>; 2],
+    changes: Vec<Lanes<S>>,
+}
+
+impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
+    #[inline(always)]
+    fn new(simd: S, modes: [usize; P], given: Gradient<'a>) -> Self {
+        let mut passages = Vec::new();
+        let mut links = Vec::new();
+        for _ in &given.program.coatings {
+            passages.push([Passage::empty(simd), Passage::empty(simd)]);
+            links.push(std::array::from_fn(|_| [Link::none(simd), Link::none(simd)]));
+        }
+        let mut facets = Vec::new();
+        for _ in given.facets {
+            facets.push(Passage::empty(simd));
+        }
+        let weights = std::array::from_fn(|_| Vec::new());
+        let both = [Vec::new(), Vec::new()];
+        Run { simd, modes, given, passages, links, facets, weights, both, changes: Vec::new() }
+    }
+
+    #[inline(always)]
+    fn run(mut self) {
+        let layers: usize = self.given.program.coatings.iter().map(|order| order.from_front.len()).sum();
+        let zero = Lanes::splat(self.simd, 0.0);
+        for block in 0..self.given.points.blocks() {
+            let mut lane = 0;
+            while lane < WIDTH {
+                self.changes.clear();
+                self.changes.resize(layers, zero);
+                self.there(block, lane);
+                let mut value = zero;
+                for p in 0..P {
+                    let share = zero.of(self.given.shares[self.modes[p]]);
+                    value = self.whole(block, lane, p, share).mul_add(share, value);
+                }
+                value.store(&mut self.given.values[block].0[lane..]);
+                self.back(block, lane);
+                let rows = &mut self.given.slopes[block * layers..(block + 1) * layers];
+                for (row, change) in rows.iter_mut().zip(&self.changes) {
+                    change.store(&mut row.0[lane..]);
+                }
+                lane += Lanes::<S>::COUNT;
+            }
+        }
+    }
+
+    #[inline(always)]
+    fn place(&self, block: usize, lane: usize) -> Place<'a, S, P> {
+        let Gradient { points, media, .. } = self.given;
+        Place { simd: self.simd, points, media, modes: self.modes, block, lane }
+    }
+
+    #[inline(always)]
+    fn coat(&self, at: usize, behind: bool) -> Coat<'a> {
+        let program = self.given.program;
+        let order = &program.coatings[at];
+        let (before, after) = program.sides(at);
+        if behind {
+            Coat { layers: &order.from_behind, entry: after, exit: before }
+        } else {
+            Coat { layers: &order.from_front, entry: before, exit: after }
+        }
+    }
+
+    /// Every coating solved from both sides.
+    #[inline(always)]
+    fn there(&mut self, block: usize, lane: usize) {
+        let Gradient { program, points, .. } = self.given;
+        let flat = program.flat();
+        for at in 0..flat {
+            let sides = if at < program.bodies.len() { 2 } else { 1 };
+            for side in 0..sides {
+                let (place, coat) = (self.place(block, lane), self.coat(at, side == 1));
+                let passage = &mut self.passages[at][side];
+                passage.go::<LAYERS>(place, coat);
+                for p in 0..P {
+                    let face = &passage.faces[p];
+                    let link = &mut self.links[at][p][side];
+                    link.reflectance = Var::of(face.reflectance);
+                    link.transmittance = Var::of(face.transmittance());
+                    if LAYERS {
+                        passage.taken(points, block, coat.layers, p, &mut self.both[0]);
+                        link.layers.clear();
+                        for taken in &self.both[0] {
+                            link.layers.push(Var::of(*taken));
+                        }
+                    }
+                }
+            }
+        }
+        if flat < program.coatings.len() {
+            self.textured(block, lane, flat);
+        }
+    }
+
+    /// The last coating on its facets.
+    #[inline(always)]
+    fn textured(&mut self, block: usize, lane: usize, at: usize) {
+        let Gradient { points, facets, program, .. } = self.given;
+        let coat = self.coat(at, false);
+        let zero = Lanes::splat(self.simd, 0.0);
+        let half = zero.of(0.5);
+        let (mut returned, mut back, mut passed) = ([zero.of(1.0); 2], zero, zero);
+        let mut layers = vec![zero; if LAYERS { coat.layers.len() } else { 0 }];
+        let mut share = 1.0;
+        for (number, (media, &next)) in facets.iter().zip(&program.facets).enumerate() {
+            let place = Place { simd: self.simd, points, media, modes: [0, 1], block, lane };
+            let passage = &mut self.facets[number];
+            passage.go::<LAYERS>(place, coat);
+            for mode in 0..2 {
+                let face = &passage.faces[mode];
+                back = returned[mode].mul_add(half * zero.of(share - next), back);
+                let arriving = returned[mode] * half * zero.of(next);
+                passed = arriving.mul_add(face.transmittance(), passed);
+                if LAYERS {
+                    passage.taken(points, block, coat.layers, mode, &mut self.both[0]);
+                    for (sum, taken) in layers.iter_mut().zip(&self.both[0]) {
+                        *sum = arriving.mul_add(*taken, *sum);
+                    }
+                }
+                returned[mode] = returned[mode] * face.reflectance;
+            }
+            share = next;
+        }
+        for mode in 0..2 {
+            back = returned[mode].mul_add(half * zero.of(share), back);
+        }
+        for p in 0..P {
+            let link = &mut self.links[at][p][0];
+            link.reflectance = Var::of(back);
+            link.transmittance = Var::of(passed);
+            link.layers.clear();
+            for layer in &layers {
+                link.layers.push(Var::of(*layer));
+            }
+        }
+    }
+
+    /// The quantity of the whole for one polarisation; every link is told how it changes with it.
+    #[inline(always)]
+    fn whole(&mut self, block: usize, lane: usize, p: usize, share: Lanes<S>) -> Lanes<S> {
+        let Gradient { program, points, media, wanted, .. } = self.given;
+        let last = program.coatings.len() - 1;
+        let (zero, one) = (share.of(0.0), share.of(1.0));
+        let links = &mut self.links;
+        // There, as the spectrum's kernel goes.
+        let mut passed = vec![one; last];
+        let mut gain = vec![Var::of(one); last];
+        let mut behind = vec![Var::of(links[last][p][0].reflectance.is); last + 1];
+        for at in (0..last).rev() {
+            let (slabs, _) = media.slabs(block);
+            let body = &program.bodies[at];
+            let halvings = Lanes::load(self.simd, &slabs[body.material][self.modes[p]].halvings.0[lane..]);
+            passed[at] = decay(halvings * one.of(body.thickness_nm)).0;
+            let twice = passed[at] * passed[at];
+            let [front, back] = &links[at][p];
+            let lost = (back.reflectance.is * behind[at + 1].is).neg_mul_add(twice, one);
+            gain[at] = Var::of(zero.where_less(lost, one / lost, one));
+            let returned = front.transmittance.is * back.transmittance.is * twice * behind[at + 1].is;
+            behind[at] = Var::of(returned.mul_add(gain[at].is, front.reflectance.is));
+        }
+        let mut ahead = vec![Var::of(one); last + 1];
+        let mut back_again = vec![Var::of(zero); last];
+        for at in 0..last {
+            let step = links[at][p][0].transmittance.is * gain[at].is * passed[at];
+            ahead[at + 1] = Var::of(ahead[at].is * step);
+            back_again[at] = Var::of(ahead[at + 1].is * behind[at + 1].is * passed[at]);
+        }
+        let transmittance = ahead[last].is * links[last][p][0].transmittance.is;
+        // The quantity, and how it changes with R, T and what the layers and bodies take.
+        let (reflectance, mut of_r, mut of_t) =
+            (behind[0].is, one.of(wanted.reflectance), one.of(wanted.transmittance));
+        let mut value = reflectance.mul_add(of_r, transmittance * of_t);
+        if wanted.absorptance {
+            let rest = (one - reflectance) - transmittance;
+            let some = !points.all_lossless(block, program.exit);
+            value = if some { rest.max(zero) } else { zero };
+            // Only rounding makes it less than nothing, and has no part in its change.
+            let counts = if some { -one } else { zero };
+            (of_r, of_t) = (counts, counts);
+        }
+        if LAYERS && let Some(within) = wanted.within {
+            if within.exit {
+                value = value + transmittance;
+                of_t = of_t + one;
+            }
+            for (at, counts) in within.layers.iter().enumerate() {
+                let number = counts.len();
+                for (layer, _) in counts.iter().enumerate().filter(|(_, counts)| **counts) {
+                    // From the front the list runs from the far side.
+                    let taken = &mut links[at][p][0].layers[number - 1 - layer];
+                    value = taken.is.mul_add(ahead[at].is, value);
+                    ahead[at].hands_on(taken.is * share);
+                    taken.hands_on(ahead[at].is * share);
+                    if at < last {
+                        let taken = &mut links[at][p][1].layers[layer];
+                        value = taken.is.mul_add(back_again[at].is, value);
+                        back_again[at].hands_on(taken.is * share);
+                        taken.hands_on(back_again[at].is * share);
+                    }
+                }
+            }
+            for (at, _) in within.bodies.iter().enumerate().filter(|(_, counts)| **counts) {
+                if points.is_lossless(block, program.bodies[at].material) {
+                    continue;
+                }
+                let (near, far) = links.split_at_mut(at + 1);
+                let [front, back] = &mut near[at][p];
+                let [next, next_back] = &mut far[0][p];
+                let (to_next, from_next) = (ahead[at + 1].is, back_again[at].is);
+                value = front.transmittance.is.mul_add(ahead[at].is, value);
+                ahead[at].hands_on(front.transmittance.is * share);
+                front.transmittance.hands_on(ahead[at].is * share);
+                if at + 1 < last {
+                    value = next_back.transmittance.is.mul_add(back_again[at + 1].is, value);
+                    back_again[at + 1].hands_on(next_back.transmittance.is * share);
+                    next_back.transmittance.hands_on(back_again[at + 1].is * share);
+                }
+                let leaving = back.transmittance.is + back.sum();
+                value = leaving.neg_mul_add(from_next, value);
+                back_again[at].hands_on(-(leaving * share));
+                back.transmittance.hands_on(-(from_next * share));
+                back.hands_on_to_layers(-(from_next * share));
+                let leaving = next.transmittance.is + next.sum();
+                value = leaving.neg_mul_add(to_next, value);
+                ahead[at + 1].hands_on(-(leaving * share));
+                next.transmittance.hands_on(-(to_next * share));
+                next.hands_on_to_layers(-(to_next * share));
+            }
+        }
+        // And back.
+        let of_t = of_t * share;
+        ahead[last].hands_on(of_t * links[last][p][0].transmittance.is);
+        links[last][p][0].transmittance.hands_on(of_t * ahead[last].is);
+        for at in (0..last).rev() {
+            let front = &mut links[at][p][0];
+            let bar = back_again[at].bar * passed[at];
+            let (next, far) = (ahead[at + 1], behind[at + 1].is);
+            ahead[at + 1].hands_on(bar * far);
+            behind[at + 1].hands_on(bar * next.is);
+            let bar = ahead[at + 1].bar * passed[at];
+            let (t, g) = (front.transmittance.is, gain[at].is);
+            let here = ahead[at].is;
+            ahead[at].hands_on(bar * t * g);
+            front.transmittance.hands_on(bar * here * g);
+            gain[at].hands_on(bar * here * t);
+        }
+        behind[0].hands_on(of_r * share);
+        for at in 0..last {
+            let [front, back] = &mut links[at][p];
+            let (bar, twice) = (behind[at].bar, passed[at] * passed[at]);
+            let (t, u) = (front.transmittance.is, back.transmittance.is);
+            let (g, far) = (gain[at].is, behind[at + 1].is);
+            front.reflectance.hands_on(bar);
+            front.transmittance.hands_on(bar * u * twice * far * g);
+            back.transmittance.hands_on(bar * t * twice * far * g);
+            behind[at + 1].hands_on(bar * t * u * twice * g);
+            gain[at].hands_on(bar * t * u * twice * far);
+            let bar = gain[at].bar * g * g * twice;
+            let reflectance = back.reflectance.is;
+            back.reflectance.hands_on(bar * far);
+            behind[at + 1].hands_on(bar * reflectance);
+        }
+        links[last][p][0].reflectance.hands_on(behind[last].bar);
+        value
+    }
+
+    /// From the links back to the films.
+    #[inline(always)]
+    fn back(&mut self, block: usize, lane: usize) {
+        let program = self.given.program;
+        let flat = program.flat();
+        let zero = Lanes::splat(self.simd, 0.0);
+        let mut first = 0;
+        for at in 0..program.coatings.len() {
+            let number = program.coatings[at].from_front.len();
+            if at == flat {
+                self.textured_back(block, lane, at, first);
+                break;
+            }
+            let sides = if at < program.bodies.len() { 2 } else { 1 };
+            for side in 0..sides {
+                let mut seeds = [Seeds { reflectance: zero, transmittance: zero }; P];
+                for p in 0..P {
+                    let link = &self.links[at][p][side];
+                    seeds[p] = Seeds {
+                        reflectance: link.reflectance.bar,
+                        transmittance: link.transmittance.bar,
+                    };
+                    self.weights[p].clear();
+                    for (layer, taken) in self.coat(at, side == 1).layers.iter().zip(&link.layers) {
+                        // A film that does not absorb takes nothing, whatever its thickness.
+                        let clear = self.given.points.is_lossless(block, layer.material);
+                        self.weights[p].push(if clear { zero } else { taken.bar });
+                    }
+                }
+                let (place, coat) = (self.place(block, lane), self.coat(at, side == 1));
+                let changes = &mut self.changes[first..first + number];
+                if side == 1 {
+                    changes.reverse();
+                }
+                self.passages[at][side].back::<LAYERS>(place, coat, &seeds, &self.weights, changes);
+                if side == 1 {
+                    changes.reverse();
+                }
+            }
+            first += number;
+        }
+    }
+
+    /// The same for the facets.
+    #[inline(always)]
+    fn textured_back(&mut self, block: usize, lane: usize, at: usize, first: usize) {
+        let Gradient { points, facets, program, .. } = self.given;
+        let coat = self.coat(at, false);
+        let zero = Lanes::splat(self.simd, 0.0);
+        let half = zero.of(0.5);
+        let (mut of_r, mut of_t) = (zero, zero);
+        let mut of_layers = vec![zero; if LAYERS { coat.layers.len() } else { 0 }];
+        for p in 0..P {
+            let link = &self.links[at][p][0];
+            of_r = of_r + link.reflectance.bar;
+            of_t = of_t + link.transmittance.bar;
+            for (sum, layer) in of_layers.iter_mut().zip(&link.layers) {
+                *sum = *sum + layer.bar;
+            }
+        }
+        // What has come as far as each facet.
+        let mut arrived: Vec<[Lanes<S>; 2]> = vec![[zero.of(1.0); 2]];
+        for passage in &self.facets {
+            let before = arrived[arrived.len() - 1];
+            let [s, p] = &passage.faces;
+            arrived.push([before[0] * s.reflectance, before[1] * p.reflectance]);
+        }
+        let end = facets.len();
+        let share = |number: usize| if number == 0 { 1.0 } else { program.facets[number - 1] };
+        let mut bar = [of_r * half * zero.of(share(end)); 2];
+        for number in (0..end).rev() {
+            let media = &facets[number];
+            let passage = &self.facets[number];
+            let (before, next) = (share(number), share(number + 1));
+            let mut seeds = [Seeds { reflectance: zero, transmittance: zero }; 2];
+            for mode in 0..2 {
+                let came = arrived[number][mode];
+                let arriving = came * half * zero.of(next);
+                let face = &passage.faces[mode];
+                seeds[mode] =
+                    Seeds { reflectance: bar[mode] * came, transmittance: of_t * arriving };
+                let mut inner = of_t * face.transmittance();
+                self.both[mode].clear();
+                if LAYERS {
+                    let mut taken = Vec::new();
+                    passage.taken(points, block, coat.layers, mode, &mut taken);
+                    for ((layer, taken), of_layer) in coat.layers.iter().zip(&taken).zip(&of_layers) {
+                        inner = of_layer.mul_add(*taken, inner);
+                        let clear = points.is_lossless(block, layer.material);
+                        self.both[mode].push(if clear { zero } else { *of_layer * arriving });
+                    }
+                }
+                bar[mode] = (bar[mode] * face.reflectance)
+                    + half * (of_r * zero.of(before - next) + inner * zero.of(next));
+            }
+            let place = Place { simd: self.simd, points, media, modes: [0, 1], block, lane };
+            let changes = &mut self.changes[first..first + coat.layers.len()];
+            passage.back::<LAYERS>(place, coat, &seeds, &self.both, changes);
+        }
+    }
+}
