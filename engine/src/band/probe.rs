@@ -80,6 +80,27 @@ impl<'a> Probe<'a> {
         })
     }
 
+    /// For a plan that is known already and films as a program has them.
+    pub(crate) fn prepared(
+        plan: &'a Plan,
+        program: &'a Program,
+        quantity: &'a Quantity,
+        light: &Light,
+    ) -> Result<Probe<'a>, OpticsError> {
+        let cone = Cone::new(light)?;
+        let sizes: &[usize] = if cone.is_some() { &NODES } else { &[] };
+        let rules = sizes.iter().map(|&size| (size, gauss_legendre(size))).collect();
+        Ok(Probe {
+            plan: Cow::Borrowed(plan),
+            program: Cow::Borrowed(program),
+            quantity,
+            within: quantity.within(plan).map(Cow::Owned),
+            light: *light,
+            cone,
+            rules: Cow::Owned(rules),
+        })
+    }
+
     /// The same under a beam of another angle.
     pub(crate) fn at_angle(&self, angle_rad: f64) -> Result<Probe<'_>, OpticsError> {
         let light = Light { angle_rad, ..self.light };
@@ -126,6 +147,14 @@ impl<'a> Probe<'a> {
             None => self.rays(points, &[self.light.angle_rad], self.light.polarisation.shares())?,
             Some(cone) => self.cones(cone, points)?,
         };
+        self.told(points, &tallies)
+    }
+
+    /// The values at points under the parallel beam that this light is, prepared already.
+    pub(crate) fn values_under(&self, beam: &Beam, points: &Points) -> Result<Vec<f64>, OpticsError> {
+        let shares = self.light.polarisation.shares();
+        let outcomes = beam.outcomes(&self.program, points, Probe::modes(shares), self.within.as_deref());
+        let tallies = self.tallies(points, &[self.light.angle_rad], shares, &outcomes)?;
         self.told(points, &tallies)
     }
 

@@ -128,7 +128,14 @@ impl<S: Simd, const P: usize> Passage<S, P> {
 
     /// What each layer takes, from the far side towards the light.
     #[inline(always)]
-    pub(crate) fn taken(&self, points: &Points, block: usize, layers: &[Layer], p: usize, to: &mut Vec<Lanes<S>>) {
+    pub(crate) fn taken(
+        &self,
+        points: &Points,
+        block: usize,
+        layers: &[Layer],
+        p: usize,
+        to: &mut Vec<Lanes<S>>,
+    ) {
         to.clear();
         let share = self.faces[p].share;
         let mut far = share * self.exit[p].flux() * self.flows[0];
@@ -275,4 +282,3 @@ impl<S: Simd, const P: usize> Passage<S, P> {
         sum * share
     }
 }
-

@@ -143,6 +143,19 @@ impl Points {
         }
     }
 
+    /// # Errors
+    /// Where a material is no longer one that can be.
+    pub(crate) fn check(&self, medium: usize) -> Result<(), IndexError> {
+        for point in 0..self.count {
+            let index = self.at(point, medium);
+            if index.re <= 0.0 {
+                let (wavelength_nm, n, k) = (self.wavelength(point), index.re, index.im);
+                return Err(IndexError::NotPhysical { wavelength_nm, n, k });
+            }
+        }
+        Ok(())
+    }
+
     fn check_incident(&self) -> Result<(), OpticsError> {
         for point in 0..self.count {
             let k = self.at(point, 0).im;

@@ -403,10 +403,8 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
                 let mut seeds = [Seeds { reflectance: zero, transmittance: zero }; P];
                 for p in 0..P {
                     let link = &self.links[at][p][side];
-                    seeds[p] = Seeds {
-                        reflectance: link.reflectance.bar,
-                        transmittance: link.transmittance.bar,
-                    };
+                    seeds[p] =
+                        Seeds { reflectance: link.reflectance.bar, transmittance: link.transmittance.bar };
                     self.weights[p].clear();
                     for (layer, taken) in self.coat(at, side == 1).layers.iter().zip(&link.layers) {
                         // A film that does not absorb takes nothing, whatever its thickness.
@@ -464,8 +462,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
                 let came = arrived[number][mode];
                 let arriving = came * half * zero.of(next);
                 let face = &passage.faces[mode];
-                seeds[mode] =
-                    Seeds { reflectance: bar[mode] * came, transmittance: of_t * arriving };
+                seeds[mode] = Seeds { reflectance: bar[mode] * came, transmittance: of_t * arriving };
                 let mut inner = of_t * face.transmittance();
                 self.both[mode].clear();
                 if LAYERS {

@@ -117,12 +117,21 @@ impl<'a> Sketch<'a> {
         }
     }
 
-    /// What the samples of a stack come to, its light tilted by so many rad.
-    pub(super) fn verdict(&self, stack: &Stack, tilt: f64) -> Result<Verdict, OpticsError> {
+    /// Ready for many parts of a stack, in which the indices of some films may be off.
+    pub(super) fn sampler(
+        &self,
+        stack: &Stack,
+        off: &[(usize, usize)],
+    ) -> Result<engine::Sampler, OpticsError> {
+        engine::Sampler::new(stack, &self.quantity, &self.beams, off)
+    }
+
+    /// What the samples of a part come to, its light tilted by so many rad.
+    pub(super) fn verdict(&self, part: &engine::Part<'_>, tilt: f64) -> Result<Verdict, OpticsError> {
         let mut values = Vec::with_capacity(self.beams.len());
-        for (light, wavelengths) in &self.beams {
+        for (at, (light, _)) in self.beams.iter().enumerate() {
             for light in self.tilted(light, tilt) {
-                values.push(engine::values(stack, &self.quantity, &light, wavelengths)?);
+                values.push(part.values(at, &light)?);
             }
         }
         Ok(self.total(values))

@@ -5,7 +5,7 @@ use crate::model::{Chamber, Deposit, Layer, Recipe, Spread, Stack, Variation};
 use crate::report::{Cause, Varying};
 use crate::syntax::ast::{Each, SpreadKind};
 use overcoat_engine::{self as engine, Film, Gradient, Index, ModelError, Profile};
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 /// One number that is drawn.
 pub(super) struct Draw {
@@ -85,36 +85,53 @@ impl Draws {
         (hash ^ (hash >> 32)) as u32
     }
 
-    /// A part: the engine's stack with these draws, each in its units, and by how much its light is tilted, rad.
-    pub(super) fn part(
-        &self,
-        optics: &Optics,
-        elements: usize,
-        units: &[f64],
-    ) -> Result<(engine::Stack, f64), ModelError> {
-        let mut thickness = vec![0.0; elements];
-        let mut index = vec![0.0; elements];
+    /// The elements whose index is drawn.
+    pub(super) fn shifted(&self) -> BTreeSet<usize> {
+        let index = |effect: &Effect| match *effect {
+            Effect::Index(element, _) => Some(element),
+            _ => None,
+        };
+        self.draws.iter().flat_map(|draw| draw.effects.iter().filter_map(index)).collect()
+    }
+
+    /// A part: by how much its elements are off with these draws, each in its units, and by how much its light is tilted, rad.
+    pub(super) fn part(&self, elements: usize, units: &[f64]) -> (Vec<Off>, f64) {
+        let mut off = vec![Off::default(); elements];
         let mut tilt = 0.0;
         for (draw, unit) in self.draws.iter().zip(units) {
             for effect in &draw.effects {
                 match *effect {
-                    Effect::Thickness(element, nm) => thickness[element] += nm * unit,
-                    Effect::Index(element, by) => index[element] += by * unit,
+                    Effect::Thickness(element, nm) => off[element].growth += nm * unit,
+                    Effect::Index(element, by) => off[element].shift += by * unit,
                     Effect::Tilt(radians) => tilt += radians * unit,
                 }
             }
         }
+        (off, tilt)
+    }
+
+    /// The engine's stack of a part.
+    pub(super) fn stack(optics: &Optics, off: &[Off]) -> Result<engine::Stack, ModelError> {
         let mut stack = optics.forward().clone();
-        for element in 0..elements {
+        for (element, off) in off.iter().enumerate() {
             let Some((coating, film)) = optics.film_of(element, false) else { continue };
             let film = &mut stack.coatings[coating][film];
-            film.thickness_nm = (film.thickness_nm + thickness[element]).max(0.0);
-            if index[element] != 0.0 {
-                shift(film, index[element])?;
+            film.thickness_nm = (film.thickness_nm + off.growth).max(0.0);
+            if off.shift != 0.0 {
+                shift(film, off.shift)?;
             }
         }
-        Ok((stack, tilt))
+        Ok(stack)
     }
+}
+
+/// By how much an element of a part is off.
+#[derive(Clone, Copy, Debug, Default)]
+pub(super) struct Off {
+    /// Of its thickness, nm.
+    pub(super) growth: f64,
+    /// Of its index.
+    pub(super) shift: f64,
 }
 
 /// A film of an index greater by dn.

@@ -21,7 +21,8 @@ use super::sketch::{Sketch, Verdict};
 use crate::model::{Angles, Beam, Recipe, Requirement, Stack};
 use crate::report::{RequirementYield, WorstDraw, WorstPart, YieldReport};
 use crate::syntax::ast::SpreadKind;
-use draws::Draws;
+use draws::{Draws, Off};
+use overcoat_engine::{Change, Sampler};
 use rayon::prelude::*;
 use std::sync::Arc;
 use tally::Tally;
@@ -56,7 +57,8 @@ pub(super) struct Simulation<'a> {
 /// A requirement that counts, as its parts are judged.
 struct Promise {
     requirement: Arc<Requirement>,
-    sketch: Option<Sketch<'static>>,
+    /// What is sampled, and the stack ready for it.
+    sketch: Option<(Sketch<'static>, Sampler)>,
     /// What the full evaluation of the recipe as written gives more than its samples.
     offset: Verdict,
     /// How near to the bound samples are not to be trusted.
@@ -93,13 +95,21 @@ impl<'a> Simulation<'a> {
         let asked = Asked { requirement, stack: self.stack, optics: self.optics, engine };
         for across in ACROSS {
             let Some(sketch) = Sketch::new(&asked, judged, &[judged.at], across) else { return Ok(chosen) };
-            let Ok(here) = sketch.verdict(engine, 0.0) else { return Ok(chosen) };
+            let off: Vec<(usize, usize)> = self
+                .draws
+                .shifted()
+                .into_iter()
+                .filter_map(|element| self.optics.film_of(element, requirement.from_exit))
+                .collect();
+            let Ok(sampler) = sketch.sampler(engine, &off) else { return Ok(chosen) };
+            let here = sampler.part(&[]).and_then(|part| sketch.verdict(&part, 0.0));
+            let Ok(here) = here else { return Ok(chosen) };
             if !here.margin.is_finite() || !judged.margin.is_finite() {
                 return Ok(chosen);
             }
             let value = judged.value.unwrap_or(0.0) - here.value;
             chosen.offset = Verdict { margin: judged.margin - here.margin, value };
-            chosen.sketch = Some(sketch);
+            chosen.sketch = Some((sketch, sampler));
             let mut doubt = 0.0_f64;
             for number in 0..COMPARED {
                 let units = self.units(number);
@@ -126,10 +136,16 @@ impl<'a> Simulation<'a> {
 
     /// A requirement of a part by its samples.
     fn sampled(&self, promise: &Promise, units: &[f64]) -> Result<Verdict, Trouble> {
-        let Some(sketch) = &promise.sketch else { return self.full(&promise.requirement, units) };
-        let (stack, tilt) = self.part(&promise.requirement, units)?;
-        let found =
-            sketch.verdict(&stack, tilt).map_err(|error| self.trouble(&error, &promise.requirement))?;
+        let requirement = &promise.requirement;
+        let Some((sketch, sampler)) = &promise.sketch else { return self.full(requirement, units) };
+        let (off, tilt) = self.off(units);
+        let change = |(element, off): (usize, &Off)| {
+            let film = self.optics.film_of(element, requirement.from_exit)?;
+            Some(Change { film, growth_nm: off.growth, shift: off.shift })
+        };
+        let changes: Vec<Change> = off.iter().enumerate().filter_map(change).collect();
+        let found = sampler.part(&changes).and_then(|part| sketch.verdict(&part, tilt));
+        let found = found.map_err(|error| self.trouble(&error, requirement))?;
         Ok(Verdict {
             margin: found.margin + promise.offset.margin,
             value: found.value + promise.offset.value,
@@ -162,11 +178,17 @@ impl<'a> Simulation<'a> {
                 what: "a part of this index".to_owned(),
             })
         };
-        let (forward, tilt) =
-            self.draws.part(self.optics, self.stack.elements.len(), units).map_err(|_| beyond())?;
+        let (off, tilt) = self.off(units);
+        let forward = Draws::stack(self.optics, &off).map_err(|_| beyond())?;
         let stack = if requirement.from_exit { forward.reversed().ok_or_else(beyond)? } else { forward };
+        Ok((stack, tilt))
+    }
+
+    /// By how much the elements of a part are off, and how its light is tilted, rad.
+    fn off(&self, units: &[f64]) -> (Vec<Off>, f64) {
+        let (off, tilt) = self.draws.part(self.stack.elements.len(), units);
         // How pyramids take light at an angle is not known; theirs is the angle that they have.
-        Ok((stack, if self.stack.exit.textured.is_some() { 0.0 } else { tilt }))
+        (off, if self.stack.exit.textured.is_some() { 0.0 } else { tilt })
     }
 
     fn trouble(&self, error: &overcoat_engine::OpticsError, requirement: &Requirement) -> Trouble {
