@@ -11,7 +11,7 @@ use crate::graded::{Gradient, Profile};
 use crate::kernel::{Beam, Points, Program};
 use crate::plan::{Layer, Plan};
 use crate::quantity::{Light, Quantity};
-use crate::stack::Stack;
+use crate::stack::{Film, Stack};
 
 /// How one film of a part is off.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -31,6 +31,8 @@ pub struct Sampler {
     quantity: Quantity,
     plan: Plan,
     program: Program,
+    /// The thickness of every film, by coating, nm.
+    whole: Vec<Vec<f64>>,
     beams: Vec<Sampled>,
     /// The media of the films whose index may be off, each film's its own; none for a graded one.
     shifted: BTreeMap<(usize, usize), Option<usize>>,
@@ -82,7 +84,9 @@ impl Sampler {
             sampled.push(Sampled { light: *light, wavelengths_nm: wavelengths_nm.clone(), points, beam });
         }
         let program = Program::new(&plan);
-        Ok(Sampler { stack, quantity: quantity.clone(), plan, program, beams: sampled, shifted })
+        let thickness = |films: &Vec<Film>| films.iter().map(|film| film.thickness_nm).collect();
+        let whole = stack.coatings.iter().map(thickness).collect();
+        Ok(Sampler { whole, stack, quantity: quantity.clone(), plan, program, beams: sampled, shifted })
     }
 
     /// A part whose films are off by so much.
@@ -97,15 +101,19 @@ impl Sampler {
             part.stack = Some(self.changed(changes)?);
             return Ok(part);
         }
+        let mut growth: Vec<Vec<f64>> = self.whole.iter().map(|films| vec![0.0; films.len()]).collect();
         for change in changes {
             let (coating, film) = change.film;
-            let order = part.program.coatings.get_mut(coating).ok_or(OpticsError::NoSuchPlace)?;
-            grow(&mut order.from_front, film, change.growth_nm);
-            grow(&mut order.from_behind, film, change.growth_nm);
+            let own = growth.get_mut(coating).and_then(|films| films.get_mut(film));
+            *own.ok_or(OpticsError::NoSuchPlace)? += change.growth_nm;
             if change.shift != 0.0 {
                 let medium = self.shifted.get(&change.film).copied().flatten();
                 part.shifts.push((medium.ok_or(OpticsError::NoSuchPlace)?, change.shift));
             }
+        }
+        for ((order, growth), whole) in part.program.coatings.iter_mut().zip(&growth).zip(&self.whole) {
+            grow(&mut order.from_front, growth, whole);
+            grow(&mut order.from_behind, growth, whole);
         }
         Ok(part)
     }
@@ -135,18 +143,15 @@ impl Sampler {
     }
 }
 
-/// Makes the layers of a film thicker, each in its share.
-fn grow(layers: &mut [Layer], film: usize, growth_nm: f64) {
-    let own = |layer: &&mut Layer| layer.film == film;
-    let (mut whole, mut count) = (0.0, 0);
-    for layer in layers.iter_mut().filter(own) {
-        whole += layer.thickness_nm;
-        count += 1;
-    }
-    let grown = (whole + growth_nm).max(0.0);
-    for layer in layers.iter_mut().filter(own) {
-        layer.thickness_nm =
-            if whole > 0.0 { layer.thickness_nm * grown / whole } else { grown / f64::from(count) };
+/// Makes the layers of every film thicker, each in its share; `whole` are the films' thicknesses as written.
+fn grow(layers: &mut [Layer], growth: &[f64], whole: &[f64]) {
+    for film in layers.chunk_by_mut(|one, next| one.film == next.film) {
+        let (growth, whole) = (growth[film[0].film], whole[film[0].film]);
+        let (grown, even) = ((whole + growth).max(0.0), 1.0 / film.len() as f64);
+        for layer in film.iter_mut().filter(|_| growth != 0.0) {
+            let share = if whole > 0.0 { layer.thickness_nm / whole } else { even };
+            layer.thickness_nm = share * grown;
+        }
     }
 }
 

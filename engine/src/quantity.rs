@@ -3,7 +3,7 @@
 use std::f64::consts::LN_2;
 
 use crate::error::OpticsError;
-use crate::kernel::{Outcome, Wanted, Within};
+use crate::kernel::{Outcome, WIDTH, Wanted, Within};
 use crate::plan::{Layer, Plan};
 use crate::response::Polarisation;
 
@@ -141,6 +141,16 @@ impl Quantity {
             Quantity::Transmittance | Quantity::OpticalDensity => Wanted { transmittance: 1.0, ..nothing },
             Quantity::Absorptance => Wanted { absorptance: true, ..nothing },
             _ => nothing,
+        }
+    }
+
+    /// The quantity of one polarisation at the points of a block, of one that is no logarithm.
+    pub(crate) fn row(&self, outcome: &Outcome) -> [f64; WIDTH] {
+        match self {
+            Quantity::Reflectance => outcome.reflectance.0,
+            Quantity::Transmittance => outcome.transmittance(),
+            Quantity::Absorptance => outcome.absorptance.0,
+            _ => outcome.within.0,
         }
     }
 

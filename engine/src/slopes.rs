@@ -89,9 +89,10 @@ fn in_power(probe: &Probe<'_>, wavelengths_nm: &[f64]) -> Result<Vec<Slopes>, Op
     let layers: usize = plan.coatings.iter().map(Vec::len).sum();
     let mut values = vec![0.0; wavelengths_nm.len()];
     let mut slopes = vec![0.0; wavelengths_nm.len() * layers];
+    let (mut value_rows, mut slope_rows) = (Vec::new(), Vec::new());
     for (angle_rad, shares) in probe.all_rays() {
         let beam = Beam::new(plan, &points, &[angle_rad])?;
-        let (value_rows, slope_rows) = beam.slopes(program, &points, shares, wanted);
+        beam.slopes(program, &points, shares, wanted, (&mut value_rows, &mut slope_rows));
         for at in 0..wavelengths_nm.len() {
             let (block, lane) = (at / WIDTH, at % WIDTH);
             let value = value_rows[block].0[lane];

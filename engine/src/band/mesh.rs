@@ -258,8 +258,7 @@ impl Builder<'_> {
             }
             if self.valued {
                 let shares = probe.light.polarisation.shares();
-                let tallies = probe.tallies(&points, &angles, shares, &outcomes)?;
-                self.found.values.extend(probe.told(&points, &tallies)?);
+                self.found.values.extend(probe.told_of(&points, &angles, shares, &outcomes)?);
             } else {
                 self.found.values.resize(first + xs.len(), 0.0);
             }

@@ -143,19 +143,63 @@ impl<'a> Probe<'a> {
 
     /// The values of a quantity in power at points.
     pub(crate) fn values_at(&self, points: &Points) -> Result<Vec<f64>, OpticsError> {
-        let tallies = match &self.cone {
-            None => self.rays(points, &[self.light.angle_rad], self.light.polarisation.shares())?,
-            Some(cone) => self.cones(cone, points)?,
-        };
-        self.told(points, &tallies)
+        match &self.cone {
+            None => self.values_under(&Beam::new(&self.plan, points, &[self.light.angle_rad])?, points),
+            Some(cone) => self.told(points, &self.cones(cone, points)?),
+        }
     }
 
     /// The values at points under the parallel beam that this light is, prepared already.
     pub(crate) fn values_under(&self, beam: &Beam, points: &Points) -> Result<Vec<f64>, OpticsError> {
         let shares = self.light.polarisation.shares();
-        let outcomes = beam.outcomes(&self.program, points, Probe::modes(shares), self.within.as_deref());
-        let tallies = self.tallies(points, &[self.light.angle_rad], shares, &outcomes)?;
+        self.told_plainly(points, beam, &[self.light.angle_rad], shares)
+    }
+
+    /// The values of a quantity at points, each under one ray.
+    fn told_plainly(
+        &self,
+        points: &Points,
+        beam: &Beam,
+        angles_rad: &[f64],
+        shares: [f64; 2],
+    ) -> Result<Vec<f64>, OpticsError> {
+        if *self.quantity != Quantity::OpticalDensity {
+            let mut values = Vec::with_capacity(points.blocks() * WIDTH);
+            let mut sound = [0.0; WIDTH];
+            let (modes, within) = (Probe::modes(shares), self.within.as_deref());
+            beam.outcomes(&self.program, points, modes, within, |outcomes| {
+                self.add_up(shares, outcomes, &mut values, &mut sound);
+            });
+            if sound.iter().sum::<f64>().is_finite() {
+                values.truncate(points.count());
+                return Ok(values);
+            }
+        }
+        // Where a number was lost this way says at which point.
+        let tallies = self.tallies(points, beam, angles_rad, shares)?;
         self.told(points, &tallies)
+    }
+
+    /// The values of a quantity that is no logarithm from what the kernel found; `sound` stays finite while all numbers are.
+    pub(crate) fn add_up(
+        &self,
+        shares: [f64; 2],
+        outcomes: &[[Outcome; 2]],
+        values: &mut Vec<f64>,
+        sound: &mut [f64; WIDTH],
+    ) {
+        for outcome in outcomes {
+            let mut sum = [0.0; WIDTH];
+            for &mode in Probe::modes(shares) {
+                let outcome = &outcome[mode];
+                let row = self.quantity.row(outcome);
+                for lane in 0..WIDTH {
+                    sum[lane] += shares[mode] * row[lane];
+                    sound[lane] += outcome.reflectance.0[lane] + outcome.passed.0[lane];
+                }
+            }
+            values.extend(sum);
+        }
     }
 
     /// The values at one vacuum wavelength in nm under beams of several angles.
@@ -168,8 +212,8 @@ impl<'a> Probe<'a> {
             return angles_rad.iter().map(|angle| self.at_angle(*angle)?.at(wavelength_nm)).collect();
         }
         let points = Points::new(&self.plan, &[wavelength_nm])?.repeated(angles_rad.len());
-        let tallies = self.rays(&points, angles_rad, self.light.polarisation.shares())?;
-        self.told(&points, &tallies)
+        let beam = Beam::new(&self.plan, &points, angles_rad)?;
+        self.told_plainly(&points, &beam, angles_rad, self.light.polarisation.shares())
     }
 
     /// The quantity itself from what adds up.
@@ -188,36 +232,77 @@ impl<'a> Probe<'a> {
     }
 
     /// What adds up of rays of one angle, or of one for each point.
-    fn rays(&self, points: &Points, angles_rad: &[f64], shares: [f64; 2]) -> Result<Vec<Tally>, OpticsError> {
-        let beam = Beam::new(&self.plan, points, angles_rad)?;
-        let modes = Probe::modes(shares);
-        let outcomes = beam.outcomes(&self.program, points, modes, self.within.as_deref());
-        self.tallies(points, angles_rad, shares, &outcomes)
+    fn rays(
+        &self,
+        points: &Points,
+        angles_rad: &[f64],
+        shares: [f64; 2],
+    ) -> Result<Vec<Tally>, OpticsError> {
+        self.tallies(points, &Beam::new(&self.plan, points, angles_rad)?, angles_rad, shares)
     }
 
-    /// What adds up over the polarisations.
-    pub(crate) fn tallies(
+    /// The same for a beam that is prepared.
+    fn tallies(
+        &self,
+        points: &Points,
+        beam: &Beam,
+        angles_rad: &[f64],
+        shares: [f64; 2],
+    ) -> Result<Vec<Tally>, OpticsError> {
+        let modes = Probe::modes(shares);
+        let mut tallies = Vec::with_capacity(points.blocks() * WIDTH);
+        beam.outcomes(&self.program, points, modes, self.within.as_deref(), |outcomes| {
+            for outcome in outcomes {
+                tallies.extend((0..WIDTH).map(|lane| self.tally(outcome, lane, shares)));
+            }
+        });
+        tallies.truncate(points.count());
+        self.sound(points, angles_rad, tallies)
+    }
+
+    /// What adds up over the polarisations at a point of a block; none where a number was lost.
+    fn tally(&self, outcome: &[Outcome; 2], lane: usize, shares: [f64; 2]) -> Option<Tally> {
+        let mut sum = Tally::NONE;
+        for &mode in Probe::modes(shares) {
+            sum = sum.plus(shares[mode], self.quantity.tally(&outcome[mode], lane)?);
+        }
+        Some(sum)
+    }
+
+    /// An error at the first point where a number was lost.
+    fn sound(
+        &self,
+        points: &Points,
+        angles_rad: &[f64],
+        tallies: Vec<Option<Tally>>,
+    ) -> Result<Vec<Tally>, OpticsError> {
+        let of = |(at, tally): (usize, Option<Tally>)| {
+            let wavelength_nm = points.wavelength(at);
+            let angle_rad = angles_rad[at.min(angles_rad.len() - 1)];
+            tally.ok_or(OpticsError::NotFinite { wavelength_nm, angle_rad })
+        };
+        tallies.into_iter().enumerate().map(of).collect()
+    }
+
+    /// The values from outcomes that are there already, each point under one ray.
+    pub(crate) fn told_of(
         &self,
         points: &Points,
         angles_rad: &[f64],
         shares: [f64; 2],
         outcomes: &[[Outcome; 2]],
-    ) -> Result<Vec<Tally>, OpticsError> {
-        let modes = Probe::modes(shares);
-        let of = |at: usize| {
-            let mut sum = Tally::NONE;
-            for &mode in modes {
-                let outcome = &outcomes[at / WIDTH][mode];
-                let Some(tally) = self.quantity.tally(outcome, at % WIDTH) else {
-                    let wavelength_nm = points.wavelength(at);
-                    let angle_rad = angles_rad[at.min(angles_rad.len() - 1)];
-                    return Err(OpticsError::NotFinite { wavelength_nm, angle_rad });
-                };
-                sum = sum.plus(shares[mode], tally);
+    ) -> Result<Vec<f64>, OpticsError> {
+        if *self.quantity != Quantity::OpticalDensity {
+            let (mut values, mut sound) = (Vec::with_capacity(outcomes.len() * WIDTH), [0.0; WIDTH]);
+            self.add_up(shares, outcomes, &mut values, &mut sound);
+            if sound.iter().sum::<f64>().is_finite() {
+                values.truncate(points.count());
+                return Ok(values);
             }
-            Ok(sum)
-        };
-        (0..points.count()).map(of).collect()
+        }
+        let each = (0..points.count()).map(|at| self.tally(&outcomes[at / WIDTH], at % WIDTH, shares));
+        let tallies = self.sound(points, angles_rad, each.collect())?;
+        self.told(points, &tallies)
     }
 
     /// The rays that the light consists of, each with its shares of s and p: of a cone, those of one fixed rule.

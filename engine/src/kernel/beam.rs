@@ -2,14 +2,15 @@
 
 use std::f64::consts::FRAC_PI_2;
 
-use pulp::Arch;
-
 use super::{Channel, Gradient, Media, Outcome, Points, Program, Row, Spectrum, Tilt, WIDTH, Wanted, Within};
 use crate::error::OpticsError;
 use crate::plan::{Layer, Plan};
 
 /// So many halvings of the power on a single pass leave nothing that could make a fringe.
 const OPAQUE: f64 = 58.0;
+
+/// So many blocks' outcomes stay in the processor's nearest memory.
+const BLOCKS: usize = 16;
 
 /// The media of a stack under one beam.
 #[derive(Clone, Debug)]
@@ -52,24 +53,29 @@ impl Beam {
                 slab.turns.0[lane] * layer.thickness_nm
             }
         };
-        program.coatings.iter().map(move |order| order.from_behind.iter().map(turns).sum())
+        program.coatings.iter().map(move |order| order.from_front.iter().map(turns).sum())
     }
 
-    /// What the stack does to light of the given polarisations (0 is s, 1 is p), by block.
+    /// What the stack does to light of the given polarisations (0 is s, 1 is p), handed on in order, some blocks at a time.
     pub(crate) fn outcomes(
         &self,
         program: &Program,
         points: &Points,
         modes: &[usize],
         within: Option<&Within>,
-    ) -> Vec<[Outcome; 2]> {
-        let mut outcomes = vec![[Outcome::ZERO; 2]; points.blocks()];
+        mut take: impl FnMut(&[[Outcome; 2]]),
+    ) {
+        let mut buffer = [[Outcome::ZERO; 2]; BLOCKS];
         let (media, facets) = (&self.media, &self.facets[..]);
-        let outcomes_to = &mut outcomes[..];
-        let run =
-            Spectrum { program, points, media, facets, modes, within, outcomes: outcomes_to, channels: None };
-        Arch::new().dispatch(run);
-        outcomes
+        let mut first = 0;
+        while first < points.blocks() {
+            let blocks = first..points.blocks().min(first + BLOCKS);
+            let outcomes = &mut buffer[..blocks.len()];
+            let channels = None;
+            first = blocks.end;
+            Spectrum { program, points, media, facets, blocks, modes, within, outcomes, channels }.run();
+            take(&buffer[..points.blocks().min(first) - (first - 1) / BLOCKS * BLOCKS]);
+        }
     }
 
     /// The same, with N and D of every coating: so many a block, by polarisation and coating, then those of the facets.
@@ -83,37 +89,39 @@ impl Beam {
         let mut outcomes = vec![[Outcome::ZERO; 2]; points.blocks()];
         let mut channels = vec![Channel::ZERO; points.blocks() * program.channels(modes.len())];
         let (media, facets) = (&self.media, &self.facets[..]);
-        let run = Spectrum {
+        Spectrum {
             program,
             points,
             media,
             facets,
+            blocks: 0..points.blocks(),
             modes,
             within,
             outcomes: &mut outcomes,
             channels: Some(&mut channels),
-        };
-        Arch::new().dispatch(run);
+        }
+        .run();
         (outcomes, channels)
     }
 
-    /// A quantity and its changes with the thickness of every layer: by block, and by block and layer.
+    /// A quantity and its changes with the thickness of every layer, into lists by block, and by block and layer.
     pub(crate) fn slopes(
         &self,
         program: &Program,
         points: &Points,
         shares: [f64; 2],
         wanted: Wanted<'_>,
-    ) -> (Vec<Row>, Vec<Row>) {
+        (values, slopes): (&mut Vec<Row>, &mut Vec<Row>),
+    ) {
         let layers: usize = program.coatings.iter().map(|order| order.from_front.len()).sum();
-        let mut values = vec![Row::ZERO; points.blocks()];
-        let mut slopes = vec![Row::ZERO; points.blocks() * layers];
+        values.resize(points.blocks(), Row::ZERO);
+        slopes.resize(points.blocks() * layers, Row::ZERO);
         let modes: &[usize] = match shares {
             [_, 0.0] => &[0],
             [0.0, _] => &[1],
             _ => &[0, 1],
         };
-        Arch::new().dispatch(Gradient {
+        Gradient {
             program,
             points,
             media: &self.media,
@@ -121,9 +129,9 @@ impl Beam {
             modes,
             shares,
             wanted,
-            values: &mut values,
-            slopes: &mut slopes,
-        });
-        (values, slopes)
+            values,
+            slopes,
+        }
+        .run();
     }
 }

@@ -2,11 +2,10 @@
 
 use pulp::Simd;
 
-use super::march::{Fields, Pair, sign_of};
+use super::march::{Fields, Pair};
 use super::media::Wave;
 use super::points::Points;
 use crate::lanes::{Complex, Lanes, decay};
-use crate::plan::Layer;
 
 /// An excess of R + T over 1 that tells that a resonance was lost in rounding: an error, not a result.
 const LOST: f64 = 1e-10;
@@ -55,10 +54,11 @@ pub(crate) struct Lossless {
 }
 
 impl Lossless {
-    pub(crate) fn of(points: &Points, block: usize, before: usize, layers: &[Layer]) -> Lossless {
+    #[inline(always)]
+    pub(crate) fn of(points: &Points, block: usize, before: usize, films: &[usize]) -> Lossless {
         Lossless {
             before: points.is_lossless(block, before),
-            films: layers.iter().all(|layer| points.is_lossless(block, layer.material)),
+            films: films.iter().all(|film| points.is_lossless(block, *film)),
         }
     }
 }
@@ -72,7 +72,7 @@ pub(crate) fn faces<S: Simd, const P: usize>(
     exit: &[Wave; 2],
     modes: [usize; P],
     lossless: Lossless,
-    lane: usize,
+    part: usize,
 ) -> [Face<S>; P] {
     let zero = Lanes::splat(simd, 0.0);
     let nothing = Complex { re: zero, im: zero };
@@ -85,8 +85,8 @@ pub(crate) fn faces<S: Simd, const P: usize>(
         share: zero,
     }; P];
     for p in 0..P {
-        let arriving = Pair::of_wave(simd, &entry[modes[p]], lane);
-        let leaving = Pair::of_wave(simd, &exit[modes[p]], lane);
+        let arriving = Pair::of_wave(simd, &entry[modes[p]], part);
+        let leaving = Pair::of_wave(simd, &exit[modes[p]], part);
         let front = fields.pairs[p];
         let (electric, magnetic) = (arriving.c * front.b, arriving.b * front.c);
         let (difference, sum) = (electric - magnetic, electric + magnetic);

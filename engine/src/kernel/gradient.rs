@@ -19,8 +19,9 @@ use crate::plan::Layer;
 /// A film passed, with the fields at its front.
 #[derive(Clone, Copy, Debug)]
 struct Saved<S: Simd, const P: usize> {
-    cosine: Complex<S>,
-    lift: Complex<S>,
+    /// Of a clear film.
+    cosine: Lanes<S>,
+    sine: Lanes<S>,
     pairs: [Pair<S>; P],
 }
 
@@ -30,6 +31,8 @@ pub(crate) struct Passage<S: Simd, const P: usize> {
     pub(crate) faces: [Face<S>; P],
     /// The films from the far side towards the light.
     saved: Vec<Saved<S, P>>,
+    /// The cosine and −i times the sine of those that are not clear, in the same order.
+    dim: Vec<(Complex<S>, Complex<S>)>,
     /// After how many films the fields were brought back to size, and by which factor.
     scaled: Vec<(usize, Lanes<S>)>,
     /// Where layers count for themselves: the norm and the halvings at each face from the exit on, and from them the size of the true power flow over that of the fields at each face, from the exit on.
@@ -46,13 +49,15 @@ pub(crate) struct Place<'a, S: Simd, const P: usize> {
     pub(crate) media: &'a Media,
     pub(crate) modes: [usize; P],
     pub(crate) block: usize,
-    pub(crate) lane: usize,
+    pub(crate) part: usize,
 }
 
 /// A coating from one side: its films from the far side towards the light, and the media before and behind it.
 #[derive(Clone, Copy, Debug)]
 pub(crate) struct Coat<'a> {
     pub(crate) layers: &'a [Layer],
+    /// Of what they are.
+    pub(crate) media: &'a [usize],
     pub(crate) entry: usize,
     pub(crate) exit: usize,
 }
@@ -62,6 +67,47 @@ pub(crate) struct Coat<'a> {
 pub(crate) struct Seeds<S: Simd> {
     pub(crate) reflectance: Lanes<S>,
     pub(crate) transmittance: Lanes<S>,
+}
+
+impl<S: Simd, const P: usize> Saved<S, P> {
+    /// Im(α C/η + β η B) for a clear film, and the row taken through it.
+    #[inline(always)]
+    fn clear(&self, p: usize, row: &mut Pair<S>, over: Lanes<S>, times: Lanes<S>) -> Lanes<S> {
+        let Pair { b, c } = self.pairs[p];
+        let (alpha, beta, cosine) = (row.b, row.c, self.cosine);
+        let electric = alpha.re.mul_add(c.im, alpha.im * c.re) * over;
+        let change = beta.re.mul_add(b.im, beta.im * b.re).mul_add(times, electric);
+        let (over, times) = (self.sine * over, self.sine * times);
+        *row = Pair {
+            b: Complex {
+                re: times.mul_add(beta.im, cosine * alpha.re),
+                im: times.neg_mul_add(beta.re, cosine * alpha.im),
+            },
+            c: Complex {
+                re: over.mul_add(alpha.im, cosine * beta.re),
+                im: over.neg_mul_add(alpha.re, cosine * beta.im),
+            },
+        };
+        change
+    }
+
+    /// α C/η + β η B for any film, and the row taken through it.
+    #[inline(always)]
+    fn dim(
+        &self,
+        p: usize,
+        row: &mut Pair<S>,
+        (cosine, lift): (Complex<S>, Complex<S>),
+        over: Complex<S>,
+        times: Complex<S>,
+    ) -> Complex<S> {
+        let Pair { b, c } = self.pairs[p];
+        let (alpha, beta) = (row.b, row.c);
+        let inner = (alpha * c) * over + (beta * b) * times;
+        let (over, times) = (lift * over, lift * times);
+        *row = Pair { b: times.mul_add(beta, cosine * alpha), c: over.mul_add(alpha, cosine * beta) };
+        inner
+    }
 }
 
 impl<S: Simd, const P: usize> Passage<S, P> {
@@ -81,6 +127,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
         Passage {
             faces: [face; P],
             saved: Vec::new(),
+            dim: Vec::new(),
             scaled: Vec::new(),
             scales: Vec::new(),
             flows: Vec::new(),
@@ -91,10 +138,10 @@ impl<S: Simd, const P: usize> Passage<S, P> {
     /// The way there. With `LAYERS` what every layer takes can be told as well.
     #[inline(always)]
     pub(crate) fn go<const LAYERS: bool>(&mut self, place: Place<'_, S, P>, coat: Coat<'_>) {
-        let Place { simd, points, media, modes, block, lane } = place;
+        let Place { simd, points, media, modes, block, part } = place;
         let (slabs, kinds) = media.slabs(block);
         let waves = media.waves(block);
-        let mut fields = Fields::new(simd, &waves[coat.exit], modes, lane);
+        let mut fields = Fields::new(simd, &waves[coat.exit], modes, part);
         self.saved.clear();
         self.scaled.clear();
         self.flows.clear();
@@ -103,24 +150,60 @@ impl<S: Simd, const P: usize> Passage<S, P> {
         if LAYERS {
             self.scales.push((fields.norm, fields.halved));
         }
-        for (at, layer) in coat.layers.iter().enumerate() {
-            let (slab, kind) = (&slabs[layer.material], kinds[layer.material]);
-            let (cosine, lift) = fields.through::<false>(simd, slab, kind, modes, lane, layer.thickness_nm);
-            self.saved.push(Saved { cosine, lift, pairs: fields.pairs });
-            if LAYERS {
-                self.scales.push((fields.norm, fields.halved));
-            }
-            if (at + 1) % LOOK == 0 || kind == Kind::Mean {
-                if let Some(factor) = fields.look() {
-                    self.scaled.push((at + 1, factor));
+        let zero = Lanes::splat(simd, 0.0);
+        self.dim.clear();
+        self.saved.resize(coat.layers.len(), Saved { cosine: zero, sine: zero, pairs: fields.pairs });
+        let mut at = 0;
+        for some in coat.layers.chunks(LOOK) {
+            let mut rest = some;
+            while !rest.is_empty() {
+                // A loop of its own for each kind keeps the fields in registers.
+                let first = at;
+                for (layer, saved) in rest.iter().zip(&mut self.saved[first..]) {
+                    if kinds[layer.material] != Kind::Clear {
+                        break;
+                    }
+                    let slab = &slabs[layer.material];
+                    let (sine, cosine) =
+                        fields.through_clear::<false>(simd, slab, modes, part, layer.thickness_nm);
+                    *saved = Saved { cosine, sine, pairs: fields.pairs };
+                    if LAYERS {
+                        self.scales.push((fields.norm, fields.halved));
+                    }
+                    at += 1;
                 }
+                rest = &rest[at - first..];
+                let first = at;
+                for (layer, saved) in rest.iter().zip(&mut self.saved[first..]) {
+                    let (slab, kind) = (&slabs[layer.material], kinds[layer.material]);
+                    if kind == Kind::Clear {
+                        break;
+                    }
+                    self.dim.push(fields.through_dim::<false>(
+                        simd,
+                        slab,
+                        kind,
+                        modes,
+                        part,
+                        layer.thickness_nm,
+                    ));
+                    saved.pairs = fields.pairs;
+                    if LAYERS {
+                        self.scales.push((fields.norm, fields.halved));
+                    }
+                    at += 1;
+                    if kind == Kind::Mean && let Some(factor) = fields.look() {
+                        self.scaled.push((at, factor));
+                    }
+                }
+                rest = &rest[at - first..];
+            }
+            if let Some(factor) = fields.look() {
+                self.scaled.push((at, factor));
             }
         }
-        if let Some(factor) = fields.look() {
-            self.scaled.push((coat.layers.len(), factor));
-        }
-        let lossless = Lossless::of(points, block, coat.entry, coat.layers);
-        self.faces = faces(simd, &fields, &waves[coat.entry], &waves[coat.exit], modes, lossless, lane);
+        let lossless = Lossless::of(points, block, coat.entry, coat.media);
+        self.faces = faces(simd, &fields, &waves[coat.entry], &waves[coat.exit], modes, lossless, part);
         for &(norm, halved) in &self.scales {
             self.flows.push(fields.norm / norm * power(fields.halved - halved));
         }
@@ -158,7 +241,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
         weights: &[Vec<Lanes<S>>; P],
         changes: &mut [Lanes<S>],
     ) {
-        let Place { simd, media, modes, block, lane, .. } = place;
+        let Place { simd, media, modes, block, part, .. } = place;
         let (slabs, kinds) = media.slabs(block);
         let waves = media.waves(block);
         let zero = Lanes::splat(simd, 0.0);
@@ -176,7 +259,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
             }
             let of_n = n.conj().scale(two * reflectance * over);
             let of_d = d.conj().scale(-(two * through * over));
-            let arriving = Pair::of_wave(simd, &waves[coat.entry][modes[p]], lane);
+            let arriving = Pair::of_wave(simd, &waves[coat.entry][modes[p]], part);
             // Where no light arrives nothing changes.
             let lit = zero.where_less(face.share, zero.of(1.0), zero);
             rows[p] = Pair {
@@ -185,87 +268,88 @@ impl<S: Simd, const P: usize> Passage<S, P> {
             };
         }
         let mut scaled = self.scaled.iter().rev().peekable();
-        for at in (0..coat.layers.len()).rev() {
-            while let Some((_, factor)) = scaled.next_if(|scaled| scaled.0 == at + 1) {
+        let mut dim = self.dim.len();
+        let mut at = coat.layers.len();
+        while at > 0 {
+            while let Some((_, factor)) = scaled.next_if(|scaled| scaled.0 >= at) {
                 for row in &mut rows {
                     *row = Pair { b: row.b.scale(*factor), c: row.c.scale(*factor) };
                 }
             }
-            let layer = &coat.layers[at];
-            let (slab, kind) = (&slabs[layer.material], kinds[layer.material]);
-            let saved = &self.saved[at];
-            let mut sum = zero;
-            for p in 0..P {
-                if LAYERS {
-                    // The flow at this face counts for the layer behind it, and against the one before it.
-                    let before = weights[p].get(at + 1).copied().unwrap_or(zero);
-                    let weight = (weights[p][at] - before) * self.faces[p].share * self.flows[at + 1];
-                    let Pair { b, c } = saved.pairs[p];
-                    rows[p].b = rows[p].b + c.conj().scale(weight);
-                    rows[p].c = rows[p].c + b.conj().scale(weight);
+            // As far as the fields have not been brought back to size.
+            let end = scaled.peek().map_or(0, |scaled| scaled.0);
+            let own = &coat.layers[end..at];
+            let mut passed = 0;
+            for (layer, saved) in own.iter().zip(&self.saved[end..at]).rev() {
+                if kinds[layer.material] != Kind::Clear {
+                    break;
                 }
-                sum = sum + self.step(place, at, slab, kind, layer, p, &mut rows[p]);
+                let here = at - 1 - passed;
+                if LAYERS {
+                    self.inject(here, weights, &mut rows);
+                }
+                let slabs = &slabs[layer.material];
+                let mut sum = zero;
+                for p in 0..P {
+                    let slab = &slabs[modes[p]];
+                    let turns = slab.turns.load(simd, part) * zero.of(PI);
+                    let over = slab.impedance.re.load(simd, part);
+                    let times = slab.admittance.re.load(simd, part);
+                    sum = saved.clear(p, &mut rows[p], over, times).mul_add(turns, sum);
+                }
+                let change = &mut changes[coat.layers.len() - 1 - here];
+                *change = *change + sum;
+                passed += 1;
             }
-            let change = &mut changes[coat.layers.len() - 1 - at];
-            *change = *change + sum;
+            at -= passed;
+            let mut passed = 0;
+            for (layer, saved) in coat.layers[end..at].iter().zip(&self.saved[end..at]).rev() {
+                let (slabs, kind) = (&slabs[layer.material], kinds[layer.material]);
+                if kind == Kind::Clear {
+                    break;
+                }
+                let here = at - 1 - passed;
+                if LAYERS {
+                    self.inject(here, weights, &mut rows);
+                }
+                dim -= 1;
+                let mut turn = self.dim[dim];
+                let mut sum = zero;
+                for p in 0..P {
+                    let slab = &slabs[modes[p]];
+                    if kind == Kind::Mean {
+                        let own = Turn::new(simd, slab, part, zero.of(layer.thickness_nm)).whole();
+                        turn = (own.cosine, own.lift);
+                    }
+                    let rate = Complex {
+                        re: slab.turns.load(simd, part) * zero.of(PI),
+                        im: slab.halvings.load(simd, part) * zero.of(0.5 * LN_2),
+                    };
+                    let over = slab.impedance.load(simd, part);
+                    let times = slab.admittance.load(simd, part);
+                    let inner = saved.dim(p, &mut rows[p], turn, over, times);
+                    // Re(−i κ x) = Re κ Im x + Im κ Re x.
+                    sum = sum + rate.re.mul_add(inner.im, rate.im * inner.re);
+                }
+                let change = &mut changes[coat.layers.len() - 1 - here];
+                *change = *change + sum;
+                passed += 1;
+            }
+            at -= passed;
         }
     }
 
-    /// The change with one layer's thickness, and the row taken through it.
+    /// Adds to the rows that the flow at a layer's front counts for the layer, and against the one before it.
     #[inline(always)]
-    #[allow(clippy::too_many_arguments)]
-    fn step(
-        &self,
-        place: Place<'_, S, P>,
-        at: usize,
-        slabs: &[Slab; 2],
-        kind: Kind,
-        layer: &Layer,
-        p: usize,
-        row: &mut Pair<S>,
-    ) -> Lanes<S> {
-        let Place { simd, modes, lane, .. } = place;
-        let slab = &slabs[modes[p]];
-        let Saved { cosine, lift, pairs } = &self.saved[at];
-        let Pair { b, c } = pairs[p];
-        let (alpha, beta) = (row.b, row.c);
-        let turns = Lanes::load(simd, &slab.turns.0[lane..]) * b.re.of(PI);
-        if kind == Kind::Clear {
-            let (over, times) = (
-                Lanes::load(simd, &slab.impedance.re.0[lane..]),
-                Lanes::load(simd, &slab.admittance.re.0[lane..]),
-            );
-            // Im(α C/η + β η B).
-            let electric = alpha.re.mul_add(c.im, alpha.im * c.re) * over;
-            let change = beta.re.mul_add(b.im, beta.im * b.re).mul_add(times, electric);
-            // The lift is −i sin δ.
-            let (sine, cosine) = (lift.im, cosine.re);
-            let (over, times) = (sine * over, sine * times);
-            *row = Pair {
-                b: Complex {
-                    re: times.neg_mul_add(beta.im, cosine * alpha.re),
-                    im: times.mul_add(beta.re, cosine * alpha.im),
-                },
-                c: Complex {
-                    re: over.neg_mul_add(alpha.im, cosine * beta.re),
-                    im: over.mul_add(alpha.re, cosine * beta.im),
-                },
-            };
-            return change * turns;
+    fn inject(&self, at: usize, weights: &[Vec<Lanes<S>>; P], rows: &mut [Pair<S>; P]) {
+        for p in 0..P {
+            let own = weights[p][at];
+            let before = weights[p].get(at + 1).copied().unwrap_or(own.of(0.0));
+            let weight = (own - before) * self.faces[p].share * self.flows[at + 1];
+            let Pair { b, c } = self.saved[at].pairs[p];
+            rows[p].b = rows[p].b + c.conj().scale(weight);
+            rows[p].c = rows[p].c + b.conj().scale(weight);
         }
-        let (mut cosine, mut lift) = (*cosine, *lift);
-        if kind == Kind::Mean {
-            let turn = Turn::new(simd, slab, lane, b.re.of(layer.thickness_nm)).whole();
-            (cosine, lift) = (turn.cosine, turn.lift);
-        }
-        let (over, times) = (slab.impedance.load(simd, lane), slab.admittance.load(simd, lane));
-        let inner = (alpha * c) * over + (beta * b) * times;
-        let rate = Lanes::load(simd, &slab.halvings.0[lane..]) * b.re.of(0.5 * LN_2);
-        // Re(−i κ x) = Re κ Im x + Im κ Re x.
-        let change = turns.mul_add(inner.im, rate * inner.re);
-        let (over, times) = (lift * over, lift * times);
-        *row = Pair { b: times.mul_add(beta, cosine * alpha), c: over.mul_add(alpha, cosine * beta) };
-        change
     }
 
     /// What the layers take, weighed.

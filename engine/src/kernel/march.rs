@@ -25,8 +25,8 @@ pub(crate) struct Pair<S: Simd> {
 
 impl<S: Simd> Pair<S> {
     #[inline(always)]
-    pub(crate) fn of_wave(simd: S, wave: &Wave, lane: usize) -> Self {
-        Pair { b: wave.b.load(simd, lane), c: wave.c.load(simd, lane) }
+    pub(crate) fn of_wave(simd: S, wave: &Wave, part: usize) -> Self {
+        Pair { b: wave.b.load(simd, part), c: wave.c.load(simd, part) }
     }
 
     /// The mean normal power flow Re(B* C), in the fields' own scale.
@@ -77,9 +77,9 @@ pub(crate) struct Turn<S: Simd> {
 impl<S: Simd> Turn<S> {
     /// With δ = x + iy: cos δ = cos x cosh y − i sin x sinh y, and −i sin δ = cos x sinh y − i sin x cosh y.
     #[inline(always)]
-    pub(crate) fn new(simd: S, slab: &Slab, lane: usize, thickness: Lanes<S>) -> Self {
-        let (sine, cosine, whole) = half_turn(Lanes::load(simd, &slab.turns.0[lane..]) * thickness);
-        let halvings = Lanes::load(simd, &slab.halvings.0[lane..]) * thickness;
+    pub(crate) fn new(simd: S, slab: &Slab, part: usize, thickness: Lanes<S>) -> Self {
+        let (sine, cosine, whole) = half_turn(slab.turns.load(simd, part) * thickness);
+        let halvings = slab.halvings.load(simd, part) * thickness;
         // Both hyperbolic functions over e^y, whose square is 2^halvings.
         let (left, lost) = decay(halvings);
         let half = thickness.of(0.5);
@@ -104,52 +104,60 @@ impl<S: Simd> Turn<S> {
 
 impl<S: Simd, const P: usize> Fields<S, P> {
     #[inline(always)]
-    pub(crate) fn new(simd: S, waves: &[Wave; 2], modes: [usize; P], lane: usize) -> Self {
+    pub(crate) fn new(simd: S, waves: &[Wave; 2], modes: [usize; P], part: usize) -> Self {
         let zero = Lanes::splat(simd, 0.0);
         let mut pairs = [Pair { b: Complex { re: zero, im: zero }, c: Complex { re: zero, im: zero } }; P];
         for (pair, mode) in pairs.iter_mut().zip(modes) {
-            *pair = Pair::of_wave(simd, &waves[mode], lane);
+            *pair = Pair::of_wave(simd, &waves[mode], part);
         }
         Fields { pairs, norm: zero.of(1.0), turned: zero, halved: zero }
     }
 
-    /// Through one film; its sine and cosine, up to the factor that was taken out, and of a mean of two media those for the last
-    /// polarisation. The sign is kept only if `SIGNED`.
+    /// Through a clear film; its sine and cosine up to the factor that was taken out. The sign is kept only if `SIGNED`.
     #[inline(always)]
-    pub(crate) fn through<const SIGNED: bool>(
+    pub(crate) fn through_clear<const SIGNED: bool>(
+        &mut self,
+        simd: S,
+        slabs: &[Slab; 2],
+        modes: [usize; P],
+        part: usize,
+        thickness_nm: f64,
+    ) -> (Lanes<S>, Lanes<S>) {
+        let turns = slabs[0].turns.load(simd, part) * Lanes::splat(simd, thickness_nm);
+        let (sine, cosine, whole) = half_turn(turns);
+        for p in 0..P {
+            let slab = &slabs[modes[p]];
+            let over = sine * slab.impedance.re.load(simd, part);
+            let times = sine * slab.admittance.re.load(simd, part);
+            self.pairs[p] = self.pairs[p].clear(cosine, over, times);
+        }
+        self.norm = self.norm * sine.mul_add(sine, cosine * cosine);
+        if SIGNED {
+            self.turned = self.turned + whole;
+        }
+        (sine, cosine)
+    }
+
+    /// Through any film; its cosine and −i times its sine, of a mean of two media those for the last polarisation.
+    #[inline(always)]
+    pub(crate) fn through_dim<const SIGNED: bool>(
         &mut self,
         simd: S,
         slabs: &[Slab; 2],
         kind: Kind,
         modes: [usize; P],
-        lane: usize,
+        part: usize,
         thickness_nm: f64,
     ) -> (Complex<S>, Complex<S>) {
         let thickness = Lanes::splat(simd, thickness_nm);
-        if kind == Kind::Clear {
-            let (sine, cosine, whole) = half_turn(Lanes::load(simd, &slabs[0].turns.0[lane..]) * thickness);
-            let norm = sine.mul_add(sine, cosine * cosine);
-            for p in 0..P {
-                let slab = &slabs[modes[p]];
-                let over = sine * Lanes::load(simd, &slab.impedance.re.0[lane..]);
-                let times = sine * Lanes::load(simd, &slab.admittance.re.0[lane..]);
-                self.pairs[p] = self.pairs[p].clear(cosine, over, times);
-            }
-            self.norm = self.norm * norm;
-            if SIGNED {
-                self.turned = self.turned + whole;
-            }
-            let zero = thickness.of(0.0);
-            return (Complex { re: cosine, im: zero }, Complex { re: zero, im: -sine });
-        }
-        let mut turn = Turn::new(simd, &slabs[modes[0]], lane, thickness);
+        let mut turn = Turn::new(simd, &slabs[modes[0]], part, thickness);
         for p in 0..P {
             let slab = &slabs[modes[p]];
             if kind == Kind::Mean {
-                turn = Turn::new(simd, slab, lane, thickness).whole();
+                turn = Turn::new(simd, slab, part, thickness).whole();
             }
-            let over = turn.lift * slab.impedance.load(simd, lane);
-            let times = turn.lift * slab.admittance.load(simd, lane);
+            let over = turn.lift * slab.impedance.load(simd, part);
+            let times = turn.lift * slab.admittance.load(simd, part);
             self.pairs[p] = self.pairs[p].dim(turn.cosine, over, times);
         }
         if kind == Kind::Mean {
@@ -237,23 +245,46 @@ pub(crate) fn march<S: Simd, const P: usize, const SIGNED: bool, const FLOWS: bo
     layers: &[Layer],
     exit: &[Wave; 2],
     modes: [usize; P],
-    lane: usize,
+    part: usize,
     flows: &mut Vec<Flow<S, P>>,
 ) -> Fields<S, P> {
-    let mut fields = Fields::new(simd, exit, modes, lane);
+    let mut fields = Fields::new(simd, exit, modes, part);
     if FLOWS {
         flows.push(fields.flow());
     }
     for some in layers.chunks(LOOK) {
-        for layer in some {
-            let (slab, kind) = (&slabs[layer.material], kinds[layer.material]);
-            fields.through::<SIGNED>(simd, slab, kind, modes, lane, layer.thickness_nm);
-            if kind == Kind::Mean {
-                fields.look();
+        let mut rest = some;
+        while !rest.is_empty() {
+            // A loop of its own for each kind keeps the fields in registers.
+            let mut passed = 0;
+            for layer in rest {
+                if kinds[layer.material] != Kind::Clear {
+                    break;
+                }
+                let slab = &slabs[layer.material];
+                fields.through_clear::<SIGNED>(simd, slab, modes, part, layer.thickness_nm);
+                if FLOWS {
+                    flows.push(fields.flow());
+                }
+                passed += 1;
             }
-            if FLOWS {
-                flows.push(fields.flow());
+            rest = &rest[passed..];
+            let mut passed = 0;
+            for layer in rest {
+                let (slab, kind) = (&slabs[layer.material], kinds[layer.material]);
+                if kind == Kind::Clear {
+                    break;
+                }
+                fields.through_dim::<SIGNED>(simd, slab, kind, modes, part, layer.thickness_nm);
+                if kind == Kind::Mean {
+                    fields.look();
+                }
+                if FLOWS {
+                    flows.push(fields.flow());
+                }
+                passed += 1;
             }
+            rest = &rest[passed..];
         }
         fields.look();
     }

@@ -7,7 +7,7 @@ use std::f64::consts::{LOG2_E, TAU};
 
 use pulp::{Arch, Simd, WithSimd};
 
-use super::points::{Points, Row, WIDTH};
+use super::points::{Points, Row, WIDTH, parts};
 use crate::lanes::{Complex, Lanes};
 use crate::plan::{Mean, Plan};
 
@@ -36,14 +36,14 @@ impl Pairs {
     const ZERO: Pairs = Pairs { re: Row::ZERO, im: Row::ZERO };
 
     #[inline(always)]
-    pub(crate) fn load<S: Simd>(&self, simd: S, lane: usize) -> Complex<S> {
-        Complex { re: Lanes::load(simd, &self.re.0[lane..]), im: Lanes::load(simd, &self.im.0[lane..]) }
+    pub(crate) fn load<S: Simd>(&self, simd: S, part: usize) -> Complex<S> {
+        Complex { re: self.re.load(simd, part), im: self.im.load(simd, part) }
     }
 
     #[inline(always)]
-    fn store<S: Simd>(&mut self, lane: usize, value: Complex<S>) {
-        value.re.store(&mut self.re.0[lane..]);
-        value.im.store(&mut self.im.0[lane..]);
+    fn store<S: Simd>(&mut self, part: usize, value: Complex<S>) {
+        self.re.store(part, value.re);
+        self.im.store(part, value.im);
     }
 }
 
@@ -155,17 +155,17 @@ impl WithSimd for Tables<'_> {
                     (sine.0[lane], cosine.0[lane]) = angle.sin_cos();
                 }
             }
-            for lane in (0..WIDTH).step_by(Lanes::<S>::COUNT) {
-                let wavelength = Lanes::load(simd, &points.wavelengths(block).0[lane..]);
+            for part in 0..parts::<S>() {
+                let wavelength = points.wavelengths(block).load(simd, part);
                 let inverse_wavelength = wavelength.of(1.0) / wavelength;
-                let entry = Lanes::load(simd, &points.index(block, tilt.from)[0].0[lane..]);
-                let alpha = entry * Lanes::load(simd, &sine.0[lane..]);
+                let entry = points.index(block, tilt.from)[0].load(simd, part);
+                let alpha = entry * sine.load(simd, part);
                 for medium in 0..media.pure {
                     let [n, k] = points.index(block, medium);
                     let index =
-                        Complex { re: Lanes::load(simd, &n.0[lane..]), im: Lanes::load(simd, &k.0[lane..]) };
+                        Complex { re: n.load(simd, part), im: k.load(simd, part) };
                     let permittivity = index * index;
-                    let cosine = Lanes::load(simd, &cosine.0[lane..]);
+                    let cosine = cosine.load(simd, part);
                     let square = if tilt.incident && medium == tilt.from {
                         // Known without the loss of digits near grazing incidence.
                         permittivity.scale(cosine * cosine)
@@ -180,10 +180,10 @@ impl WithSimd for Tables<'_> {
                         let normal = square.re.sqrt();
                         let inverse = normal.of(1.0) / normal;
                         let permittivity = permittivity.re;
-                        fill_clear(s, lane, inverse_wavelength, normal, normal, inverse);
+                        fill_clear(s, part, inverse_wavelength, normal, normal, inverse);
                         fill_clear(
                             p,
-                            lane,
+                            part,
                             inverse_wavelength,
                             normal,
                             permittivity * inverse,
@@ -193,17 +193,17 @@ impl WithSimd for Tables<'_> {
                         media.kinds[at] = Kind::Dim;
                         let normal = at_least(square.upper_sqrt());
                         let inverse = normal.inverse();
-                        fill(s, lane, inverse_wavelength, normal, normal, inverse);
+                        fill(s, part, inverse_wavelength, normal, normal, inverse);
                         let over = normal * permittivity.inverse();
-                        fill(p, lane, inverse_wavelength, normal, permittivity * inverse, over);
+                        fill(p, part, inverse_wavelength, normal, permittivity * inverse, over);
                     }
                     if ends[medium] {
                         let normal = square.upper_sqrt();
                         let [s, p] = &mut media.waves[block * media.pure + medium];
-                        s.b.store(lane, Complex::splat(simd, 1.0, 0.0));
-                        s.c.store(lane, normal);
-                        p.b.store(lane, normal * index.inverse());
-                        p.c.store(lane, index);
+                        s.b.store(part, Complex::splat(simd, 1.0, 0.0));
+                        s.c.store(part, normal);
+                        p.b.store(part, normal * index.inverse());
+                        p.c.store(part, index);
                     }
                 }
                 for (mean, at) in means.iter().zip(block * media.count + media.pure..) {
@@ -211,8 +211,8 @@ impl WithSimd for Tables<'_> {
                     let [one, other] = [mean.one, mean.other].map(|medium| {
                         let [n, k] = points.index(block, medium);
                         let index = Complex {
-                            re: Lanes::load(simd, &n.0[lane..]),
-                            im: Lanes::load(simd, &k.0[lane..]),
+                            re: n.load(simd, part),
+                            im: k.load(simd, part),
                         };
                         let real = Complex { re: alpha, im: alpha.of(0.0) };
                         let permittivity = index * index;
@@ -225,10 +225,10 @@ impl WithSimd for Tables<'_> {
                         [0, 1, 2].map(|part: usize| one[part].scale(share) + other[part].scale(rest));
                     let normal = at_least(square.upper_sqrt());
                     let [s, p] = &mut media.slabs[at];
-                    fill(s, lane, inverse_wavelength, normal, normal, normal.inverse());
+                    fill(s, part, inverse_wavelength, normal, normal, normal.inverse());
                     let normal = at_least((permittivity * ratio).upper_sqrt());
                     let admittance = permittivity * normal.inverse();
-                    fill(p, lane, inverse_wavelength, normal, admittance, admittance.inverse());
+                    fill(p, part, inverse_wavelength, normal, admittance, admittance.inverse());
                 }
             }
         }
@@ -246,30 +246,30 @@ fn at_least<S: Simd>(number: Complex<S>) -> Complex<S> {
 #[inline(always)]
 fn fill<S: Simd>(
     slab: &mut Slab,
-    lane: usize,
+    part: usize,
     inverse_wavelength: Lanes<S>,
     normal: Complex<S>,
     admittance: Complex<S>,
     impedance: Complex<S>,
 ) {
-    (normal.re * inverse_wavelength.of(2.0) * inverse_wavelength).store(&mut slab.turns.0[lane..]);
+    slab.turns.store(part, normal.re * inverse_wavelength.of(2.0) * inverse_wavelength);
     let halvings = inverse_wavelength.of(2.0 * TAU * LOG2_E) * inverse_wavelength;
-    (normal.im * halvings).store(&mut slab.halvings.0[lane..]);
-    slab.admittance.store(lane, admittance);
-    slab.impedance.store(lane, impedance);
+    slab.halvings.store(part, normal.im * halvings);
+    slab.admittance.store(part, admittance);
+    slab.impedance.store(part, impedance);
 }
 
 /// The same where all is real; the imaginary parts stay zero.
 #[inline(always)]
 fn fill_clear<S: Simd>(
     slab: &mut Slab,
-    lane: usize,
+    part: usize,
     inverse_wavelength: Lanes<S>,
     normal: Lanes<S>,
     admittance: Lanes<S>,
     impedance: Lanes<S>,
 ) {
-    (normal * inverse_wavelength.of(2.0) * inverse_wavelength).store(&mut slab.turns.0[lane..]);
-    admittance.store(&mut slab.admittance.re.0[lane..]);
-    impedance.store(&mut slab.impedance.re.0[lane..]);
+    slab.turns.store(part, normal * inverse_wavelength.of(2.0) * inverse_wavelength);
+    slab.admittance.re.store(part, admittance);
+    slab.impedance.re.store(part, impedance);
 }

@@ -1,8 +1,10 @@
 //! The points at which a stack is evaluated together, in blocks of as many as the widest processor takes at once.
 
 use num_complex::Complex64;
+use pulp::Simd;
 
 use crate::error::{IndexError, OpticsError};
+use crate::lanes::Lanes;
 use crate::plan::Plan;
 
 /// How many points a block has.
@@ -13,8 +15,26 @@ pub(crate) const WIDTH: usize = 8;
 #[repr(align(64))]
 pub(crate) struct Row(pub(crate) [f64; WIDTH]);
 
+/// In how many parts, each as wide as a register, a block is gone through.
+#[inline(always)]
+pub(crate) const fn parts<S: Simd>() -> usize {
+    WIDTH / Lanes::<S>::COUNT
+}
+
 impl Row {
     pub(crate) const ZERO: Row = Row([0.0; WIDTH]);
+
+    /// One part of the row.
+    #[inline(always)]
+    pub(crate) fn load<S: Simd>(&self, simd: S, part: usize) -> Lanes<S> {
+        Lanes::load(simd, &self.0, part)
+    }
+
+    /// Into one part of the row.
+    #[inline(always)]
+    pub(crate) fn store<S: Simd>(&mut self, part: usize, value: Lanes<S>) {
+        value.store(&mut self.0, part);
+    }
 }
 
 /// Vacuum wavelengths with the indices of a stack's materials and mixtures there. The last block is filled up with copies of the
@@ -26,6 +46,8 @@ pub(crate) struct Points {
     wavelengths: Vec<Row>,
     /// n and k by block, and by material and mixture within it.
     indices: Vec<[Row; 2]>,
+    /// Which of them take no power anywhere in the block.
+    lossless: Vec<bool>,
 }
 
 impl Points {
@@ -39,6 +61,7 @@ impl Points {
             media,
             wavelengths: Vec::with_capacity(blocks),
             indices: vec![[Row::ZERO; 2]; blocks * media],
+            lossless: Vec::new(),
         };
         for some in wavelengths_nm.chunks(WIDTH) {
             let last = some[some.len() - 1];
@@ -55,7 +78,13 @@ impl Points {
         if plan.materials.len() < media {
             points.mix(plan)?;
         }
-        Ok(points)
+        Ok(points.finished())
+    }
+
+    /// With what follows from the indices.
+    fn finished(mut self) -> Points {
+        self.lossless = self.indices.iter().map(|[_, k]| k.0 == [0.0; WIDTH]).collect();
+        self
     }
 
     /// How many points there are.
@@ -88,7 +117,9 @@ impl Points {
             media: self.media,
             wavelengths: vec![first(&self.wavelengths[0]); blocks],
             indices: indices.repeat(blocks),
+            lossless: Vec::new(),
         }
+        .finished()
     }
 
     /// Some of the points, by their numbers.
@@ -99,6 +130,7 @@ impl Points {
             media: self.media,
             wavelengths: Vec::with_capacity(blocks),
             indices: Vec::with_capacity(blocks * self.media),
+            lossless: Vec::new(),
         };
         for some in chosen.chunks(WIDTH) {
             let of = |lane: usize| some[lane.min(some.len() - 1)];
@@ -112,7 +144,7 @@ impl Points {
                 points.indices.push([part(0), part(1)]);
             }
         }
-        points
+        points.finished()
     }
 
     /// n and k of a material or mixture over a block.
@@ -121,8 +153,9 @@ impl Points {
     }
 
     /// Whether a material or mixture takes no power anywhere in a block; of a mean of two it is not told.
+    #[inline(always)]
     pub(crate) fn is_lossless(&self, block: usize, medium: usize) -> bool {
-        medium < self.media && self.index(block, medium)[1].0 == [0.0; WIDTH]
+        medium < self.media && self.lossless[block * self.media + medium]
     }
 
     /// Whether none of them does, but for the half-space behind.

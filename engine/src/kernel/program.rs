@@ -1,5 +1,8 @@
 //! A stack's films in the order the kernels take them.
 
+use std::collections::BTreeSet;
+use std::sync::Arc;
+
 use crate::plan::{Layer, Plan};
 
 /// A coating's films in the order in which fields are carried through them.
@@ -7,8 +10,10 @@ use crate::plan::{Layer, Plan};
 pub(crate) struct Order {
     /// For light from the front: the last film first.
     pub(crate) from_front: Vec<Layer>,
-    /// For light from behind: the first film first.
+    /// For light from behind, where there can be any: the first film first.
     pub(crate) from_behind: Vec<Layer>,
+    /// Of which media they are, each once.
+    pub(crate) media: Arc<[usize]>,
 }
 
 /// What a kernel runs through.
@@ -23,12 +28,13 @@ pub(crate) struct Program {
 
 impl Program {
     pub(crate) fn new(plan: &Plan) -> Program {
-        let order = |layers: &Vec<Layer>| Order {
+        let order = |(at, layers): (usize, &Vec<Layer>)| Order {
             from_front: layers.iter().rev().copied().collect(),
-            from_behind: layers.clone(),
+            from_behind: if at < plan.bodies.len() { layers.clone() } else { Vec::new() },
+            media: layers.iter().map(|layer| layer.material).collect::<BTreeSet<_>>().into_iter().collect(),
         };
         Program {
-            coatings: plan.coatings.iter().map(order).collect(),
+            coatings: plan.coatings.iter().enumerate().map(order).collect(),
             bodies: plan.bodies.clone(),
             exit: plan.exit,
             facets: plan.bounces.iter().flatten().map(|bounce| bounce.share).collect(),

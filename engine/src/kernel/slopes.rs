@@ -3,11 +3,11 @@
 //! The sums over bodies and facets of [`Spectrum`](super::Spectrum) are gone through backwards: every intermediate result hands
 //! on how the quantity changes with it to those that it was made from.
 
-use pulp::{Simd, WithSimd};
+use pulp::{Arch, Simd, WithSimd};
 
 use super::gradient::{Coat, Passage, Place, Seeds};
 use super::media::Media;
-use super::points::{Points, Row, WIDTH};
+use super::points::{Points, Row, WIDTH, parts};
 use super::program::Program;
 use super::spectrum::Within;
 use crate::lanes::{Lanes, decay};
@@ -38,17 +38,36 @@ pub(crate) struct Gradient<'a> {
     pub(crate) slopes: &'a mut [Row],
 }
 
-impl WithSimd for Gradient<'_> {
+impl Gradient<'_> {
+    /// Runs on whichever vector instructions there are. Each set of choices is a program of its own, so that none of them has to
+    /// share the registers with another.
+    pub(crate) fn run(self) {
+        let arch = Arch::new();
+        let textured = !self.facets.is_empty();
+        match (self.modes, self.wanted.within.is_some(), textured) {
+            (&[_], false, false) => arch.dispatch(Chosen::<1, false, false>(self)),
+            (&[_], true, false) => arch.dispatch(Chosen::<1, true, false>(self)),
+            (&[_], _, true) => arch.dispatch(Chosen::<1, true, true>(self)),
+            (_, false, false) => arch.dispatch(Chosen::<2, false, false>(self)),
+            (_, true, false) => arch.dispatch(Chosen::<2, true, false>(self)),
+            (_, _, true) => arch.dispatch(Chosen::<2, true, true>(self)),
+        }
+    }
+}
+
+/// A run with its choices made.
+struct Chosen<'a, const P: usize, const LAYERS: bool, const TEXTURED: bool>(Gradient<'a>);
+
+impl<const P: usize, const LAYERS: bool, const TEXTURED: bool> WithSimd
+    for Chosen<'_, P, LAYERS, TEXTURED>
+{
     type Output = ();
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) {
-        match (self.modes, self.wanted.within.is_some()) {
-            (&[mode], false) => Run::<S, 1, false>::new(simd, [mode], self).run(),
-            (&[mode], true) => Run::<S, 1, true>::new(simd, [mode], self).run(),
-            (_, false) => Run::<S, 2, false>::new(simd, [0, 1], self).run(),
-            (_, true) => Run::<S, 2, true>::new(simd, [0, 1], self).run(),
-        }
+        let mut modes = [0; P];
+        modes.copy_from_slice(&self.0.modes[..P]);
+        Run::<S, P, LAYERS, TEXTURED>::new(simd, modes, self.0).run();
     }
 }
 
@@ -106,7 +125,7 @@ impl<S: Simd> Link<S> {
     }
 }
 
-struct Run<'a, S: Simd, const P: usize, const LAYERS: bool> {
+struct Run<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> {
     simd: S,
     modes: [usize; P],
     given: Gradient<'a>,
@@ -120,7 +139,7 @@ struct Run<'a, S: Simd, const P: usize, const LAYERS: bool> {
     changes: Vec<Lanes<S>>,
 }
 
-impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
+impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<'a, S, P, LAYERS, TEXTURED> {
     #[inline(always)]
     fn new(simd: S, modes: [usize; P], given: Gradient<'a>) -> Self {
         let mut passages = Vec::new();
@@ -143,31 +162,29 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
         let layers: usize = self.given.program.coatings.iter().map(|order| order.from_front.len()).sum();
         let zero = Lanes::splat(self.simd, 0.0);
         for block in 0..self.given.points.blocks() {
-            let mut lane = 0;
-            while lane < WIDTH {
+            for part in 0..parts::<S>() {
                 self.changes.clear();
                 self.changes.resize(layers, zero);
-                self.there(block, lane);
+                self.there(block, part);
                 let mut value = zero;
                 for p in 0..P {
                     let share = zero.of(self.given.shares[self.modes[p]]);
-                    value = self.whole(block, lane, p, share).mul_add(share, value);
+                    value = self.whole(block, part, p, share).mul_add(share, value);
                 }
-                value.store(&mut self.given.values[block].0[lane..]);
-                self.back(block, lane);
+                self.given.values[block].store(part, value);
+                self.back(block, part);
                 let rows = &mut self.given.slopes[block * layers..(block + 1) * layers];
                 for (row, change) in rows.iter_mut().zip(&self.changes) {
-                    change.store(&mut row.0[lane..]);
+                    row.store(part, *change);
                 }
-                lane += Lanes::<S>::COUNT;
             }
         }
     }
 
     #[inline(always)]
-    fn place(&self, block: usize, lane: usize) -> Place<'a, S, P> {
+    fn place(&self, block: usize, part: usize) -> Place<'a, S, P> {
         let Gradient { points, media, .. } = self.given;
-        Place { simd: self.simd, points, media, modes: self.modes, block, lane }
+        Place { simd: self.simd, points, media, modes: self.modes, block, part }
     }
 
     #[inline(always)]
@@ -176,21 +193,21 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
         let order = &program.coatings[at];
         let (before, after) = program.sides(at);
         if behind {
-            Coat { layers: &order.from_behind, entry: after, exit: before }
+            Coat { layers: &order.from_behind, media: &order.media, entry: after, exit: before }
         } else {
-            Coat { layers: &order.from_front, entry: before, exit: after }
+            Coat { layers: &order.from_front, media: &order.media, entry: before, exit: after }
         }
     }
 
     /// Every coating solved from both sides.
     #[inline(always)]
-    fn there(&mut self, block: usize, lane: usize) {
+    fn there(&mut self, block: usize, part: usize) {
         let Gradient { program, points, .. } = self.given;
         let flat = program.flat();
         for at in 0..flat {
             let sides = if at < program.bodies.len() { 2 } else { 1 };
             for side in 0..sides {
-                let (place, coat) = (self.place(block, lane), self.coat(at, side == 1));
+                let (place, coat) = (self.place(block, part), self.coat(at, side == 1));
                 let passage = &mut self.passages[at][side];
                 passage.go::<LAYERS>(place, coat);
                 for p in 0..P {
@@ -208,14 +225,14 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
                 }
             }
         }
-        if flat < program.coatings.len() {
-            self.textured(block, lane, flat);
+        if TEXTURED {
+            self.textured(block, part, flat);
         }
     }
 
     /// The last coating on its facets.
     #[inline(always)]
-    fn textured(&mut self, block: usize, lane: usize, at: usize) {
+    fn textured(&mut self, block: usize, part: usize, at: usize) {
         let Gradient { points, facets, program, .. } = self.given;
         let coat = self.coat(at, false);
         let zero = Lanes::splat(self.simd, 0.0);
@@ -224,7 +241,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
         let mut layers = vec![zero; if LAYERS { coat.layers.len() } else { 0 }];
         let mut share = 1.0;
         for (number, (media, &next)) in facets.iter().zip(&program.facets).enumerate() {
-            let place = Place { simd: self.simd, points, media, modes: [0, 1], block, lane };
+            let place = Place { simd: self.simd, points, media, modes: [0, 1], block, part };
             let passage = &mut self.facets[number];
             passage.go::<LAYERS>(place, coat);
             for mode in 0..2 {
@@ -258,7 +275,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
 
     /// The quantity of the whole for one polarisation; every link is told how it changes with it.
     #[inline(always)]
-    fn whole(&mut self, block: usize, lane: usize, p: usize, share: Lanes<S>) -> Lanes<S> {
+    fn whole(&mut self, block: usize, part: usize, p: usize, share: Lanes<S>) -> Lanes<S> {
         let Gradient { program, points, media, wanted, .. } = self.given;
         let last = program.coatings.len() - 1;
         let (zero, one) = (share.of(0.0), share.of(1.0));
@@ -270,7 +287,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
         for at in (0..last).rev() {
             let (slabs, _) = media.slabs(block);
             let body = &program.bodies[at];
-            let halvings = Lanes::load(self.simd, &slabs[body.material][self.modes[p]].halvings.0[lane..]);
+            let halvings = slabs[body.material][self.modes[p]].halvings.load(self.simd, part);
             passed[at] = decay(halvings * one.of(body.thickness_nm)).0;
             let twice = passed[at] * passed[at];
             let [front, back] = &links[at][p];
@@ -387,15 +404,15 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
 
     /// From the links back to the films.
     #[inline(always)]
-    fn back(&mut self, block: usize, lane: usize) {
+    fn back(&mut self, block: usize, part: usize) {
         let program = self.given.program;
         let flat = program.flat();
         let zero = Lanes::splat(self.simd, 0.0);
         let mut first = 0;
         for at in 0..program.coatings.len() {
             let number = program.coatings[at].from_front.len();
-            if at == flat {
-                self.textured_back(block, lane, at, first);
+            if TEXTURED && at == flat {
+                self.textured_back(block, part, at, first);
                 break;
             }
             let sides = if at < program.bodies.len() { 2 } else { 1 };
@@ -412,7 +429,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
                         self.weights[p].push(if clear { zero } else { taken.bar });
                     }
                 }
-                let (place, coat) = (self.place(block, lane), self.coat(at, side == 1));
+                let (place, coat) = (self.place(block, part), self.coat(at, side == 1));
                 let changes = &mut self.changes[first..first + number];
                 if side == 1 {
                     changes.reverse();
@@ -428,7 +445,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
 
     /// The same for the facets.
     #[inline(always)]
-    fn textured_back(&mut self, block: usize, lane: usize, at: usize, first: usize) {
+    fn textured_back(&mut self, block: usize, part: usize, at: usize, first: usize) {
         let Gradient { points, facets, program, .. } = self.given;
         let coat = self.coat(at, false);
         let zero = Lanes::splat(self.simd, 0.0);
@@ -477,7 +494,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool> Run<'a, S, P, LAYERS> {
                 bar[mode] = (bar[mode] * face.reflectance)
                     + half * (of_r * zero.of(before - next) + inner * zero.of(next));
             }
-            let place = Place { simd: self.simd, points, media, modes: [0, 1], block, lane };
+            let place = Place { simd: self.simd, points, media, modes: [0, 1], block, part };
             let changes = &mut self.changes[first..first + coat.layers.len()];
             passage.back::<LAYERS>(place, coat, &seeds, &self.both, changes);
         }

@@ -3,13 +3,14 @@
 //! The sums over bodies are those of [`Chain`](crate::bodies::Chain), those over facets of [`facets`](crate::facets), in lanes.
 
 use std::f64::consts::LN_2;
+use std::ops::Range;
 
-use pulp::{Simd, WithSimd};
+use pulp::{Arch, Simd, WithSimd};
 
 use super::face::{Face, Lossless, faces, power};
 use super::march::{Fields, Flow, march, sign_of};
 use super::media::Media;
-use super::points::{Points, Row, WIDTH};
+use super::points::{Points, Row, WIDTH, parts};
 use super::program::Program;
 use crate::lanes::{Lanes, decay};
 
@@ -33,6 +34,15 @@ impl Outcome {
         absorptance: Row::ZERO,
         within: Row::ZERO,
     };
+
+    /// T.
+    pub(crate) fn transmittance(&self) -> [f64; WIDTH] {
+        let mut passed = self.passed.0;
+        if self.halved.0 != [0.0; WIDTH] {
+            passed.iter_mut().zip(self.halved.0).for_each(|(passed, halved)| *passed *= (-halved).exp2());
+        }
+        passed
+    }
 }
 
 /// N and D of one coating at the points of a block, true up to exp(`ln_scale`).
@@ -64,30 +74,55 @@ pub(crate) struct Spectrum<'a> {
     pub(crate) media: &'a Media,
     /// The media as each facet's light meets them.
     pub(crate) facets: &'a [Media],
+    /// Which blocks.
+    pub(crate) blocks: Range<usize>,
     /// Which polarisations: 0 is s, 1 is p.
     pub(crate) modes: &'a [usize],
     pub(crate) within: Option<&'a Within>,
-    /// By block: the polarisations' outcomes, at their numbers.
+    /// By block, from the first of those wanted: the polarisations' outcomes, at their numbers.
     pub(crate) outcomes: &'a mut [[Outcome; 2]],
     /// By block, if wanted: N and D of each flat coating, by polarisation, then of each facet, s and p.
     pub(crate) channels: Option<&'a mut [Channel]>,
 }
 
-impl WithSimd for Spectrum<'_> {
+impl Spectrum<'_> {
+    /// Runs on whichever vector instructions there are. Each set of choices is a program of its own, so that none of them has to
+    /// share the registers with another.
+    pub(crate) fn run(self) {
+        let arch = Arch::new();
+        let textured = !self.facets.is_empty();
+        match (self.modes, self.channels.is_some(), self.within.is_some(), textured) {
+            (&[_], false, false, false) => arch.dispatch(Chosen::<1, false, false, false>(self)),
+            (&[_], true, false, false) => arch.dispatch(Chosen::<1, true, false, false>(self)),
+            (&[_], false, true, false) => arch.dispatch(Chosen::<1, false, true, false>(self)),
+            (&[_], true, true, false) => arch.dispatch(Chosen::<1, true, true, false>(self)),
+            (&[_], false, _, true) => arch.dispatch(Chosen::<1, false, true, true>(self)),
+            (&[_], true, _, true) => arch.dispatch(Chosen::<1, true, true, true>(self)),
+            (_, false, false, false) => arch.dispatch(Chosen::<2, false, false, false>(self)),
+            (_, true, false, false) => arch.dispatch(Chosen::<2, true, false, false>(self)),
+            (_, false, true, false) => arch.dispatch(Chosen::<2, false, true, false>(self)),
+            (_, true, true, false) => arch.dispatch(Chosen::<2, true, true, false>(self)),
+            (_, false, _, true) => arch.dispatch(Chosen::<2, false, true, true>(self)),
+            (_, true, _, true) => arch.dispatch(Chosen::<2, true, true, true>(self)),
+        }
+    }
+}
+
+/// A run with its choices made.
+struct Chosen<'a, const P: usize, const CHANNELS: bool, const LAYERS: bool, const TEXTURED: bool>(
+    Spectrum<'a>,
+);
+
+impl<const P: usize, const CHANNELS: bool, const LAYERS: bool, const TEXTURED: bool> WithSimd
+    for Chosen<'_, P, CHANNELS, LAYERS, TEXTURED>
+{
     type Output = ();
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) {
-        match (self.modes, self.within.is_some(), self.channels.is_some()) {
-            (&[mode], false, false) => Run::<S, 1, false, false>::new(simd, [mode], self).run(),
-            (&[mode], false, true) => Run::<S, 1, true, false>::new(simd, [mode], self).run(),
-            (&[mode], true, false) => Run::<S, 1, false, true>::new(simd, [mode], self).run(),
-            (&[mode], true, true) => Run::<S, 1, true, true>::new(simd, [mode], self).run(),
-            (_, false, false) => Run::<S, 2, false, false>::new(simd, [0, 1], self).run(),
-            (_, false, true) => Run::<S, 2, true, false>::new(simd, [0, 1], self).run(),
-            (_, true, false) => Run::<S, 2, false, true>::new(simd, [0, 1], self).run(),
-            (_, true, true) => Run::<S, 2, true, true>::new(simd, [0, 1], self).run(),
-        }
+        let mut modes = [0; P];
+        modes.copy_from_slice(&self.0.modes[..P]);
+        Run::<S, P, CHANNELS, LAYERS, TEXTURED>::new(simd, modes, self.0).run();
     }
 }
 
@@ -128,8 +163,8 @@ struct Links<S: Simd, const P: usize> {
     back_layers: Vec<Vec<[Lanes<S>; P]>>,
 }
 
-/// A run with its choices made, and its memory.
-struct Run<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> {
+/// A run and its memory.
+struct Run<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, const TEXTURED: bool> {
     simd: S,
     modes: [usize; P],
     given: Spectrum<'a>,
@@ -138,7 +173,9 @@ struct Run<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool
     both: Vec<Flow<S, 2>>,
 }
 
-impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<'a, S, P, CHANNELS, LAYERS> {
+impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, const TEXTURED: bool>
+    Run<'a, S, P, CHANNELS, LAYERS, TEXTURED>
+{
     #[inline(always)]
     fn new(simd: S, modes: [usize; P], given: Spectrum<'a>) -> Self {
         let count = given.program.coatings.len();
@@ -150,34 +187,32 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
 
     #[inline(always)]
     fn run(mut self) {
-        for block in 0..self.given.points.blocks() {
-            let mut lane = 0;
-            while lane < WIDTH {
-                self.coatings(block, lane);
-                self.join(block, lane);
-                lane += Lanes::<S>::COUNT;
+        for block in self.given.blocks.clone() {
+            for part in 0..parts::<S>() {
+                self.coatings(block, part);
+                self.join(block, part);
             }
         }
     }
 
     #[inline(always)]
-    fn coatings(&mut self, block: usize, lane: usize) {
+    fn coatings(&mut self, block: usize, part: usize) {
         let program = self.given.program;
         let flat = program.flat();
         for at in 0..flat {
-            self.flat(block, lane, at, false);
-            if at < program.bodies.len() {
-                self.flat(block, lane, at, true);
+            let sides = if at < program.bodies.len() { 2 } else { 1 };
+            for side in 0..sides {
+                self.flat(block, part, at, side == 1);
             }
         }
-        if flat < program.coatings.len() {
-            self.textured(block, lane, flat);
+        if TEXTURED {
+            self.textured(block, part, flat);
         }
     }
 
     /// One coating on a flat face, from the front or from behind.
     #[inline(always)]
-    fn flat(&mut self, block: usize, lane: usize, at: usize, behind: bool) {
+    fn flat(&mut self, block: usize, part: usize, at: usize, behind: bool) {
         let Spectrum { program, points, media, .. } = self.given;
         let order = &program.coatings[at];
         let (before, after) = program.sides(at);
@@ -191,11 +226,11 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
             layers,
             &waves[exit],
             self.modes,
-            lane,
+            part,
             &mut self.flows,
         );
-        let lossless = Lossless::of(points, block, entry, layers);
-        let faces = faces(self.simd, &fields, &waves[entry], &waves[exit], self.modes, lossless, lane);
+        let lossless = Lossless::of(points, block, entry, &order.media);
+        let faces = faces(self.simd, &fields, &waves[entry], &waves[exit], self.modes, lossless, part);
         let to = if behind { &mut self.links.back[at] } else { &mut self.links.front[at] };
         for p in 0..P {
             to[p] = Powers::of(&faces[p]);
@@ -215,32 +250,32 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
         if CHANNELS && !behind {
             let from = block * program.channels(P) + at;
             for p in 0..P {
-                self.channel(from + p * program.flat(), lane, &faces[p], &fields);
+                self.channel(from + p * program.flat(), part, &faces[p], &fields);
             }
         }
     }
 
     /// N and D into their place.
     #[inline(always)]
-    fn channel<const Q: usize>(&mut self, at: usize, lane: usize, face: &Face<S>, fields: &Fields<S, Q>) {
+    fn channel<const Q: usize>(&mut self, at: usize, part: usize, face: &Face<S>, fields: &Fields<S, Q>) {
         let Some(channels) = &mut self.given.channels else { return };
         let channel = &mut channels[at];
         let sign = sign_of(fields.turned) / fields.norm.sqrt();
         let (numerator, denominator) = (face.numerator.scale(sign), face.denominator.scale(sign));
-        numerator.re.store(&mut channel.numerator[0].0[lane..]);
-        numerator.im.store(&mut channel.numerator[1].0[lane..]);
-        denominator.re.store(&mut channel.denominator[0].0[lane..]);
-        denominator.im.store(&mut channel.denominator[1].0[lane..]);
-        (face.halved * sign.of(0.5 * LN_2)).store(&mut channel.ln_scale.0[lane..]);
+        channel.numerator[0].store(part, numerator.re);
+        channel.numerator[1].store(part, numerator.im);
+        channel.denominator[0].store(part, denominator.re);
+        channel.denominator[1].store(part, denominator.im);
+        channel.ln_scale.store(part, face.halved * sign.of(0.5 * LN_2));
     }
 
     /// The last coating on its facets: half of them face along the field and half across it, whatever the light's polarisation.
     #[inline(always)]
-    fn textured(&mut self, block: usize, lane: usize, at: usize) {
+    fn textured(&mut self, block: usize, part: usize, at: usize) {
         let Spectrum { program, points, facets, .. } = self.given;
         let layers = &program.coatings[at].from_front;
         let (before, after) = program.sides(at);
-        let lossless = Lossless::of(points, block, before, layers);
+        let lossless = Lossless::of(points, block, before, &program.coatings[at].media);
         let zero = Lanes::splat(self.simd, 0.0);
         // What has come back from the facets before, per polarisation, and what has gone for good.
         let (mut returned, mut lost, mut passed) = ([zero.of(1.0); 2], [zero; 2], [zero; 2]);
@@ -255,10 +290,10 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
                 layers,
                 &waves[after],
                 [0, 1],
-                lane,
+                part,
                 &mut self.both,
             );
-            let faces = faces(self.simd, &fields, &waves[before], &waves[after], [0, 1], lossless, lane);
+            let faces = faces(self.simd, &fields, &waves[before], &waves[after], [0, 1], lossless, part);
             let front = fields.flow();
             for mode in 0..2 {
                 lost[mode] = returned[mode].mul_add(zero.of(share - next), lost[mode]);
@@ -275,7 +310,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
             if CHANNELS {
                 let from = block * program.channels(P) + P * program.flat() + 2 * number;
                 for mode in 0..2 {
-                    self.channel(from + mode, lane, &faces[mode], &fields);
+                    self.channel(from + mode, part, &faces[mode], &fields);
                 }
             }
         }
@@ -296,7 +331,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
 
     /// The powers of the whole from those of its coatings.
     #[inline(always)]
-    fn join(&mut self, block: usize, lane: usize) {
+    fn join(&mut self, block: usize, part: usize) {
         let program = self.given.program;
         let last = program.coatings.len() - 1;
         let (zero, one) = (Lanes::splat(self.simd, 0.0), Lanes::splat(self.simd, 1.0));
@@ -307,7 +342,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
                 let within = if LAYERS { self.sum_within(block, p, &[(one, zero)], &[]) } else { zero };
                 self.store(
                     block,
-                    lane,
+                    part,
                     p,
                     [far.reflectance, far.passed, far.halved, far.transmittance, within],
                 );
@@ -321,7 +356,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
                 let body = &program.bodies[at];
                 let (slabs, _) = self.given.media.slabs(block);
                 let slab = &slabs[body.material][self.modes[p]];
-                let halvings = Lanes::load(self.simd, &slab.halvings.0[lane..]) * one.of(body.thickness_nm);
+                let halvings = slab.halvings.load(self.simd, part) * one.of(body.thickness_nm);
                 let passed = decay(halvings).0;
                 left[at] = (passed, halvings);
                 let (front, back) = (&links.front[at][p], &links.back[at][p]);
@@ -348,7 +383,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
             halved = halved + far.halved;
             let transmittance = arriving[last].0 * far.transmittance;
             let within = if LAYERS { self.sum_within(block, p, &arriving, &left) } else { zero };
-            self.store(block, lane, p, [behind[0], mantissa, halved, transmittance, within]);
+            self.store(block, part, p, [behind[0], mantissa, halved, transmittance, within]);
         }
     }
 
@@ -417,20 +452,20 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool> Run<
 
     /// R, T over 2^−halved, halved, T and what is absorbed within.
     #[inline(always)]
-    fn store(&mut self, block: usize, lane: usize, p: usize, values: [Lanes<S>; 5]) {
+    fn store(&mut self, block: usize, part: usize, p: usize, values: [Lanes<S>; 5]) {
         let [reflectance, passed, halved, transmittance, within] = values;
-        let outcome = &mut self.given.outcomes[block][self.modes[p]];
-        reflectance.store(&mut outcome.reflectance.0[lane..]);
-        passed.store(&mut outcome.passed.0[lane..]);
-        halved.store(&mut outcome.halved.0[lane..]);
-        within.store(&mut outcome.within.0[lane..]);
+        let outcome = &mut self.given.outcomes[block - self.given.blocks.start][self.modes[p]];
+        outcome.reflectance.store(part, reflectance);
+        outcome.passed.store(part, passed);
+        outcome.halved.store(part, halved);
+        outcome.within.store(part, within);
         // Rounding must not make a loss, or a gain, where there is none.
         let rest = if self.given.points.all_lossless(block, self.given.program.exit) {
             reflectance.of(0.0)
         } else {
             ((reflectance.of(1.0) - reflectance) - transmittance).max(reflectance.of(0.0))
         };
-        rest.store(&mut outcome.absorptance.0[lane..]);
+        outcome.absorptance.store(part, rest);
     }
 }
 

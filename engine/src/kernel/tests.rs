@@ -98,7 +98,7 @@ fn agree(stack: &Stack, wavelengths: &[f64], angle_rad: f64) -> Result<(), TestC
             near(transmittance, expected.transmittance, allowed[1], "T")?;
             near(found.absorptance.0[lane], expected.absorptance, allowed[2], "A")?;
             let ln = found.passed.0[lane].ln() - found.halved.0[lane] * std::f64::consts::LN_2;
-            if expected.transmittance > 1e-9 {
+            if expected.transmittance > 1e-6 {
                 let allowed = allowed[3] + 1e-9;
                 near(ln, expected.ln_transmittance, allowed, "ln T")?;
             }
@@ -115,7 +115,7 @@ fn agree(stack: &Stack, wavelengths: &[f64], angle_rad: f64) -> Result<(), TestC
                 {
                     let off = (found[0].0[lane] * scale - expected.re)
                         .hypot(found[1].0[lane] * scale - expected.im);
-                    prop_assert!(off <= 1e-9 * size, "N, D: {off} of {size}");
+                    prop_assert!(off <= 1e-7 * size, "N, D: {off} of {size}");
                 }
             }
         }

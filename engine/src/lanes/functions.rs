@@ -95,15 +95,15 @@ mod tests {
         #[inline(always)]
         fn with_simd<S: Simd>(self, simd: S) {
             let Each { from, to: [sine, cosine, whole, decayed, lost] } = self;
-            for at in (0..from.len()).step_by(Lanes::<S>::COUNT) {
-                let x = Lanes::load(simd, &from[at..]);
+            for at in 0..from.len() / Lanes::<S>::COUNT {
+                let x = Lanes::load(simd, from, at);
                 let (s, c, n) = half_turn(x);
-                s.store(&mut sine[at..]);
-                c.store(&mut cosine[at..]);
-                n.store(&mut whole[at..]);
+                s.store(sine, at);
+                c.store(cosine, at);
+                n.store(whole, at);
                 let (e, l) = decay(x.abs());
-                e.store(&mut decayed[at..]);
-                l.store(&mut lost[at..]);
+                e.store(decayed, at);
+                l.store(lost, at);
             }
         }
     }

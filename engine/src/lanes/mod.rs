@@ -31,18 +31,18 @@ impl<S: Simd> Lanes<S> {
         Lanes { simd, values: simd.splat_f64s(value) }
     }
 
-    /// The first values of a slice that has enough of them.
+    /// One of the registers that a slice fills.
     #[inline(always)]
-    pub(crate) fn load(simd: S, from: &[f64]) -> Self {
+    pub(crate) fn load(simd: S, from: &[f64], part: usize) -> Self {
         let (whole, _) = S::as_simd_f64s(from);
-        Lanes { simd, values: whole[0] }
+        Lanes { simd, values: whole[part] }
     }
 
-    /// Into the first places of a slice that has enough of them.
+    /// Into the place of one of the registers that a slice fills.
     #[inline(always)]
-    pub(crate) fn store(self, to: &mut [f64]) {
+    pub(crate) fn store(self, to: &mut [f64], part: usize) {
         let (whole, _) = S::as_mut_simd_f64s(to);
-        whole[0] = self.values;
+        whole[part] = self.values;
     }
 
     /// One value in all lanes, with this one's instructions.

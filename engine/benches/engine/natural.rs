@@ -1,0 +1,87 @@
+//! The formulas as one first writes them down: complex 2×2 matrices, one wavelength and one polarisation at a time.
+
+use std::f64::consts::TAU;
+
+use overcoat_engine::Complex64;
+
+const I: Complex64 = Complex64::new(0.0, 1.0);
+const ONE: Complex64 = Complex64::new(1.0, 0.0);
+
+type Matrix = [[Complex64; 2]; 2];
+
+/// Light from vacuum at an angle onto films, each with its index and thickness in nm, on a substrate.
+pub struct Case<'a> {
+    pub wavelength_nm: f64,
+    pub angle_rad: f64,
+    pub films: &'a [(Complex64, f64)],
+    pub substrate: Complex64,
+}
+
+fn times(a: &Matrix, b: &Matrix) -> Matrix {
+    let mut product = [[Complex64::ZERO; 2]; 2];
+    for row in 0..2 {
+        for column in 0..2 {
+            product[row][column] = a[row][0] * b[0][column] + a[row][1] * b[1][column];
+        }
+    }
+    product
+}
+
+impl Case<'_> {
+    fn cosine(&self, index: Complex64) -> Complex64 {
+        let sine = self.angle_rad.sin() / index;
+        (ONE - sine * sine).sqrt()
+    }
+
+    fn admittance(&self, index: Complex64, p: bool) -> Complex64 {
+        if p { index / self.cosine(index) } else { index * self.cosine(index) }
+    }
+
+    fn matrix(&self, index: Complex64, thickness_nm: f64, p: bool) -> Matrix {
+        let phase = TAU * index * thickness_nm * self.cosine(index) / self.wavelength_nm;
+        let admittance = self.admittance(index, p);
+        let (sine, cosine) = (phase.sin(), phase.cos());
+        [[cosine, -I * sine / admittance], [-I * admittance * sine, cosine]]
+    }
+
+    /// R and T of one polarisation.
+    pub fn powers(&self, p: bool) -> (f64, f64) {
+        let mut whole = [[ONE, Complex64::ZERO], [Complex64::ZERO, ONE]];
+        for &(index, thickness_nm) in self.films {
+            whole = times(&whole, &self.matrix(index, thickness_nm, p));
+        }
+        let (before, behind) = (self.admittance(ONE, p), self.admittance(self.substrate, p));
+        let b = whole[0][0] + whole[0][1] * behind;
+        let c = whole[1][0] + whole[1][1] * behind;
+        let r = (before * b - c) / (before * b + c);
+        let t = 4.0 * before.re * behind.re / (before * b + c).norm_sqr();
+        (r.norm_sqr(), t)
+    }
+
+    /// R of one polarisation and its change with every thickness, per nm: products from the front, fields from behind.
+    pub fn slopes(&self, p: bool, to: &mut [f64]) -> f64 {
+        let (before, behind) = (self.admittance(ONE, p), self.admittance(self.substrate, p));
+        let matrices: Vec<Matrix> =
+            self.films.iter().map(|&(index, nm)| self.matrix(index, nm, p)).collect();
+        let mut fields = vec![[ONE, behind]; self.films.len() + 1];
+        for (at, m) in matrices.iter().enumerate().rev() {
+            let [b, c] = fields[at + 1];
+            fields[at] = [m[0][0] * b + m[0][1] * c, m[1][0] * b + m[1][1] * c];
+        }
+        let [b, c] = fields[0];
+        let (n, d) = (before * b - c, before * b + c);
+        let r = n / d;
+        let mut front = [[ONE, Complex64::ZERO], [Complex64::ZERO, ONE]];
+        for (at, &(index, _)) in self.films.iter().enumerate() {
+            let rate = TAU * index * self.cosine(index) / self.wavelength_nm;
+            let admittance = self.admittance(index, p);
+            let [b, c] = fields[at];
+            let (db, dc) = (-I * rate * c / admittance, -I * rate * admittance * b);
+            let (db, dc) = (front[0][0] * db + front[0][1] * dc, front[1][0] * db + front[1][1] * dc);
+            let (dn, dd) = (before * db - dc, before * db + dc);
+            to[at] = 2.0 * (r.conj() * (dn - r * dd) / d).re;
+            front = times(&front, &matrices[at]);
+        }
+        r.norm_sqr()
+    }
+}
