@@ -49,6 +49,7 @@ pub use dispersion::{Index, MixingRule, Oscillator};
 pub use error::{IndexError, ModelError, OpticsError, WeightError};
 pub use field::{Peak, peak_field};
 pub use graded::{Gradient, Profile, Steps};
+pub use lanes::Vectors;
 pub use num_complex::Complex64;
 pub use parts::{Change, Part, Sampler};
 pub use prepared::{LayerSlopes, Prepared, Spectrum};

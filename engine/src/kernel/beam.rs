@@ -69,12 +69,11 @@ impl Beam {
         let (media, facets) = (&self.media, &self.facets[..]);
         let mut first = 0;
         while first < points.blocks() {
-            let blocks = first..points.blocks().min(first + BLOCKS);
-            let outcomes = &mut buffer[..blocks.len()];
-            let channels = None;
-            first = blocks.end;
+            let count = BLOCKS.min(points.blocks() - first);
+            let (blocks, outcomes, channels) = (first..first + count, &mut buffer[..count], None);
             Spectrum { program, points, media, facets, blocks, modes, within, outcomes, channels }.run();
-            take(&buffer[..points.blocks().min(first) - (first - 1) / BLOCKS * BLOCKS]);
+            take(&buffer[..count]);
+            first += count;
         }
     }
 

@@ -5,10 +5,10 @@
 
 use std::f64::consts::{LOG2_E, TAU};
 
-use pulp::{Arch, Simd, WithSimd};
+use pulp::{Simd, WithSimd};
 
 use super::points::{Points, Row, WIDTH, parts};
-use crate::lanes::{Complex, Lanes};
+use crate::lanes::{Complex, Lanes, dispatch};
 use crate::plan::{Mean, Plan};
 
 /// Smaller numbers in place of q = 0 leave sin δ/q the same to the last digit, and 1/q a number.
@@ -109,7 +109,7 @@ impl Media {
             pure,
         };
         let ends = plan.ends();
-        Arch::new().dispatch(Tables { means: &plan.means, ends: &ends, points, tilt, media: &mut media });
+        dispatch(Tables { means: &plan.means, ends: &ends, points, tilt, media: &mut media });
         media
     }
 

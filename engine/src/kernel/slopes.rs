@@ -3,14 +3,14 @@
 //! The sums over bodies and facets of [`Spectrum`](super::Spectrum) are gone through backwards: every intermediate result hands
 //! on how the quantity changes with it to those that it was made from.
 
-use pulp::{Arch, Simd, WithSimd};
+use pulp::{Simd, WithSimd};
 
 use super::gradient::{Coat, Passage, Place, Seeds};
 use super::media::Media;
 use super::points::{Points, Row, WIDTH, parts};
 use super::program::Program;
 use super::spectrum::Within;
-use crate::lanes::{Lanes, decay};
+use crate::lanes::{Lanes, decay, dispatch};
 
 /// How a quantity changes with R and T of the whole; of the absorptance of some layers, which.
 #[derive(Clone, Copy, Debug)]
@@ -42,15 +42,14 @@ impl Gradient<'_> {
     /// Runs on whichever vector instructions there are. Each set of choices is a program of its own, so that none of them has to
     /// share the registers with another.
     pub(crate) fn run(self) {
-        let arch = Arch::new();
         let textured = !self.facets.is_empty();
         match (self.modes, self.wanted.within.is_some(), textured) {
-            (&[_], false, false) => arch.dispatch(Chosen::<1, false, false>(self)),
-            (&[_], true, false) => arch.dispatch(Chosen::<1, true, false>(self)),
-            (&[_], _, true) => arch.dispatch(Chosen::<1, true, true>(self)),
-            (_, false, false) => arch.dispatch(Chosen::<2, false, false>(self)),
-            (_, true, false) => arch.dispatch(Chosen::<2, true, false>(self)),
-            (_, _, true) => arch.dispatch(Chosen::<2, true, true>(self)),
+            (&[_], false, false) => dispatch(Chosen::<1, false, false>(self)),
+            (&[_], true, false) => dispatch(Chosen::<1, true, false>(self)),
+            (&[_], _, true) => dispatch(Chosen::<1, true, true>(self)),
+            (_, false, false) => dispatch(Chosen::<2, false, false>(self)),
+            (_, true, false) => dispatch(Chosen::<2, true, false>(self)),
+            (_, _, true) => dispatch(Chosen::<2, true, true>(self)),
         }
     }
 }

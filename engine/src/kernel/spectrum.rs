@@ -5,14 +5,14 @@
 use std::f64::consts::LN_2;
 use std::ops::Range;
 
-use pulp::{Arch, Simd, WithSimd};
+use pulp::{Simd, WithSimd};
 
 use super::face::{Face, Lossless, faces, power};
 use super::march::{Fields, Flow, march, sign_of};
 use super::media::Media;
 use super::points::{Points, Row, WIDTH, parts};
 use super::program::Program;
-use crate::lanes::{Lanes, decay};
+use crate::lanes::{Lanes, decay, dispatch};
 
 /// What a stack does to light of one polarisation at the points of a block.
 #[derive(Clone, Copy, Debug)]
@@ -89,21 +89,20 @@ impl Spectrum<'_> {
     /// Runs on whichever vector instructions there are. Each set of choices is a program of its own, so that none of them has to
     /// share the registers with another.
     pub(crate) fn run(self) {
-        let arch = Arch::new();
         let textured = !self.facets.is_empty();
         match (self.modes, self.channels.is_some(), self.within.is_some(), textured) {
-            (&[_], false, false, false) => arch.dispatch(Chosen::<1, false, false, false>(self)),
-            (&[_], true, false, false) => arch.dispatch(Chosen::<1, true, false, false>(self)),
-            (&[_], false, true, false) => arch.dispatch(Chosen::<1, false, true, false>(self)),
-            (&[_], true, true, false) => arch.dispatch(Chosen::<1, true, true, false>(self)),
-            (&[_], false, _, true) => arch.dispatch(Chosen::<1, false, true, true>(self)),
-            (&[_], true, _, true) => arch.dispatch(Chosen::<1, true, true, true>(self)),
-            (_, false, false, false) => arch.dispatch(Chosen::<2, false, false, false>(self)),
-            (_, true, false, false) => arch.dispatch(Chosen::<2, true, false, false>(self)),
-            (_, false, true, false) => arch.dispatch(Chosen::<2, false, true, false>(self)),
-            (_, true, true, false) => arch.dispatch(Chosen::<2, true, true, false>(self)),
-            (_, false, _, true) => arch.dispatch(Chosen::<2, false, true, true>(self)),
-            (_, true, _, true) => arch.dispatch(Chosen::<2, true, true, true>(self)),
+            (&[_], false, false, false) => dispatch(Chosen::<1, false, false, false>(self)),
+            (&[_], true, false, false) => dispatch(Chosen::<1, true, false, false>(self)),
+            (&[_], false, true, false) => dispatch(Chosen::<1, false, true, false>(self)),
+            (&[_], true, true, false) => dispatch(Chosen::<1, true, true, false>(self)),
+            (&[_], false, _, true) => dispatch(Chosen::<1, false, true, true>(self)),
+            (&[_], true, _, true) => dispatch(Chosen::<1, true, true, true>(self)),
+            (_, false, false, false) => dispatch(Chosen::<2, false, false, false>(self)),
+            (_, true, false, false) => dispatch(Chosen::<2, true, false, false>(self)),
+            (_, false, true, false) => dispatch(Chosen::<2, false, true, false>(self)),
+            (_, true, true, false) => dispatch(Chosen::<2, true, true, false>(self)),
+            (_, false, _, true) => dispatch(Chosen::<2, false, true, true>(self)),
+            (_, true, _, true) => dispatch(Chosen::<2, true, true, true>(self)),
         }
     }
 }

@@ -5,6 +5,7 @@
 //! without the processor's vector instructions. For the same reason kernels pass no closures about.
 
 mod complex;
+mod dispatch;
 mod functions;
 
 use std::ops::{Add, Div, Mul, Neg, Sub};
@@ -12,6 +13,8 @@ use std::ops::{Add, Div, Mul, Neg, Sub};
 use pulp::Simd;
 
 pub(crate) use complex::Complex;
+pub use dispatch::Vectors;
+pub(crate) use dispatch::dispatch;
 pub(crate) use functions::{decay, half_turn, power_of_two};
 
 /// As many values as a vector register holds: 8 with AVX-512, 4 with AVX2, 2 with NEON, 1 without any.
