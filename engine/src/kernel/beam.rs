@@ -10,7 +10,7 @@ use crate::plan::{Layer, Plan};
 const OPAQUE: f64 = 58.0;
 
 /// So many blocks' outcomes stay in the processor's nearest memory.
-const BLOCKS: usize = 16;
+const BLOCKS: usize = 20;
 
 /// The media of a stack under one beam.
 #[derive(Clone, Debug)]
@@ -44,7 +44,7 @@ impl Beam {
     /// fringe with the rest: there the film counts as none.
     pub(crate) fn phases<'a>(&'a self, program: &'a Program, point: usize) -> impl Iterator<Item = f64> + 'a {
         let (block, lane) = (point / WIDTH, point % WIDTH);
-        let (slabs, _) = self.media.slabs(block);
+        let slabs = self.media.slabs(block).slabs;
         let turns = move |layer: &Layer| {
             let slab = &slabs[layer.material][0];
             if slab.halvings.0[lane] * layer.thickness_nm > OPAQUE {

@@ -17,19 +17,13 @@ pub(crate) struct Face<S: Simd> {
     /// T over 2^−halved.
     pub(crate) passed: Lanes<S>,
     pub(crate) halved: Lanes<S>,
+    /// T.
+    pub(crate) transmittance: Lanes<S>,
     /// N and D of r = N/D, in the fields' own scale.
     pub(crate) numerator: Complex<S>,
     pub(crate) denominator: Complex<S>,
     /// The power flow of a field in the coating, in the fields' own scale, over that of the arriving wave.
     pub(crate) share: Lanes<S>,
-}
-
-impl<S: Simd> Face<S> {
-    /// T.
-    #[inline(always)]
-    pub(crate) fn transmittance(&self) -> Lanes<S> {
-        self.passed * power(self.halved)
-    }
 }
 
 /// 2^−halved; fields that grew in a clear film may make the exponent negative.
@@ -80,10 +74,12 @@ pub(crate) fn faces<S: Simd, const P: usize>(
         reflectance: zero,
         passed: zero,
         halved: fields.halved,
+        transmittance: zero,
         numerator: nothing,
         denominator: nothing,
         share: zero,
     }; P];
+    let scale = power(fields.halved);
     for p in 0..P {
         let arriving = Pair::of_wave(simd, &entry[modes[p]], part);
         let leaving = Pair::of_wave(simd, &exit[modes[p]], part);
@@ -97,21 +93,22 @@ pub(crate) fn faces<S: Simd, const P: usize>(
         // Without absorption |D|² = |N|² + 4 × both power flows, and in this form no rounding, not even at a resonance finer
         // than any number, can make R + T other than 1.
         let whole = if lossless.before && lossless.films {
-            (four * flux_in * flux_out).mul_add(power(fields.halved), reflected)
+            (four * flux_in * flux_out).mul_add(scale, reflected)
         } else {
             arrived
         };
-        let over = zero.of(1.0) / whole;
-        let reflectance = reflected * over;
-        let share = four * (arriving.b * arriving.c).norm_sqr() / flux_in * over;
-        let passed = share * flux_out;
+        // One division for both.
+        let over = zero.of(1.0) / (whole * flux_in);
+        let reflectance = reflected * flux_in * over;
+        let share = four * (arriving.b * arriving.c).norm_sqr() * over;
         let face = &mut faces[p];
         // Where the medium before carries no power no light arrives.
         face.reflectance = zero.where_less(flux_in, reflectance, zero);
-        face.passed = zero.where_less(flux_in, passed, zero);
         face.share = zero.where_less(flux_in, share, zero);
+        face.passed = face.share * flux_out;
+        face.transmittance = face.passed * scale;
         if lossless.before {
-            let both = face.reflectance + face.passed * power(fields.halved);
+            let both = face.reflectance + face.transmittance;
             face.reflectance = zero.of(1.0 + LOST).where_less(both, zero.of(f64::NAN), face.reflectance);
         }
         (face.numerator, face.denominator) = (difference, sum);

@@ -11,7 +11,7 @@ use pulp::Simd;
 
 use super::face::{Face, Lossless, faces, power};
 use super::march::{Fields, LOOK, Pair, Turn};
-use super::media::{Kind, Media, Slab};
+use super::media::{Kind, Media, Slabs};
 use super::points::Points;
 use crate::lanes::{Complex, Lanes};
 use crate::plan::Layer;
@@ -120,6 +120,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
             reflectance: zero,
             passed: zero,
             halved: zero,
+            transmittance: zero,
             numerator: none,
             denominator: none,
             share: zero,
@@ -139,7 +140,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
     #[inline(always)]
     pub(crate) fn go<const LAYERS: bool>(&mut self, place: Place<'_, S, P>, coat: Coat<'_>) {
         let Place { simd, points, media, modes, block, part } = place;
-        let (slabs, kinds) = media.slabs(block);
+        let Slabs { slabs, kinds, strongest } = media.slabs(block);
         let waves = media.waves(block);
         let mut fields = Fields::new(simd, &waves[coat.exit], modes, part);
         self.saved.clear();
@@ -182,7 +183,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
                     self.dim.push(fields.through_dim::<false>(
                         simd,
                         slab,
-                        kind,
+                        (kind, strongest[layer.material]),
                         modes,
                         part,
                         layer.thickness_nm,
@@ -242,7 +243,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
         changes: &mut [Lanes<S>],
     ) {
         let Place { simd, media, modes, block, part, .. } = place;
-        let (slabs, kinds) = media.slabs(block);
+        let Slabs { slabs, kinds, strongest } = media.slabs(block);
         let waves = media.waves(block);
         let zero = Lanes::splat(simd, 0.0);
         let two = zero.of(2.0);
@@ -253,7 +254,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
             let (n, d) = (face.numerator, face.denominator);
             let over = zero.of(1.0) / d.norm_sqr();
             let Seeds { reflectance, transmittance } = seeds[p];
-            let mut through = reflectance * face.reflectance + transmittance * face.transmittance();
+            let mut through = reflectance * face.reflectance + transmittance * face.transmittance;
             if LAYERS {
                 through = through + self.absorbed(p, &weights[p]);
             }
@@ -318,7 +319,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
                 for p in 0..P {
                     let slab = &slabs[modes[p]];
                     if kind == Kind::Mean {
-                        let own = Turn::new(simd, slab, part, zero.of(layer.thickness_nm)).whole();
+                        let own = Turn::new(simd, slab, part, strongest[layer.material], layer.thickness_nm).whole();
                         turn = (own.cosine, own.lift);
                     }
                     let rate = Complex {

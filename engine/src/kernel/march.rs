@@ -6,14 +6,13 @@
 
 use pulp::{Simd, bytemuck};
 
-use super::media::{Kind, Slab, Wave};
-use crate::lanes::{Complex, Lanes, decay, half_turn, power_of_two};
+use super::media::{Kind, Slab, Slabs, Wave};
+use crate::lanes::{Complex, FEW_BITS, Lanes, decay, half_turn, power_of_two, weak_decay};
 use crate::plan::Layer;
 
-/// After how many films the fields' size is looked at. Between two looks it changes by less than 10^64.
-pub(crate) const LOOK: usize = 16;
-/// Outside of which the fields are brought back to a size of 1.
-const SMALL: f64 = 1e-60;
+/// After how many films the fields' size is looked at. A film changes it by less than 10⁵.
+pub(crate) const LOOK: usize = 32;
+/// Fields greater than this, or smaller than one over it, are brought back to a size near 1.
 const LARGE: f64 = 1e60;
 
 /// Electric and magnetic field.
@@ -77,11 +76,13 @@ pub(crate) struct Turn<S: Simd> {
 impl<S: Simd> Turn<S> {
     /// With δ = x + iy: cos δ = cos x cosh y − i sin x sinh y, and −i sin δ = cos x sinh y − i sin x cosh y.
     #[inline(always)]
-    pub(crate) fn new(simd: S, slab: &Slab, part: usize, thickness: Lanes<S>) -> Self {
+    pub(crate) fn new(simd: S, slab: &Slab, part: usize, strongest: f64, thickness_nm: f64) -> Self {
+        let thickness = Lanes::splat(simd, thickness_nm);
         let (sine, cosine, whole) = half_turn(slab.turns.load(simd, part) * thickness);
         let halvings = slab.halvings.load(simd, part) * thickness;
         // Both hyperbolic functions over e^y, whose square is 2^halvings.
-        let (left, lost) = decay(halvings);
+        let (left, lost) =
+            if strongest * thickness_nm < FEW_BITS { weak_decay(halvings) } else { decay(halvings) };
         let half = thickness.of(0.5);
         let (cosh, sinh) = (left.mul_add(half, half), lost * half);
         Turn {
@@ -144,17 +145,16 @@ impl<S: Simd, const P: usize> Fields<S, P> {
         &mut self,
         simd: S,
         slabs: &[Slab; 2],
-        kind: Kind,
+        (kind, strongest): (Kind, f64),
         modes: [usize; P],
         part: usize,
         thickness_nm: f64,
     ) -> (Complex<S>, Complex<S>) {
-        let thickness = Lanes::splat(simd, thickness_nm);
-        let mut turn = Turn::new(simd, &slabs[modes[0]], part, thickness);
+        let mut turn = Turn::new(simd, &slabs[modes[0]], part, strongest, thickness_nm);
         for p in 0..P {
             let slab = &slabs[modes[p]];
             if kind == Kind::Mean {
-                turn = Turn::new(simd, slab, part, thickness).whole();
+                turn = Turn::new(simd, slab, part, strongest, thickness_nm).whole();
             }
             let over = turn.lift * slab.impedance.load(simd, part);
             let times = turn.lift * slab.admittance.load(simd, part);
@@ -178,8 +178,7 @@ impl<S: Simd, const P: usize> Fields<S, P> {
         for Pair { b, c } in self.pairs {
             size = size.max(b.re.abs().max(b.im.abs())).max(c.re.abs().max(c.im.abs()));
         }
-        let (least, greatest) = (size.least(), size.greatest());
-        let extreme = least < SMALL || greatest > LARGE || self.norm.greatest() > LARGE;
+        let extreme = size.max(size.of(1.0) / size).max(self.norm).greatest() > LARGE;
         if extreme { Some(self.rescale(size)) } else { None }
     }
 
@@ -241,7 +240,7 @@ impl<S: Simd, const P: usize> Fields<S, P> {
 #[inline(always)]
 pub(crate) fn march<S: Simd, const P: usize, const SIGNED: bool, const FLOWS: bool>(
     simd: S,
-    (slabs, kinds): (&[[Slab; 2]], &[Kind]),
+    Slabs { slabs, kinds, strongest }: Slabs<'_>,
     layers: &[Layer],
     exit: &[Wave; 2],
     modes: [usize; P],
@@ -275,7 +274,8 @@ pub(crate) fn march<S: Simd, const P: usize, const SIGNED: bool, const FLOWS: bo
                 if kind == Kind::Clear {
                     break;
                 }
-                fields.through_dim::<SIGNED>(simd, slab, kind, modes, part, layer.thickness_nm);
+                let kinds = (kind, strongest[layer.material]);
+                fields.through_dim::<SIGNED>(simd, slab, kinds, modes, part, layer.thickness_nm);
                 if kind == Kind::Mean {
                     fields.look();
                 }

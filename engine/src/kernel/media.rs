@@ -81,10 +81,21 @@ impl Wave {
 pub(crate) struct Media {
     count: usize,
     kinds: Vec<Kind>,
+    /// The most halvings per nm in each block.
+    strongest: Vec<f64>,
     slabs: Vec<[Slab; 2]>,
     waves: Vec<[Wave; 2]>,
     /// Of the materials.
     pure: usize,
+}
+
+/// All media in one block.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct Slabs<'a> {
+    /// Of each for s and for p.
+    pub(crate) slabs: &'a [[Slab; 2]],
+    pub(crate) kinds: &'a [Kind],
+    pub(crate) strongest: &'a [f64],
 }
 
 /// From where the light's angle counts.
@@ -104,20 +115,31 @@ impl Media {
         let mut media = Media {
             count,
             kinds: vec![Kind::Clear; blocks * count],
+            strongest: vec![0.0; blocks * count],
             slabs: vec![[Slab::ZERO; 2]; blocks * count],
             waves: vec![[Wave::ZERO; 2]; blocks * pure],
             pure,
         };
         let ends = plan.ends();
         dispatch(Tables { means: &plan.means, ends: &ends, points, tilt, media: &mut media });
+        for ((strongest, slabs), kind) in media.strongest.iter_mut().zip(&media.slabs).zip(&media.kinds) {
+            if *kind != Kind::Clear {
+                let [s, p] = slabs;
+                *strongest = s.halvings.0.iter().chain(&p.halvings.0).copied().fold(0.0, f64::max);
+            }
+        }
         media
     }
 
     /// The media of a block.
     #[inline(always)]
-    pub(crate) fn slabs(&self, block: usize) -> (&[[Slab; 2]], &[Kind]) {
-        let from = block * self.count;
-        (&self.slabs[from..from + self.count], &self.kinds[from..from + self.count])
+    pub(crate) fn slabs(&self, block: usize) -> Slabs<'_> {
+        let of = block * self.count..(block + 1) * self.count;
+        Slabs {
+            slabs: &self.slabs[of.clone()],
+            kinds: &self.kinds[of.clone()],
+            strongest: &self.strongest[of],
+        }
     }
 
     /// The running waves of the materials in a block.

@@ -64,8 +64,11 @@ impl<const P: usize, const LAYERS: bool, const TEXTURED: bool> WithSimd
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) {
+        // Of both polarisations the numbers are known to the compiler.
         let mut modes = [0; P];
-        modes.copy_from_slice(&self.0.modes[..P]);
+        for (p, mode) in modes.iter_mut().enumerate() {
+            *mode = if P == 2 { p } else { self.0.modes[0] };
+        }
         Run::<S, P, LAYERS, TEXTURED>::new(simd, modes, self.0).run();
     }
 }
@@ -213,7 +216,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
                     let face = &passage.faces[p];
                     let link = &mut self.links[at][p][side];
                     link.reflectance = Var::of(face.reflectance);
-                    link.transmittance = Var::of(face.transmittance());
+                    link.transmittance = Var::of(face.transmittance);
                     if LAYERS {
                         passage.taken(points, block, coat.layers, p, &mut self.both[0]);
                         link.layers.clear();
@@ -247,7 +250,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
                 let face = &passage.faces[mode];
                 back = returned[mode].mul_add(half * zero.of(share - next), back);
                 let arriving = returned[mode] * half * zero.of(next);
-                passed = arriving.mul_add(face.transmittance(), passed);
+                passed = arriving.mul_add(face.transmittance, passed);
                 if LAYERS {
                     passage.taken(points, block, coat.layers, mode, &mut self.both[0]);
                     for (sum, taken) in layers.iter_mut().zip(&self.both[0]) {
@@ -284,7 +287,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
         let mut gain = vec![Var::of(one); last];
         let mut behind = vec![Var::of(links[last][p][0].reflectance.is); last + 1];
         for at in (0..last).rev() {
-            let (slabs, _) = media.slabs(block);
+            let slabs = media.slabs(block).slabs;
             let body = &program.bodies[at];
             let halvings = slabs[body.material][self.modes[p]].halvings.load(self.simd, part);
             passed[at] = decay(halvings * one.of(body.thickness_nm)).0;
@@ -479,7 +482,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
                 let arriving = came * half * zero.of(next);
                 let face = &passage.faces[mode];
                 seeds[mode] = Seeds { reflectance: bar[mode] * came, transmittance: of_t * arriving };
-                let mut inner = of_t * face.transmittance();
+                let mut inner = of_t * face.transmittance;
                 self.both[mode].clear();
                 if LAYERS {
                     let mut taken = Vec::new();

@@ -119,8 +119,11 @@ impl<const P: usize, const CHANNELS: bool, const LAYERS: bool, const TEXTURED: b
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) {
+        // Of both polarisations the numbers are known to the compiler.
         let mut modes = [0; P];
-        modes.copy_from_slice(&self.0.modes[..P]);
+        for (p, mode) in modes.iter_mut().enumerate() {
+            *mode = if P == 2 { p } else { self.0.modes[0] };
+        }
         Run::<S, P, CHANNELS, LAYERS, TEXTURED>::new(simd, modes, self.0).run();
     }
 }
@@ -145,7 +148,7 @@ impl<S: Simd> Powers<S> {
     fn of(face: &Face<S>) -> Self {
         Powers {
             reflectance: face.reflectance,
-            transmittance: face.transmittance(),
+            transmittance: face.transmittance,
             passed: face.passed,
             halved: face.halved,
         }
@@ -167,6 +170,8 @@ struct Run<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool
     simd: S,
     modes: [usize; P],
     given: Spectrum<'a>,
+    /// Whether nothing absorbs in the block that is under way.
+    all_lossless: bool,
     links: Links<S, P>,
     flows: Vec<Flow<S, P>>,
     both: Vec<Flow<S, 2>>,
@@ -178,15 +183,18 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, cons
     #[inline(always)]
     fn new(simd: S, modes: [usize; P], given: Spectrum<'a>) -> Self {
         let count = given.program.coatings.len();
-        let (none, layers) = (vec![[Powers::dark(simd); P]; count], vec![Vec::new(); count]);
-        let links =
-            Links { front: none.clone(), back: none, front_layers: layers.clone(), back_layers: layers };
-        Run { simd, modes, given, links, flows: Vec::new(), both: Vec::new() }
+        let none = vec![[Powers::dark(simd); P]; count];
+        let layers = vec![Vec::new(); if LAYERS { count } else { 0 }];
+        // A single coating is not met from behind.
+        let back = if count > 1 { none.clone() } else { Vec::new() };
+        let links = Links { front: none, back, front_layers: layers.clone(), back_layers: layers };
+        Run { simd, modes, given, all_lossless: false, links, flows: Vec::new(), both: Vec::new() }
     }
 
     #[inline(always)]
     fn run(mut self) {
         for block in self.given.blocks.clone() {
+            self.all_lossless = self.given.points.all_lossless(block, self.given.program.exit);
             for part in 0..parts::<S>() {
                 self.coatings(block, part);
                 self.join(block, part);
@@ -297,7 +305,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, cons
             for mode in 0..2 {
                 lost[mode] = returned[mode].mul_add(zero.of(share - next), lost[mode]);
                 let arriving = returned[mode] * zero.of(next);
-                passed[mode] = arriving.mul_add(faces[mode].transmittance(), passed[mode]);
+                passed[mode] = arriving.mul_add(faces[mode].transmittance, passed[mode]);
                 returned[mode] = returned[mode] * faces[mode].reflectance;
                 for ((sum, layer), step) in sums.iter_mut().zip(layers).zip(self.both.windows(2)) {
                     let clear = points.is_lossless(block, layer.material);
@@ -353,7 +361,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, cons
             let mut left = vec![(one, zero); last];
             for at in (0..last).rev() {
                 let body = &program.bodies[at];
-                let (slabs, _) = self.given.media.slabs(block);
+                let slabs = self.given.media.slabs(block).slabs;
                 let slab = &slabs[body.material][self.modes[p]];
                 let halvings = slab.halvings.load(self.simd, part) * one.of(body.thickness_nm);
                 let passed = decay(halvings).0;
@@ -459,7 +467,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, cons
         outcome.halved.store(part, halved);
         outcome.within.store(part, within);
         // Rounding must not make a loss, or a gain, where there is none.
-        let rest = if self.given.points.all_lossless(block, self.given.program.exit) {
+        let rest = if self.all_lossless {
             reflectance.of(0.0)
         } else {
             ((reflectance.of(1.0) - reflectance) - transmittance).max(reflectance.of(0.0))

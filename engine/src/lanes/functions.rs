@@ -23,6 +23,17 @@ const GROWTH: [f64; 11] = [
     7.074105815840354e-09,
     4.4352823572582856e-10,
 ];
+/// Up to this many bits the series of (2^f − 1)/f, whose terms are (ln 2)ⁿ/n!, needs seven terms only.
+pub(crate) const FEW_BITS: f64 = 0.04;
+const WEAK_GROWTH: [f64; 7] = [
+    0.6931471805599453,
+    0.24022650695910072,
+    0.05550410866482158,
+    0.009618129107628477,
+    0.0013333558146428443,
+    0.0001540353039338161,
+    1.525273380405984e-05,
+];
 /// Added to a number below 2⁵¹ in size and taken off again it leaves the nearest whole one.
 const WHOLE: f64 = 6_755_399_441_055_744.0;
 
@@ -66,6 +77,14 @@ pub(crate) fn decay<S: Simd>(bits: Lanes<S>) -> (Lanes<S>, Lanes<S>) {
     (scale + growth, (scale.of(1.0) - scale) - growth)
 }
 
+/// The same for t up to [`FEW_BITS`], where fewer terms are as exact.
+#[inline(always)]
+pub(crate) fn weak_decay<S: Simd>(bits: Lanes<S>) -> (Lanes<S>, Lanes<S>) {
+    let rest = -bits;
+    let growth = rest * polynomial(&WEAK_GROWTH, rest);
+    (rest.of(1.0) + growth, -growth)
+}
+
 /// 2^n for whole n from −1022 to 1023.
 #[inline(always)]
 pub(crate) fn power_of_two<S: Simd>(whole: Lanes<S>) -> Lanes<S> {
@@ -102,6 +121,10 @@ mod tests {
                 c.store(cosine, at);
                 n.store(whole, at);
                 let (e, l) = decay(x.abs());
+                let (weak, weakly) = weak_decay(x.abs());
+                let bound = x.of(FEW_BITS);
+                let l = x.abs().where_less(bound, weakly, l);
+                let e = x.abs().where_less(bound, weak, e);
                 e.store(decayed, at);
                 l.store(lost, at);
             }
@@ -110,7 +133,7 @@ mod tests {
 
     #[test]
     fn sine_cosine_and_decay_are_the_librarys() {
-        for scale in [1e-12, 1e-3, 0.4, 1.0, 30.0, 2000.0] {
+        for scale in [1e-12, 1e-3, 0.04, 0.4, 1.0, 30.0, 2000.0] {
             let from: Vec<f64> = (0..64).map(|at| scale * (f64::from(at) - 31.3) / 31.0).collect();
             let mut to = vec![vec![0.0; 64]; 5];
             let [a, b, c, d, e] = &mut to[..] else { unreachable!() };

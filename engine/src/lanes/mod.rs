@@ -15,7 +15,7 @@ use pulp::Simd;
 pub(crate) use complex::Complex;
 pub use dispatch::Vectors;
 pub(crate) use dispatch::dispatch;
-pub(crate) use functions::{decay, half_turn, power_of_two};
+pub(crate) use functions::{FEW_BITS, decay, half_turn, power_of_two, weak_decay};
 
 /// As many values as a vector register holds: 8 with AVX-512, 4 with AVX2, 2 with NEON, 1 without any.
 #[derive(Clone, Copy, Debug)]
