@@ -4,6 +4,8 @@
 //! rounds' ratios. An evaluation is one film at one wavelength for one polarisation. `-- --json` prints the numbers for
 //! `tests/reference/speed.py`, and `-- --count CASE TIMES` runs one case so many times under AVX2, for counting instructions.
 
+#![expect(clippy::print_stdout, clippy::print_stderr, reason = "a benchmark prints its table")]
+
 #[path = "engine/cases.rs"]
 mod cases;
 #[path = "engine/natural.rs"]

@@ -5,11 +5,14 @@
 //! from behind. It is the reverse mode of differentiation of A. Griewank, A. Walther, *Evaluating Derivatives*, 2nd ed.
 //! (2008), chapter 3, for a product of matrices.
 
+#[cfg(test)]
 use num_complex::Complex64;
 
+#[cfg(test)]
 use crate::coating::{Coating, Detail, Powers};
 use crate::matrix::{Medium, Mode, Pair, Step};
 use crate::number::Number;
+#[cfg(test)]
 use crate::real::Slope;
 
 /// How N and D of r = N/D change with the thickness of a layer, over D, per nm.
@@ -78,6 +81,7 @@ impl<N: Number> Passage<'_, N> {
     }
 }
 
+#[cfg(test)]
 impl Passage<'_, Complex64> {
     /// The coating's powers with their derivative in the thickness of each layer, per nm: one entry a layer.
     pub(crate) fn slopes(&self, detail: Detail) -> Vec<Powers<Slope>> {

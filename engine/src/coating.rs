@@ -22,9 +22,12 @@ pub(crate) struct Coating {
     /// The numerator and the denominator of r, the amplitude of the tangential electric field reflected, up to
     /// a common positive factor. For p this is the sign with which r is the same for s and p at normal
     /// incidence.
+    #[cfg_attr(not(test), expect(dead_code, reason = "the kernels' own are tested against it"))]
     pub(crate) numerator: Complex64,
+    #[cfg_attr(not(test), expect(dead_code, reason = "the kernels' own are tested against it"))]
     pub(crate) denominator: Complex64,
     /// The logarithm of that factor's size.
+    #[cfg_attr(not(test), expect(dead_code, reason = "the kernels' own are tested against it"))]
     pub(crate) ln_scale: f64,
 }
 

@@ -10,7 +10,7 @@
 
 use crate::dispersion::{Index, MixingRule};
 use crate::error::OpticsError;
-use crate::response::Polarisation;
+use crate::prepared::{Prepared, Spectrum};
 use crate::stack::{Film, Stack};
 
 /// What a film is made of.
@@ -88,20 +88,22 @@ impl Stack {
             return Ok(self);
         }
         let angle_rad = if self.facets_rad.is_some() { 0.0 } else { angle_rad };
-        let mut beams = Vec::new();
+        let mut wavelengths = Vec::new();
         for &(lo, hi) in bands_nm {
-            for at in 0..=WAVELENGTHS {
-                let wavelength = lo + (hi - lo) * at as f64 / WAVELENGTHS as f64;
-                beams.push((wavelength, 0.0, Polarisation::S));
-                beams.extend([Polarisation::S, Polarisation::P].map(|mode| (wavelength, angle_rad, mode)));
-            }
+            let at = |at: usize| lo + (hi - lo) * at as f64 / WAVELENGTHS as f64;
+            wavelengths.extend((0..=WAVELENGTHS).map(at));
         }
-        beams.dedup();
+        wavelengths.dedup();
         let responses = |stack: &Stack| -> Result<Vec<[f64; 2]>, OpticsError> {
-            let one = |&(wavelength, angle, mode): &(f64, f64, Polarisation)| {
-                stack.response(wavelength, angle, mode).map(|found| [found.reflectance, found.transmittance])
-            };
-            beams.iter().map(one).collect()
+            let mut powers = Vec::new();
+            for angle_rad in [0.0, angle_rad] {
+                let Spectrum { reflectance, transmittance } =
+                    Prepared::new(stack, &wavelengths, angle_rad)?.spectrum()?;
+                for (reflectance, transmittance) in reflectance.iter().zip(&transmittance) {
+                    powers.extend(reflectance.iter().zip(transmittance).map(|(r, t)| [*r, *t]));
+                }
+            }
+            Ok(powers)
         };
         let mut before = responses(&self)?;
         let mut steps = 8;

@@ -28,13 +28,15 @@ mod matrix;
 mod number;
 mod parts;
 mod phase;
-mod prepared;
 mod plan;
+mod prepared;
 mod quadrature;
 mod quantity;
 mod real;
 mod response;
 mod slopes;
+#[cfg(test)]
+mod slopes_defined;
 mod stack;
 mod taylor;
 mod tilted;

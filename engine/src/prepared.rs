@@ -1,8 +1,10 @@
 //! A stack at many wavelengths, prepared once for its materials and evaluated again for other thicknesses.
 
+use crate::band::Probe;
 use crate::error::OpticsError;
 use crate::kernel::{Beam, Points, Program, Row, WIDTH, Wanted};
 use crate::plan::Plan;
+use crate::response::{Polarisation, Response};
 use crate::stack::Stack;
 
 /// A stack under light of one angle of incidence, with the constants of its materials at some wavelengths.
@@ -34,6 +36,33 @@ impl Prepared {
         let points = Points::new(&plan, wavelengths_nm)?;
         let beam = Beam::new(&plan, &points, &[angle_rad])?;
         Ok(Prepared { program: Program::new(&plan), plan, points, beam, angle_rad })
+    }
+
+    /// What the stack does to light of one polarisation, by wavelength.
+    ///
+    /// # Errors
+    /// [`OpticsError::NotFinite`] where a resonance is finer than the numbers.
+    pub fn responses(&self, polarisation: Polarisation) -> Result<Vec<Response>, OpticsError> {
+        let shares = polarisation.shares();
+        let modes = Probe::modes(shares);
+        let mut responses = Vec::with_capacity(self.points.blocks() * WIDTH);
+        self.beam.outcomes(&self.program, &self.points, modes, None, |outcomes| {
+            for outcome in outcomes {
+                responses.extend((0..WIDTH).map(|lane| {
+                    let one = |mode: usize| outcome[mode].response(lane);
+                    match *modes {
+                        [mode] => one(mode),
+                        _ => one(0).zip(one(1)).map(|(s, p)| Response::mean(s, p)),
+                    }
+                }));
+            }
+        });
+        responses.truncate(self.points.count());
+        let of = |(at, response): (usize, Option<Response>)| {
+            let (wavelength_nm, angle_rad) = (self.points.wavelength(at), self.angle_rad);
+            response.ok_or(OpticsError::NotFinite { wavelength_nm, angle_rad })
+        };
+        responses.into_iter().enumerate().map(of).collect()
     }
 
     /// R and T of both polarisations.

@@ -45,12 +45,14 @@ impl Real for f64 {
 }
 
 /// A value with its derivative in one variable.
+#[cfg(test)]
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(crate) struct Slope {
     pub(crate) value: f64,
     pub(crate) slope: f64,
 }
 
+#[cfg(test)]
 impl Add for Slope {
     type Output = Slope;
     fn add(self, other: Slope) -> Slope {
@@ -58,6 +60,7 @@ impl Add for Slope {
     }
 }
 
+#[cfg(test)]
 impl Sub for Slope {
     type Output = Slope;
     fn sub(self, other: Slope) -> Slope {
@@ -65,6 +68,7 @@ impl Sub for Slope {
     }
 }
 
+#[cfg(test)]
 impl Mul for Slope {
     type Output = Slope;
     fn mul(self, other: Slope) -> Slope {
@@ -73,6 +77,7 @@ impl Mul for Slope {
     }
 }
 
+#[cfg(test)]
 impl Div for Slope {
     type Output = Slope;
     fn div(self, other: Slope) -> Slope {
@@ -81,6 +86,7 @@ impl Div for Slope {
     }
 }
 
+#[cfg(test)]
 impl Real for Slope {
     fn of(value: f64) -> Slope {
         Slope { value, slope: 0.0 }

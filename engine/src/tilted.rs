@@ -133,6 +133,7 @@ impl Tilted<'_> {
     }
 
     /// Every coating as light from the front meets it, on facets and on the flat: what has resonances.
+    #[cfg(test)]
     pub(crate) fn resonators(&self, mode: Mode) -> impl Iterator<Item = Coating> {
         let flat = (0..self.flat()).map(move |at| self.face(at, Side::Front).solve(mode, Detail::Whole));
         flat.chain(

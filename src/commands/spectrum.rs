@@ -7,7 +7,7 @@ use crate::failure::Failure;
 use crate::views::Shown;
 use crate::views::amount::shortest;
 use crate::{output, quantity};
-use overcoat_engine::{IndexError, OpticsError, Polarisation, Response};
+use overcoat_engine::{IndexError, OpticsError, Polarisation, Prepared, Response};
 use overcoat_lang::model::{Element, Material, Recipe};
 use overcoat_lang::{engine_stack, range_of};
 use std::sync::Arc;
@@ -39,11 +39,11 @@ pub(super) fn run(arguments: &Spectrum, global: &Global) -> Result<Status, Failu
     let stack = engine_stack(written, arguments.from == From::Exit, band, angle);
     let stack = stack.map_err(|why| no_spectrum(&why))?;
     let shown = Shown::new(&project.sources, &opened.root.folder, &opened.here);
-    let mut rows = Vec::new();
-    for wavelength in grid(band, step)? {
-        let response = stack.response(wavelength, angle, polarisation);
-        rows.push((wavelength, response.map_err(|error| refusal(&error, recipe, &shown))?));
-    }
+    let wavelengths = grid(band, step)?;
+    let prepared = Prepared::new(&stack, &wavelengths, angle);
+    let responses = prepared.and_then(|prepared| prepared.responses(polarisation));
+    let responses = responses.map_err(|error| refusal(&error, recipe, &shown))?;
+    let rows: Vec<(f64, Response)> = wavelengths.into_iter().zip(responses).collect();
     output::print(&csv(&rows))?;
     Ok(Status::Met)
 }

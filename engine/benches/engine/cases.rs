@@ -13,28 +13,28 @@ use crate::natural::Case as Point;
 const ANGLE: f64 = std::f64::consts::FRAC_PI_6;
 
 /// One case.
-pub struct Case {
-    pub name: &'static str,
-    pub what: &'static str,
+pub(crate) struct Case {
+    pub(crate) name: &'static str,
+    pub(crate) what: &'static str,
     /// In one run of the kernel.
-    pub evaluations: f64,
-    pub kernel: Box<dyn Fn()>,
+    pub(crate) evaluations: f64,
+    pub(crate) kernel: Box<dyn Fn()>,
     /// The natural formulas, which may do a share of the work only.
-    pub natural: Box<dyn Fn()>,
-    pub share: f64,
+    pub(crate) natural: Box<dyn Fn()>,
+    pub(crate) share: f64,
     agree: Box<dyn Fn() -> f64>,
 }
 
 impl Case {
     /// Both have the same results.
-    pub fn check(&self) {
+    pub(crate) fn check(&self) {
         let off = (self.agree)();
         assert!(off < 1e-12, "{}: off by {off}", self.name);
     }
 }
 
 /// A case by its name.
-pub fn case(name: &str) -> Option<Case> {
+pub(crate) fn case(name: &str) -> Option<Case> {
     match name {
         "a" => Some(spectrum("a", "40 lossless films, 1 001 wavelengths, R and T", 0.0)),
         "b" => Some(spectrum("b", "the same, all absorbing", 1e-4)),
@@ -171,11 +171,8 @@ fn parts() -> Case {
         summary(&values.expect("values"))
     };
     let natural = move |part: usize| {
-        let own: Films = films
-            .iter()
-            .zip(changes(part))
-            .map(|(&(n, nm), change)| (n, nm + change.growth_nm))
-            .collect();
+        let own: Films =
+            films.iter().zip(changes(part)).map(|(&(n, nm), change)| (n, nm + change.growth_nm)).collect();
         let at = |&wavelength_nm: &f64| {
             let point = Point { wavelength_nm, angle_rad: ANGLE, films: &own, substrate };
             0.5 * (point.powers(false).0 + point.powers(true).0)

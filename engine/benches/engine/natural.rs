@@ -10,11 +10,11 @@ const ONE: Complex64 = Complex64::new(1.0, 0.0);
 type Matrix = [[Complex64; 2]; 2];
 
 /// Light from vacuum at an angle onto films, each with its index and thickness in nm, on a substrate.
-pub struct Case<'a> {
-    pub wavelength_nm: f64,
-    pub angle_rad: f64,
-    pub films: &'a [(Complex64, f64)],
-    pub substrate: Complex64,
+pub(crate) struct Case<'a> {
+    pub(crate) wavelength_nm: f64,
+    pub(crate) angle_rad: f64,
+    pub(crate) films: &'a [(Complex64, f64)],
+    pub(crate) substrate: Complex64,
 }
 
 fn times(a: &Matrix, b: &Matrix) -> Matrix {
@@ -45,7 +45,7 @@ impl Case<'_> {
     }
 
     /// R and T of one polarisation.
-    pub fn powers(&self, p: bool) -> (f64, f64) {
+    pub(crate) fn powers(&self, p: bool) -> (f64, f64) {
         let mut whole = [[ONE, Complex64::ZERO], [Complex64::ZERO, ONE]];
         for &(index, thickness_nm) in self.films {
             whole = times(&whole, &self.matrix(index, thickness_nm, p));
@@ -59,10 +59,9 @@ impl Case<'_> {
     }
 
     /// R of one polarisation and its change with every thickness, per nm: products from the front, fields from behind.
-    pub fn slopes(&self, p: bool, to: &mut [f64]) -> f64 {
+    pub(crate) fn slopes(&self, p: bool, to: &mut [f64]) -> f64 {
         let (before, behind) = (self.admittance(ONE, p), self.admittance(self.substrate, p));
-        let matrices: Vec<Matrix> =
-            self.films.iter().map(|&(index, nm)| self.matrix(index, nm, p)).collect();
+        let matrices: Vec<Matrix> = self.films.iter().map(|&(index, nm)| self.matrix(index, nm, p)).collect();
         let mut fields = vec![[ONE, behind]; self.films.len() + 1];
         for (at, m) in matrices.iter().enumerate().rev() {
             let [b, c] = fields[at + 1];

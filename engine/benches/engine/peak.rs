@@ -5,7 +5,7 @@ use std::hint::black_box;
 use pulp::{Arch, Simd, WithSimd};
 
 /// So many instructions, in twelve chains that don't wait for one another.
-pub struct Peak(pub u64);
+pub(crate) struct Peak(pub(crate) u64);
 
 impl WithSimd for Peak {
     type Output = f64;
@@ -29,7 +29,7 @@ impl WithSimd for Peak {
 }
 
 /// Runs it with AVX2 or with the widest instructions.
-pub fn run(avx2: bool, instructions: u64) {
+pub(crate) fn run(avx2: bool, instructions: u64) {
     #[cfg(target_arch = "x86_64")]
     if avx2 && let Some(simd) = pulp::x86::V3::try_new() {
         black_box(Simd::vectorize(simd, Peak(instructions)));

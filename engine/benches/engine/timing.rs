@@ -46,10 +46,12 @@ fn round(case: &cases::Case) -> Round {
 }
 
 /// Measures and prints.
-pub fn table(json: bool) {
+pub(crate) fn table(json: bool) {
     let mut lines = Vec::new();
     if !json {
-        println!("Million evaluations (film × wavelength × polarisation) a second, one core; medians of {ROUNDS} rounds.\n");
+        println!(
+            "Million evaluations (film × wavelength × polarisation) a second, one core; medians of {ROUNDS} rounds.\n"
+        );
         println!("case  natural | widest   ratio  per FMA slot |   AVX2   ratio  per FMA slot");
     }
     for name in ["a", "b", "c", "d"] {

@@ -232,12 +232,7 @@ impl<'a> Probe<'a> {
     }
 
     /// What adds up of rays of one angle, or of one for each point.
-    fn rays(
-        &self,
-        points: &Points,
-        angles_rad: &[f64],
-        shares: [f64; 2],
-    ) -> Result<Vec<Tally>, OpticsError> {
+    fn rays(&self, points: &Points, angles_rad: &[f64], shares: [f64; 2]) -> Result<Vec<Tally>, OpticsError> {
         self.tallies(points, &Beam::new(&self.plan, points, angles_rad)?, angles_rad, shares)
     }
 

@@ -193,7 +193,9 @@ impl<S: Simd, const P: usize> Passage<S, P> {
                         self.scales.push((fields.norm, fields.halved));
                     }
                     at += 1;
-                    if kind == Kind::Mean && let Some(factor) = fields.look() {
+                    if kind == Kind::Mean
+                        && let Some(factor) = fields.look()
+                    {
                         self.scaled.push((at, factor));
                     }
                 }
@@ -319,7 +321,8 @@ impl<S: Simd, const P: usize> Passage<S, P> {
                 for p in 0..P {
                     let slab = &slabs[modes[p]];
                     if kind == Kind::Mean {
-                        let own = Turn::new(simd, slab, part, strongest[layer.material], layer.thickness_nm).whole();
+                        let own = Turn::new(simd, slab, part, strongest[layer.material], layer.thickness_nm)
+                            .whole();
                         turn = (own.cosine, own.lift);
                     }
                     let rate = Complex {

@@ -184,8 +184,7 @@ impl WithSimd for Tables<'_> {
                 let alpha = entry * sine.load(simd, part);
                 for medium in 0..media.pure {
                     let [n, k] = points.index(block, medium);
-                    let index =
-                        Complex { re: n.load(simd, part), im: k.load(simd, part) };
+                    let index = Complex { re: n.load(simd, part), im: k.load(simd, part) };
                     let permittivity = index * index;
                     let cosine = cosine.load(simd, part);
                     let square = if tilt.incident && medium == tilt.from {
@@ -232,10 +231,7 @@ impl WithSimd for Tables<'_> {
                     media.kinds[at] = Kind::Mean;
                     let [one, other] = [mean.one, mean.other].map(|medium| {
                         let [n, k] = points.index(block, medium);
-                        let index = Complex {
-                            re: n.load(simd, part),
-                            im: k.load(simd, part),
-                        };
+                        let index = Complex { re: n.load(simd, part), im: k.load(simd, part) };
                         let real = Complex { re: alpha, im: alpha.of(0.0) };
                         let permittivity = index * index;
                         let square = (index - real) * (index + real);

@@ -3,6 +3,8 @@
 //! What they compute is defined, one wavelength and angle at a time, by the scalar modules beside this folder, against which they
 //! are tested.
 
+#![expect(clippy::needless_range_loop, reason = "a polarisation's number goes into several lists at once")]
+
 mod beam;
 mod face;
 mod gradient;

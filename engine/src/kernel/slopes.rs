@@ -7,7 +7,7 @@ use pulp::{Simd, WithSimd};
 
 use super::gradient::{Coat, Passage, Place, Seeds};
 use super::media::Media;
-use super::points::{Points, Row, WIDTH, parts};
+use super::points::{Points, Row, parts};
 use super::program::Program;
 use super::spectrum::Within;
 use crate::lanes::{Lanes, decay, dispatch};
@@ -57,9 +57,7 @@ impl Gradient<'_> {
 /// A run with its choices made.
 struct Chosen<'a, const P: usize, const LAYERS: bool, const TEXTURED: bool>(Gradient<'a>);
 
-impl<const P: usize, const LAYERS: bool, const TEXTURED: bool> WithSimd
-    for Chosen<'_, P, LAYERS, TEXTURED>
-{
+impl<const P: usize, const LAYERS: bool, const TEXTURED: bool> WithSimd for Chosen<'_, P, LAYERS, TEXTURED> {
     type Output = ();
 
     #[inline(always)]

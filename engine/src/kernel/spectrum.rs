@@ -13,6 +13,7 @@ use super::media::Media;
 use super::points::{Points, Row, WIDTH, parts};
 use super::program::Program;
 use crate::lanes::{Lanes, decay, dispatch};
+use crate::response::Response;
 
 /// What a stack does to light of one polarisation at the points of a block.
 #[derive(Clone, Copy, Debug)]
@@ -34,6 +35,19 @@ impl Outcome {
         absorptance: Row::ZERO,
         within: Row::ZERO,
     };
+
+    /// All of one point; none where a number was lost.
+    pub(crate) fn response(&self, lane: usize) -> Option<Response> {
+        let (reflectance, passed) = (self.reflectance.0[lane], self.passed.0[lane]);
+        let halved = self.halved.0[lane];
+        let finite = reflectance.is_finite() && passed.is_finite() && halved.is_finite();
+        finite.then(|| Response {
+            reflectance,
+            transmittance: if halved == 0.0 { passed } else { passed * (-halved).exp2() },
+            absorptance: self.absorptance.0[lane],
+            ln_transmittance: passed.ln() - halved * LN_2,
+        })
+    }
 
     /// T.
     pub(crate) fn transmittance(&self) -> [f64; WIDTH] {

@@ -49,7 +49,7 @@ fn stack(
 /// What the last digits of the wavelength and the angle may change: as much for either of two right answers.
 fn allowed(plan: &Plan, mode: Mode, wavelength_nm: f64, angle_rad: f64) -> [f64; 4] {
     let at = |stretch: f64, turn: f64| {
-        let angle = (angle_rad * (1.0 + turn)).min(1.5707);
+        let angle = (angle_rad * (1.0 + turn)).min(1.57);
         let found = plan.at(wavelength_nm * (1.0 + stretch), angle).and_then(|tilted| tilted.response(mode));
         found.map(|found| {
             [found.reflectance, found.transmittance, found.absorptance, found.ln_transmittance.max(-1e300)]

@@ -1,5 +1,7 @@
 //! Sine and cosine of half-turns, and powers of two.
 
+use std::f64::consts::LN_2;
+
 use pulp::{Simd, bytemuck};
 
 use super::Lanes;
@@ -11,7 +13,7 @@ const COSINE: [f64; 5] =
 const SINE: [f64; 4] = [3.1415926535897913, -4.140278804423619, 1.0535457198156384, -0.054858467918728476];
 /// (2^f − 1)/f for |f| ≤ ½.
 const GROWTH: [f64; 11] = [
-    0.6931471805599453,
+    LN_2,
     0.24022650695910155,
     0.055504108664819925,
     0.009618129107588334,
@@ -26,7 +28,7 @@ const GROWTH: [f64; 11] = [
 /// Up to this many bits the series of (2^f − 1)/f, whose terms are (ln 2)ⁿ/n!, needs seven terms only.
 pub(crate) const FEW_BITS: f64 = 0.04;
 const WEAK_GROWTH: [f64; 7] = [
-    0.6931471805599453,
+    LN_2,
     0.24022650695910072,
     0.05550410866482158,
     0.009618129107628477,
@@ -149,7 +151,7 @@ mod tests {
                 assert!((sign * sine - (PI * x).sin()).abs() < 1e-12);
                 let decayed = (-x.abs()).exp2();
                 assert!((to[3][at] - decayed).abs() <= 1e-15 * decayed + 1e-300, "{x} {decayed}");
-                let lost = -(-x.abs() * std::f64::consts::LN_2).exp_m1();
+                let lost = -(-x.abs() * LN_2).exp_m1();
                 assert!((to[4][at] - lost).abs() <= 1e-15 * lost, "{x} {lost} {}", to[4][at]);
             }
         }
