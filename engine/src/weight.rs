@@ -153,6 +153,37 @@ impl SpectralWeight {
         }
     }
 
+    /// The values at ascending wavelengths that are known to lie within the range.
+    pub(crate) fn inside_all(&self, wavelengths_nm: &[f64]) -> Vec<f64> {
+        match &*self.0 {
+            Kind::Constant => vec![1.0; wavelengths_nm.len()],
+            Kind::Wavelength => wavelengths_nm.to_vec(),
+            Kind::BlackBody { kelvin } => wavelengths_nm.iter().map(|nm| planck(*nm, *kelvin)).collect(),
+            Kind::Table(rows) => {
+                // The rows are walked along with the wavelengths.
+                let first = wavelengths_nm.first().copied().unwrap_or(0.0);
+                let last = rows.len() - 1;
+                let mut after = rows.partition_point(|row| row.0 <= first).clamp(1, last);
+                let value = |nm: &f64| {
+                    while after < last && rows[after].0 <= *nm {
+                        after += 1;
+                    }
+                    let ((x0, y0), (x1, y1)) = (rows[after - 1], rows[after]);
+                    y0 + (y1 - y0) * ((nm - x0) / (x1 - x0)).clamp(0.0, 1.0)
+                };
+                wavelengths_nm.iter().map(value).collect()
+            }
+            Kind::Product { factors, .. } => {
+                let mut product = vec![1.0; wavelengths_nm.len()];
+                for factor in factors {
+                    let values = factor.inside_all(wavelengths_nm);
+                    product.iter_mut().zip(values).for_each(|(product, value)| *product *= value);
+                }
+                product
+            }
+        }
+    }
+
     /// The value at a wavelength that is known to lie within the range.
     pub(crate) fn inside(&self, wavelength_nm: f64) -> f64 {
         match &*self.0 {
@@ -210,6 +241,19 @@ mod tests {
             .sum();
         let sigma = total / 300.0_f64.powi(4);
         assert!((sigma / 5.670_374_419e-8 - 1.0).abs() < 1e-6, "{sigma}");
+    }
+
+    #[test]
+    fn many_values_at_once_are_those_one_by_one() {
+        let lamp =
+            SpectralWeight::table(&[(300.0, 1.0), (500.0, 3.0), (501.0, 0.0), (900.0, 2.0)]).expect("valid");
+        let body = SpectralWeight::blackbody(2856.0).expect("valid");
+        let weight = lamp.times(&body).photons();
+        let all: Vec<f64> = (0..=600).map(|at| 300.0 + f64::from(at)).collect();
+        for (nm, value) in all.iter().zip(weight.inside_all(&all)) {
+            assert!((weight.inside(*nm) - value).abs() <= 1e-15 * value, "{nm}");
+        }
+        assert!(weight.inside_all(&[]).is_empty());
     }
 
     #[test]

@@ -47,14 +47,17 @@ impl Series {
         self.coefficients[DEGREE - 2..].iter().map(|coefficient| coefficient.abs()).fold(0.0, f64::max)
     }
 
-    /// The series' value, by Clenshaw's recursion.
-    pub(crate) fn at(&self, x: f64) -> f64 {
-        let t = (2.0 * x - self.lo - self.hi) / (self.hi - self.lo);
-        let (mut next, mut after) = (0.0, 0.0);
+    /// The series' values at several places, by Clenshaw's recursion.
+    pub(crate) fn at<const N: usize>(&self, places: &[f64; N]) -> [f64; N] {
+        let scale = 1.0 / (self.hi - self.lo);
+        let t = places.map(|x| (2.0 * x - self.lo - self.hi) * scale);
+        let (mut next, mut after) = ([0.0; N], [0.0; N]);
         for coefficient in self.coefficients[1..].iter().rev() {
-            (next, after) = (coefficient + 2.0 * t * next - after, next);
+            for at in 0..N {
+                (next[at], after[at]) = (coefficient + 2.0 * t[at] * next[at] - after[at], next[at]);
+            }
         }
-        self.coefficients[0] + t * next - after
+        std::array::from_fn(|at| self.coefficients[0] + t[at] * next[at] - after[at])
     }
 }
 
@@ -68,7 +71,7 @@ mod tests {
         let values: Vec<f64> = Series::places(500.0, 700.0).map(polynomial).collect();
         let series = Series::new(500.0, 700.0, &values);
         for x in [500.0, 513.3, 600.0, 677.7, 700.0] {
-            assert!((series.at(x) - polynomial(x)).abs() < 1e-13);
+            assert!((series.at(&[x])[0] - polynomial(x)).abs() < 1e-13);
         }
     }
 }

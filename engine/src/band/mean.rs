@@ -76,7 +76,11 @@ pub fn means(
     for &band in &bands {
         series.extend(panels(&probe, band, width)?);
     }
-    weights.iter().map(|weight| Sum::over(&series, weight).mean(&bands)).collect()
+    let mut knots: Vec<f64> = weights.iter().flat_map(SpectralWeight::knots_nm).collect();
+    knots.sort_by(f64::total_cmp);
+    knots.dedup();
+    let nodes = Nodes::new(&series, &knots);
+    weights.iter().map(|weight| Sum::over(&series, &nodes, weight).mean(&bands)).collect()
 }
 
 /// The bands in order, those that touch or overlap joined.
@@ -97,6 +101,47 @@ fn union(bands_nm: &[(f64, f64)]) -> Result<Vec<(f64, f64)>, OpticsError> {
     if joined.is_empty() { Err(OpticsError::Band { band_nm: (f64::NAN, f64::NAN) }) } else { Ok(joined) }
 }
 
+/// Where the product of the series and the weights is looked at: Gauss's nodes between each two knots, with their shares and
+/// the series' values. Exact for a panel's series times a straight line times a wavelength.
+struct Nodes {
+    wavelengths: Vec<f64>,
+    shares: Vec<f64>,
+    values: Vec<f64>,
+    /// How many nodes lie before the end of each panel.
+    ends: Vec<usize>,
+}
+
+/// The number of Gauss's nodes.
+const GAUSS: usize = DEGREE / 2 + 2;
+
+impl Nodes {
+    fn new(series: &[Series], knots: &[f64]) -> Nodes {
+        let rule = gauss_legendre(GAUSS);
+        let mut nodes =
+            Nodes { wavelengths: Vec::new(), shares: Vec::new(), values: Vec::new(), ends: Vec::new() };
+        for series in series {
+            let first = knots.partition_point(|&knot| knot <= series.lo);
+            let inside = knots[first..].iter().copied().take_while(|&knot| knot < series.hi);
+            let mut from = series.lo;
+            for to in inside.chain([series.hi]) {
+                // Smooth weights, such as a black body's, are cut where the wavelength has grown by a tenth.
+                let pieces = ((to / from).ln() / 0.1).ceil().max(1.0);
+                let half = 0.5 * (to - from) / pieces;
+                for piece in 0..pieces as usize {
+                    let middle = from + half * (2 * piece + 1) as f64;
+                    let places: [f64; GAUSS] = std::array::from_fn(|at| middle + half * rule[at].0);
+                    nodes.values.extend(series.at(&places));
+                    nodes.wavelengths.extend(places);
+                    nodes.shares.extend(rule.iter().map(|node| half * node.1));
+                }
+                from = to;
+            }
+            nodes.ends.push(nodes.wavelengths.len());
+        }
+        nodes
+    }
+}
+
 /// ∫ q w dλ with its error, and ∫ w dλ.
 struct Sum {
     product: f64,
@@ -107,13 +152,25 @@ struct Sum {
 }
 
 impl Sum {
-    fn over(series: &[Series], weight: &SpectralWeight) -> Sum {
+    fn over(series: &[Series], nodes: &Nodes, weight: &SpectralWeight) -> Sum {
         let mut sum = Sum { product: 0.0, weight: 0.0, error: 0.0, worst_nm: 0.0, worst: -1.0 };
-        let knots = weight.knots_nm();
-        // Exact for a panel's series times a straight line times a wavelength.
-        let rule = gauss_legendre(DEGREE / 2 + 2);
-        for series in series {
-            sum.add(series, weight, &knots, &rule);
+        let weights = weight.inside_all(&nodes.wavelengths);
+        let mut from = 0;
+        for (series, &to) in series.iter().zip(&nodes.ends) {
+            let mut weighed = 0.0;
+            let shares = nodes.shares[from..to].iter().zip(&weights[from..to]);
+            for ((share, weight), value) in shares.zip(&nodes.values[from..to]) {
+                let weight = share * weight;
+                weighed += weight;
+                sum.product += weight * value;
+            }
+            from = to;
+            sum.weight += weighed;
+            let error = series.tail() * weighed;
+            sum.error += error;
+            if error > sum.worst {
+                (sum.worst, sum.worst_nm) = (error, 0.5 * (series.lo + series.hi));
+            }
         }
         sum
     }
@@ -132,34 +189,6 @@ impl Sum {
                 error: mean.error,
                 wavelength_nm: self.worst_nm,
             })
-        }
-    }
-
-    fn add(&mut self, series: &Series, weight: &SpectralWeight, knots: &[f64], rule: &[(f64, f64)]) {
-        let first = knots.partition_point(|&knot| knot <= series.lo);
-        let inside = knots[first..].iter().copied().take_while(|&knot| knot < series.hi);
-        let mut ends: Vec<f64> = std::iter::once(series.lo).chain(inside).collect();
-        ends.push(series.hi);
-        let mut weighed = 0.0;
-        for ends in ends.windows(2) {
-            // Smooth weights, such as a black body's, are cut where the wavelength has grown by a tenth.
-            let pieces = ((ends[1] / ends[0]).ln() / 0.1).ceil().max(1.0);
-            let half = 0.5 * (ends[1] - ends[0]) / pieces;
-            for piece in 0..pieces as usize {
-                let middle = ends[0] + half * (2 * piece + 1) as f64;
-                for &(x, share) in rule {
-                    let wavelength = middle + half * x;
-                    let weight = half * share * weight.inside(wavelength);
-                    weighed += weight;
-                    self.product += weight * series.at(wavelength);
-                }
-            }
-        }
-        self.weight += weighed;
-        let error = series.tail() * weighed;
-        self.error += error;
-        if error > self.worst {
-            (self.worst, self.worst_nm) = (error, 0.5 * (series.lo + series.hi));
         }
     }
 }

@@ -5,6 +5,7 @@ use num_complex::Complex64;
 use super::model::Model;
 use super::{Index, check};
 use crate::error::ModelError;
+use crate::kernel::WIDTH;
 use crate::number::Number;
 
 impl Index {
@@ -59,6 +60,18 @@ pub(super) fn cauchy<N: Number>(coefficients: &[f64], wavelength_nm: &N) -> N {
     coefficients.iter().rev().fold(N::real(0.0), horner)
 }
 
+/// The same at several wavelengths in nm.
+pub(super) fn cauchy_all(coefficients: &[f64], wavelengths_nm: &[f64; WIDTH]) -> [f64; WIDTH] {
+    let inverse_square = wavelengths_nm.map(|nm| 1.0 / (nm * 1e-3 * (nm * 1e-3)));
+    let mut sum = [0.0; WIDTH];
+    for coefficient in coefficients.iter().rev() {
+        for (sum, inverse_square) in sum.iter_mut().zip(inverse_square) {
+            *sum = *sum * inverse_square + coefficient;
+        }
+    }
+    sum
+}
+
 /// n², which is negative inside a resonance.
 pub(super) fn sellmeier<N: Number>(terms: &[(f64, f64)], wavelength_nm: &N) -> N {
     let um = wavelength_nm.scale(1e-3);
@@ -67,6 +80,18 @@ pub(super) fn sellmeier<N: Number>(terms: &[(f64, f64)], wavelength_nm: &N) -> N
         sum + square.scale(strength) / (square.clone() - N::real(resonance * resonance))
     };
     terms.iter().fold(N::real(1.0), add)
+}
+
+/// The same at several wavelengths in nm.
+pub(super) fn sellmeier_all(terms: &[(f64, f64)], wavelengths_nm: &[f64; WIDTH]) -> [f64; WIDTH] {
+    let square = wavelengths_nm.map(|nm| nm * 1e-3 * (nm * 1e-3));
+    let mut sum = [1.0; WIDTH];
+    for (strength, resonance) in terms {
+        for (sum, square) in sum.iter_mut().zip(square) {
+            *sum += square * strength / (square - resonance * resonance);
+        }
+    }
+    sum
 }
 
 #[cfg(test)]

@@ -1,5 +1,6 @@
 //! Optical constants: the refractive index N = n + ik of one material against the vacuum wavelength.
 
+mod block;
 #[cfg(test)]
 mod derivative;
 mod derived;
@@ -20,7 +21,6 @@ pub use oscillator::Oscillator;
 
 use crate::constants::EV_NM;
 use crate::error::{IndexError, ModelError};
-use crate::kernel::{Row, WIDTH};
 use crate::number::Number;
 use crate::taylor::Taylor;
 use model::{Model, Photon};
@@ -59,18 +59,6 @@ impl Index {
             return Err(IndexError::Outside { wavelength_nm, range_nm });
         }
         self.evaluate(&Photon::<Complex64>::of_wavelength(wavelength_nm))
-    }
-
-    /// n and k at several vacuum wavelengths in nm.
-    ///
-    /// # Errors
-    /// As [`Index::at`], for the first wavelength that has one.
-    pub(crate) fn at_all(&self, wavelengths_nm: &[f64; WIDTH], to: &mut [Row; 2]) -> Result<(), IndexError> {
-        for (lane, wavelength_nm) in wavelengths_nm.iter().enumerate() {
-            let index = self.at(*wavelength_nm)?;
-            (to[0].0[lane], to[1].0[lane]) = (index.re, index.im);
-        }
-        Ok(())
     }
 
     /// The index with its first two derivatives in the angular frequency ω in rad/fs, at the vacuum wavelength that

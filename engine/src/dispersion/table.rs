@@ -5,6 +5,7 @@ use num_complex::Complex64;
 use super::Index;
 use super::model::Model;
 use crate::error::ModelError;
+use crate::kernel::{Row, WIDTH};
 use crate::number::Number;
 
 impl Index {
@@ -57,6 +58,33 @@ impl Table {
         let piece = after.clamp(1, self.wavelengths.len() - 1) - 1;
         let along = wavelength_nm.clone() - N::real(self.wavelengths[piece]);
         self.n.at(piece, &along) + N::constant(Complex64::I) * self.k.at(piece, &along)
+    }
+}
+
+impl Table {
+    /// n and k at several wavelengths within the table.
+    pub(super) fn index_all(&self, wavelengths_nm: &[f64; WIDTH], n: &mut Row, k: &mut Row) {
+        let last = self.wavelengths.len() - 2;
+        let mut piece = 0;
+        for (lane, &nm) in wavelengths_nm.iter().enumerate() {
+            // Neighbours mostly lie between the same two rows, or the next.
+            let holds = |piece: usize| {
+                (piece == 0 || self.wavelengths[piece] <= nm)
+                    && (piece == last || nm < self.wavelengths[piece + 1])
+            };
+            if !holds(piece) {
+                piece = (piece + 1).min(last);
+                if !holds(piece) {
+                    piece = self.wavelengths.partition_point(|&row| row <= nm).clamp(1, last + 1) - 1;
+                }
+            }
+            let along = nm - self.wavelengths[piece];
+            let value = |[value, slope, second, third]: [f64; 4]| {
+                ((third * along + second) * along + slope) * along + value
+            };
+            n.0[lane] = value(self.n.0[piece]);
+            k.0[lane] = value(self.k.0[piece]);
+        }
     }
 }
 
