@@ -158,8 +158,8 @@ fn summary(values: &[f64]) -> (f64, f64) {
 
 fn parts() -> Case {
     const PARTS: usize = 10_000;
-    /// The natural formulas take so many of them.
-    const FEW: usize = 20;
+    /// The natural formulas take so many of them, for about as long.
+    const FEW: usize = 150;
     let (films, substrate) = (design(20, 0.0), Complex64::new(1.52, 0.0));
     let wavelengths: Vec<f64> = (0..301).map(|at| 400.0 + f64::from(at)).collect();
     let light = Light::parallel(ANGLE, Polarisation::Mean);

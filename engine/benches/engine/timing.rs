@@ -30,12 +30,14 @@ struct Round {
 }
 
 fn round(case: &cases::Case) -> Round {
-    let natural = case.evaluations * case.share / seconds(|| (case.natural)());
+    let natural_taken = seconds(|| (case.natural)());
+    let natural = case.evaluations * case.share / natural_taken;
     let one = |vectors: Vectors| {
         vectors.set();
-        // Fast cases repeat, so that the clock's own grain does not count.
+        // For as long as the natural formulas took: what else the machine does interrupts a long measurement more often than a
+        // short one, and would make the ratio too large.
         let once = seconds(|| (case.kernel)());
-        let times = (0.002 / once).ceil().clamp(1.0, 100.0) as usize;
+        let times = (natural_taken / once).round().max(1.0) as usize;
         let taken = seconds(|| (0..times).for_each(|_| (case.kernel)()));
         let speed = case.evaluations * times as f64 / taken;
         let avx2 = vectors == Vectors::Avx2;
