@@ -62,12 +62,7 @@ impl<const P: usize, const LAYERS: bool, const TEXTURED: bool> WithSimd for Chos
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) {
-        // Of both polarisations the numbers are known to the compiler.
-        let mut modes = [0; P];
-        for (p, mode) in modes.iter_mut().enumerate() {
-            *mode = if P == 2 { p } else { self.0.modes[0] };
-        }
-        Run::<S, P, LAYERS, TEXTURED>::new(simd, modes, self.0).run();
+        Run::<S, P, LAYERS, TEXTURED>::new(simd, self.0).run();
     }
 }
 
@@ -127,7 +122,6 @@ impl<S: Simd> Link<S> {
 
 struct Run<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> {
     simd: S,
-    modes: [usize; P],
     given: Gradient<'a>,
     /// By coating: from the front and from behind.
     passages: Vec<[Passage<S, P>; 2]>,
@@ -141,7 +135,7 @@ struct Run<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool
 
 impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<'a, S, P, LAYERS, TEXTURED> {
     #[inline(always)]
-    fn new(simd: S, modes: [usize; P], given: Gradient<'a>) -> Self {
+    fn new(simd: S, given: Gradient<'a>) -> Self {
         let mut passages = Vec::new();
         let mut links = Vec::new();
         for _ in &given.program.coatings {
@@ -154,7 +148,17 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
         }
         let weights = std::array::from_fn(|_| Vec::new());
         let both = [Vec::new(), Vec::new()];
-        Run { simd, modes, given, passages, links, facets, weights, both, changes: Vec::new() }
+        Run { simd, given, passages, links, facets, weights, both, changes: Vec::new() }
+    }
+
+    /// The polarisations' numbers; both are written out, so that the compiler knows them.
+    #[inline(always)]
+    fn modes(&self) -> [usize; P] {
+        let mut modes = [0; P];
+        for p in 0..P {
+            modes[p] = if P == 2 { p } else { self.given.modes[0] };
+        }
+        modes
     }
 
     #[inline(always)]
@@ -168,7 +172,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
                 self.there(block, part);
                 let mut value = zero;
                 for p in 0..P {
-                    let share = zero.of(self.given.shares[self.modes[p]]);
+                    let share = zero.of(self.given.shares[self.modes()[p]]);
                     value = self.whole(block, part, p, share).mul_add(share, value);
                 }
                 self.given.values[block].store(part, value);
@@ -184,7 +188,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
     #[inline(always)]
     fn place(&self, block: usize, part: usize) -> Place<'a, S, P> {
         let Gradient { points, media, .. } = self.given;
-        Place { simd: self.simd, points, media, modes: self.modes, block, part }
+        Place { simd: self.simd, points, media, modes: self.modes(), block, part }
     }
 
     #[inline(always)]
@@ -279,7 +283,16 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
         let Gradient { program, points, media, wanted, .. } = self.given;
         let last = program.coatings.len() - 1;
         let (zero, one) = (share.of(0.0), share.of(1.0));
+        let modes = self.modes();
         let links = &mut self.links;
+        if last == 0 && !LAYERS && !wanted.absorptance {
+            // A single coating is all there is.
+            let link = &mut links[0][p][0];
+            let (of_r, of_t) = (one.of(wanted.reflectance), one.of(wanted.transmittance));
+            link.reflectance.hands_on(of_r * share);
+            link.transmittance.hands_on(of_t * share);
+            return link.reflectance.is.mul_add(of_r, link.transmittance.is * of_t);
+        }
         // There, as the spectrum's kernel goes.
         let mut passed = vec![one; last];
         let mut gain = vec![Var::of(one); last];
@@ -287,7 +300,7 @@ impl<'a, S: Simd, const P: usize, const LAYERS: bool, const TEXTURED: bool> Run<
         for at in (0..last).rev() {
             let slabs = media.slabs(block).slabs;
             let body = &program.bodies[at];
-            let halvings = slabs[body.material][self.modes[p]].halvings.load(self.simd, part);
+            let halvings = slabs[body.material][modes[p]].halvings.load(self.simd, part);
             passed[at] = decay(halvings * one.of(body.thickness_nm)).0;
             let twice = passed[at] * passed[at];
             let [front, back] = &links[at][p];

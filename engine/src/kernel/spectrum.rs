@@ -133,12 +133,7 @@ impl<const P: usize, const CHANNELS: bool, const LAYERS: bool, const TEXTURED: b
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) {
-        // Of both polarisations the numbers are known to the compiler.
-        let mut modes = [0; P];
-        for (p, mode) in modes.iter_mut().enumerate() {
-            *mode = if P == 2 { p } else { self.0.modes[0] };
-        }
-        Run::<S, P, CHANNELS, LAYERS, TEXTURED>::new(simd, modes, self.0).run();
+        Run::<S, P, CHANNELS, LAYERS, TEXTURED>::new(simd, self.0).run();
     }
 }
 
@@ -182,7 +177,6 @@ struct Links<S: Simd, const P: usize> {
 /// A run and its memory.
 struct Run<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, const TEXTURED: bool> {
     simd: S,
-    modes: [usize; P],
     given: Spectrum<'a>,
     /// Whether nothing absorbs in the block that is under way.
     all_lossless: bool,
@@ -195,14 +189,24 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, cons
     Run<'a, S, P, CHANNELS, LAYERS, TEXTURED>
 {
     #[inline(always)]
-    fn new(simd: S, modes: [usize; P], given: Spectrum<'a>) -> Self {
+    fn new(simd: S, given: Spectrum<'a>) -> Self {
         let count = given.program.coatings.len();
         let none = vec![[Powers::dark(simd); P]; count];
         let layers = vec![Vec::new(); if LAYERS { count } else { 0 }];
         // A single coating is not met from behind.
         let back = if count > 1 { none.clone() } else { Vec::new() };
         let links = Links { front: none, back, front_layers: layers.clone(), back_layers: layers };
-        Run { simd, modes, given, all_lossless: false, links, flows: Vec::new(), both: Vec::new() }
+        Run { simd, given, all_lossless: false, links, flows: Vec::new(), both: Vec::new() }
+    }
+
+    /// The polarisations' numbers; both are written out, so that the compiler knows them.
+    #[inline(always)]
+    fn modes(&self) -> [usize; P] {
+        let mut modes = [0; P];
+        for p in 0..P {
+            modes[p] = if P == 2 { p } else { self.given.modes[0] };
+        }
+        modes
     }
 
     #[inline(always)]
@@ -246,12 +250,12 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, cons
             media.slabs(block),
             layers,
             &waves[exit],
-            self.modes,
+            self.modes(),
             part,
             &mut self.flows,
         );
         let lossless = Lossless::of(points, block, entry, &order.media);
-        let faces = faces(self.simd, &fields, &waves[entry], &waves[exit], self.modes, lossless, part);
+        let faces = faces(self.simd, &fields, &waves[entry], &waves[exit], self.modes(), lossless, part);
         let to = if behind { &mut self.links.back[at] } else { &mut self.links.front[at] };
         for p in 0..P {
             to[p] = Powers::of(&faces[p]);
@@ -376,7 +380,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, cons
             for at in (0..last).rev() {
                 let body = &program.bodies[at];
                 let slabs = self.given.media.slabs(block).slabs;
-                let slab = &slabs[body.material][self.modes[p]];
+                let slab = &slabs[body.material][self.modes()[p]];
                 let halvings = slab.halvings.load(self.simd, part) * one.of(body.thickness_nm);
                 let passed = decay(halvings).0;
                 left[at] = (passed, halvings);
@@ -475,7 +479,7 @@ impl<'a, S: Simd, const P: usize, const CHANNELS: bool, const LAYERS: bool, cons
     #[inline(always)]
     fn store(&mut self, block: usize, part: usize, p: usize, values: [Lanes<S>; 5]) {
         let [reflectance, passed, halved, transmittance, within] = values;
-        let outcome = &mut self.given.outcomes[block - self.given.blocks.start][self.modes[p]];
+        let outcome = &mut self.given.outcomes[block - self.given.blocks.start][self.modes()[p]];
         outcome.reflectance.store(part, reflectance);
         outcome.passed.store(part, passed);
         outcome.halved.store(part, halved);

@@ -8,6 +8,7 @@ use crate::model::{Angles, Bound, Element, Quantity, Recipe, Requirement, Stack}
 use crate::report::{At, RequirementReport, YieldReport};
 use crate::source::Place;
 use overcoat_engine as engine;
+use rayon::prelude::*;
 use std::f64::consts::FRAC_PI_2;
 use std::sync::Arc;
 
@@ -43,16 +44,19 @@ pub(super) fn check(
     let mut missed = Vec::new();
     // What the yield counts, and whether all of it has a value.
     let (mut counted, mut all_valued) = (Vec::new(), true);
-    for (requirement, asked_at) in recipe.all_requirements() {
-        if matches!(requirement.quantity, Quantity::Yield) {
-            // A yield is that of all the others: they come first.
+    let all: Vec<(&Arc<Requirement>, Place)> = recipe.all_requirements().collect();
+    let result = |(requirement, _): &(&Arc<Requirement>, Place)| match &optics {
+        // A yield is that of all the others: they come first.
+        _ if matches!(requirement.quantity, Quantity::Yield) => None,
+        Ok(Some(optics)) => Some(evaluate(requirement, stack, optics)),
+        Ok(None) => Some(Err(Vec::new())),
+        Err(error) => Some(Err(vec![optics::explain(error, &optics::materials(stack), requirement, stack)])),
+    };
+    let results: Vec<Option<Result<Judged, Vec<Trouble>>>> = all.par_iter().map(result).collect();
+    for ((requirement, asked_at), result) in all.into_iter().zip(results) {
+        let Some(result) = result else {
             reports.push(blank(requirement, asked_at));
             continue;
-        }
-        let result = match &optics {
-            Ok(Some(optics)) => evaluate(requirement, stack, optics),
-            Ok(None) => Err(Vec::new()),
-            Err(error) => Err(vec![optics::explain(error, &optics::materials(stack), requirement, stack)]),
         };
         let mut report = blank(requirement, asked_at);
         let tell = |verdict| PromiseFact {
