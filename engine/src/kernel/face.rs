@@ -73,14 +73,14 @@ pub(crate) fn faces<S: Simd, const P: usize>(
     let mut faces = [Face {
         reflectance: zero,
         passed: zero,
-        halved: fields.halved,
+        halved: zero,
         transmittance: zero,
         numerator: nothing,
         denominator: nothing,
         share: zero,
     }; P];
-    let scale = power(fields.halved);
     for p in 0..P {
+        let scale = power(fields.halved[p]);
         let arriving = Pair::of_wave(simd, &entry[modes[p]], part);
         let leaving = Pair::of_wave(simd, &exit[modes[p]], part);
         let front = fields.pairs[p];
@@ -102,6 +102,7 @@ pub(crate) fn faces<S: Simd, const P: usize>(
         let reflectance = reflected * flux_in * over;
         let share = four * (arriving.b * arriving.c).norm_sqr() * over;
         let face = &mut faces[p];
+        face.halved = fields.halved[p];
         // Where the medium before carries no power no light arrives.
         face.reflectance = zero.where_less(flux_in, reflectance, zero);
         face.share = zero.where_less(flux_in, share, zero);

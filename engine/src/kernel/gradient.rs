@@ -34,10 +34,10 @@ pub(crate) struct Passage<S: Simd, const P: usize> {
     /// The cosine and −i times the sine of those that are not clear, in the same order.
     dim: Vec<(Complex<S>, Complex<S>)>,
     /// After how many films the fields were brought back to size, and by which factor.
-    scaled: Vec<(usize, Lanes<S>)>,
+    scaled: Vec<(usize, [Lanes<S>; P])>,
     /// Where layers count for themselves: the norm and the halvings at each face from the exit on, and from them the size of the true power flow over that of the fields at each face, from the exit on.
-    scales: Vec<(Lanes<S>, Lanes<S>)>,
-    flows: Vec<Lanes<S>>,
+    scales: Vec<(Lanes<S>, [Lanes<S>; P])>,
+    flows: Vec<[Lanes<S>; P]>,
     exit: [Pair<S>; P],
 }
 
@@ -208,7 +208,11 @@ impl<S: Simd, const P: usize> Passage<S, P> {
         let lossless = Lossless::of(points, block, coat.entry, coat.media);
         self.faces = faces(simd, &fields, &waves[coat.entry], &waves[coat.exit], modes, lossless, part);
         for &(norm, halved) in &self.scales {
-            self.flows.push(fields.norm / norm * power(fields.halved - halved));
+            let mut flow = [fields.norm / norm; P];
+            for p in 0..P {
+                flow[p] = flow[p] * power(fields.halved[p] - halved[p]);
+            }
+            self.flows.push(flow);
         }
     }
 
@@ -224,9 +228,9 @@ impl<S: Simd, const P: usize> Passage<S, P> {
     ) {
         to.clear();
         let share = self.faces[p].share;
-        let mut far = share * self.exit[p].flux() * self.flows[0];
+        let mut far = share * self.exit[p].flux() * self.flows[0][p];
         for (at, layer) in layers.iter().enumerate() {
-            let near = share * self.saved[at].pairs[p].flux() * self.flows[at + 1];
+            let near = share * self.saved[at].pairs[p].flux() * self.flows[at + 1][p];
             let clear = points.is_lossless(block, layer.material);
             to.push(if clear { share.of(0.0) } else { near - far });
             far = near;
@@ -274,8 +278,8 @@ impl<S: Simd, const P: usize> Passage<S, P> {
         let mut dim = self.dim.len();
         let mut at = coat.layers.len();
         while at > 0 {
-            while let Some((_, factor)) = scaled.next_if(|scaled| scaled.0 >= at) {
-                for row in &mut rows {
+            while let Some((_, factors)) = scaled.next_if(|scaled| scaled.0 >= at) {
+                for (row, factor) in rows.iter_mut().zip(factors) {
                     *row = Pair { b: row.b.scale(*factor), c: row.c.scale(*factor) };
                 }
             }
@@ -349,7 +353,7 @@ impl<S: Simd, const P: usize> Passage<S, P> {
         for p in 0..P {
             let own = weights[p][at];
             let before = weights[p].get(at + 1).copied().unwrap_or(own.of(0.0));
-            let weight = (own - before) * self.faces[p].share * self.flows[at + 1];
+            let weight = (own - before) * self.faces[p].share * self.flows[at + 1][p];
             let Pair { b, c } = self.saved[at].pairs[p];
             rows[p].b = rows[p].b + c.conj().scale(weight);
             rows[p].c = rows[p].c + b.conj().scale(weight);
@@ -360,10 +364,10 @@ impl<S: Simd, const P: usize> Passage<S, P> {
     #[inline(always)]
     fn absorbed(&self, p: usize, weights: &[Lanes<S>]) -> Lanes<S> {
         let share = self.faces[p].share;
-        let mut far = self.exit[p].flux() * self.flows[0];
+        let mut far = self.exit[p].flux() * self.flows[0][p];
         let mut sum = far.of(0.0);
         for (at, weight) in weights.iter().enumerate() {
-            let near = self.saved[at].pairs[p].flux() * self.flows[at + 1];
+            let near = self.saved[at].pairs[p].flux() * self.flows[at + 1][p];
             sum = (near - far).mul_add(*weight, sum);
             far = near;
         }

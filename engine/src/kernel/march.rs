@@ -53,13 +53,13 @@ impl<S: Simd> Pair<S> {
 }
 
 /// The fields at one face for `P` polarisations. The true ones are these times 2^(halved/2)/√norm, and times −1 where `turned`
-/// is odd: s and p have these in common.
+/// is odd: s and p have the last two in common, but one may grow a thousand orders above the other.
 #[derive(Clone, Copy, Debug)]
 pub(crate) struct Fields<S: Simd, const P: usize> {
     pub(crate) pairs: [Pair<S>; P],
     pub(crate) norm: Lanes<S>,
     pub(crate) turned: Lanes<S>,
-    pub(crate) halved: Lanes<S>,
+    pub(crate) halved: [Lanes<S>; P],
 }
 
 /// The sine and cosine of a film that absorbs, up to what is kept beside the fields.
@@ -111,7 +111,7 @@ impl<S: Simd, const P: usize> Fields<S, P> {
         for (pair, mode) in pairs.iter_mut().zip(modes) {
             *pair = Pair::of_wave(simd, &waves[mode], part);
         }
-        Fields { pairs, norm: zero.of(1.0), turned: zero, halved: zero }
+        Fields { pairs, norm: zero.of(1.0), turned: zero, halved: [zero; P] }
     }
 
     /// Through a clear film; its sine and cosine up to the factor that was taken out. The sign is kept only if `SIGNED`.
@@ -164,7 +164,9 @@ impl<S: Simd, const P: usize> Fields<S, P> {
             return (turn.cosine, turn.lift);
         }
         self.norm = self.norm * turn.norm;
-        self.halved = self.halved + turn.halvings;
+        for halved in &mut self.halved {
+            *halved = *halved + turn.halvings;
+        }
         if SIGNED {
             self.turned = self.turned + turn.whole;
         }
@@ -173,25 +175,30 @@ impl<S: Simd, const P: usize> Fields<S, P> {
 
     /// Brings fields that have become very large or small back to a size near 1; by which factor, if so.
     #[inline(always)]
-    pub(crate) fn look(&mut self) -> Option<Lanes<S>> {
-        let mut size = self.norm.of(0.0);
-        for Pair { b, c } in self.pairs {
-            size = size.max(b.re.abs().max(b.im.abs())).max(c.re.abs().max(c.im.abs()));
+    pub(crate) fn look(&mut self) -> Option<[Lanes<S>; P]> {
+        let zero = self.norm.of(0.0);
+        let mut sizes = [zero; P];
+        let mut extreme = self.norm;
+        for (size, Pair { b, c }) in sizes.iter_mut().zip(self.pairs) {
+            *size = b.re.abs().max(b.im.abs()).max(c.re.abs().max(c.im.abs()));
+            extreme = extreme.max(size.max(zero.of(1.0) / *size));
         }
-        let extreme = size.max(size.of(1.0) / size).max(self.norm).greatest() > LARGE;
-        if extreme { Some(self.rescale(size)) } else { None }
+        if extreme.greatest() > LARGE { Some(self.rescale(sizes)) } else { None }
     }
 
     #[inline(always)]
-    fn rescale(&mut self, size: Lanes<S>) -> Lanes<S> {
-        let (of_fields, of_norm) = (exponent(size), exponent(self.norm));
-        let factor = power_of_two(-of_fields);
-        for pair in &mut self.pairs {
-            *pair = Pair { b: pair.b.scale(factor), c: pair.c.scale(factor) };
-        }
+    fn rescale(&mut self, sizes: [Lanes<S>; P]) -> [Lanes<S>; P] {
+        let of_norm = exponent(self.norm);
         self.norm = self.norm * power_of_two(-of_norm);
-        self.halved = self.halved + of_fields + of_fields - of_norm;
-        factor
+        let mut factors = sizes;
+        for p in 0..P {
+            let of_fields = exponent(sizes[p]);
+            factors[p] = power_of_two(-of_fields);
+            let Pair { b, c } = self.pairs[p];
+            self.pairs[p] = Pair { b: b.scale(factors[p]), c: c.scale(factors[p]) };
+            self.halved[p] = self.halved[p] + of_fields + of_fields - of_norm;
+        }
+        factors
     }
 }
 
@@ -221,7 +228,7 @@ fn exponent<S: Simd>(size: Lanes<S>) -> Lanes<S> {
 pub(crate) struct Flow<S: Simd, const P: usize> {
     pub(crate) flux: [Lanes<S>; P],
     pub(crate) norm: Lanes<S>,
-    pub(crate) halved: Lanes<S>,
+    pub(crate) halved: [Lanes<S>; P],
 }
 
 impl<S: Simd, const P: usize> Fields<S, P> {

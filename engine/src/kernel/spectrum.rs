@@ -508,9 +508,9 @@ fn taken<S: Simd, const P: usize>(
     if clear {
         return taken;
     }
-    let scale_near = front.norm / near.norm * power(front.halved - near.halved);
-    let scale_far = front.norm / far.norm * power(front.halved - far.halved);
     for p in 0..P {
+        let scale_near = front.norm / near.norm * power(front.halved[p] - near.halved[p]);
+        let scale_far = front.norm / far.norm * power(front.halved[p] - far.halved[p]);
         taken[p] = faces[p].share * (near.flux[p] * scale_near - far.flux[p] * scale_far);
     }
     taken

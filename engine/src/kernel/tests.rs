@@ -4,6 +4,7 @@ use proptest::prelude::*;
 
 use super::{Beam, Points, Program, WIDTH, Within};
 use crate::dispersion::Index;
+use crate::lanes::Vectors;
 use crate::matrix::Mode;
 use crate::plan::Plan;
 use crate::stack::{Body, Film, Stack};
@@ -63,8 +64,17 @@ fn allowed(plan: &Plan, mode: Mode, wavelength_nm: f64, angle_rad: f64) -> [f64;
     })
 }
 
-/// R, T, A and ln T of both, at several wavelengths.
+/// R, T, A and ln T of both, at several wavelengths, whatever the processor's instructions.
 fn agree(stack: &Stack, wavelengths: &[f64], angle_rad: f64) -> Result<(), TestCaseError> {
+    // Other tests may run meanwhile: they hold with any.
+    for vectors in [Vectors::Scalar, Vectors::Avx2, Vectors::Widest] {
+        vectors.set();
+        agree_with_these(stack, wavelengths, angle_rad)?;
+    }
+    Ok(())
+}
+
+fn agree_with_these(stack: &Stack, wavelengths: &[f64], angle_rad: f64) -> Result<(), TestCaseError> {
     let plan = Plan::new(stack).expect("well formed");
     let program = Program::new(&plan);
     let points = Points::new(&plan, wavelengths).expect("constants");
@@ -149,5 +159,31 @@ proptest! {
         angle in 0.0..1.57_f64,
     ) {
         agree(&stack(1.0, &materials, &coatings, &bodies, exit), &WAVELENGTHS, angle)?;
+    }
+
+    #[test]
+    fn so_are_two_thousand_films_and_a_millimetre_of_metal(
+        metal in (0.1..3.0_f64, 0.5..10.0_f64),
+        count in 1..2000_usize,
+        angle in 0.0..1.5_f64,
+    ) {
+        let mut films: Vec<(usize, f64)> = (0..count).map(|at| (at % 2, 90.0 + (at % 7) as f64)).collect();
+        let materials = [(2.3, 0.0), (1.45, 1e-12), metal, (1.52, 0.0)];
+        agree(&stack(1.0, &materials, &[films.clone()], &[], 3), &WAVELENGTHS[3..6], angle)?;
+        films.truncate(20);
+        films.insert(10, (2, 1e6));
+        agree(&stack(1.0, &materials, &[films], &[], 3), &WAVELENGTHS[3..6], angle)?;
+    }
+
+    #[test]
+    fn so_are_films_at_and_beside_their_critical_angle(
+        off in prop_oneof![Just(0.0), (-16.0..-1.0_f64).prop_map(|off| 10_f64.powf(off)),
+                           (-16.0..-1.0_f64).prop_map(|off| -10_f64.powf(off))],
+        gap in 0.0..3000.0_f64,
+    ) {
+        let materials = [(1.0, 0.0), (1.45, 0.0), (2.1, 0.0), (1.6, 0.0)];
+        let films = vec![(1, 80.0), (0, gap), (2, 60.0), (0, 40.0)];
+        let angle = (1.0_f64 / 1.6).asin() + off;
+        agree(&stack(1.6, &materials, &[films], &[], 3), &WAVELENGTHS[..4], angle)?;
     }
 }
