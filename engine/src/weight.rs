@@ -1,9 +1,12 @@
 //! Spectral weights: light sources, detectors, and their products.
 
-use std::sync::Arc;
+use std::sync::{Arc, LazyLock};
 
 use crate::constants::{BOLTZMANN, LIGHT, PLANCK};
 use crate::error::WeightError;
+
+/// Gauss's nodes for each piece of an integral.
+static RULE: LazyLock<Vec<(f64, f64)>> = LazyLock::new(|| crate::quadrature::gauss_legendre(8));
 
 /// A function of the vacuum wavelength that is never negative. Cheap to clone.
 #[derive(Clone, Debug)]
@@ -90,28 +93,31 @@ impl SpectralWeight {
     }
 
     /// ∫ w dλ over bands of vacuum wavelengths in nm, in the unit of w times nm; exact for tables and their products.
-    /// `None` where it does not reach over a band.
+    /// `None` where it does not reach over a band, or a band's ends are not in order.
     pub fn integral(&self, bands_nm: &[(f64, f64)]) -> Option<f64> {
-        let knots = self.knots_nm();
-        let rule = crate::quadrature::gauss_legendre(8);
         let mut total = 0.0;
+        let (mut wavelengths, mut shares) = (Vec::new(), Vec::new());
         for &(lo, hi) in bands_nm {
-            self.at(lo).and(self.at(hi))?;
-            let inside = knots.iter().copied().filter(|knot| lo < *knot && *knot < hi);
-            let mut ends: Vec<f64> = std::iter::once(lo).chain(inside).collect();
-            ends.push(hi);
-            for ends in ends.windows(2) {
-                // Smooth weights, such as a black body's, are cut where the wavelength has grown by a fiftieth.
-                let pieces = ((ends[1] / ends[0]).ln() / 0.02).ceil().max(1.0);
-                let half = 0.5 * (ends[1] - ends[0]) / pieces;
-                for piece in 0..pieces as usize {
-                    let middle = ends[0] + half * (2 * piece + 1) as f64;
-                    total += rule
-                        .iter()
-                        .map(|&(x, share)| half * share * self.inside(middle + half * x))
-                        .sum::<f64>();
-                }
+            if !(lo..=hi).contains(&hi) {
+                return None;
             }
+            self.at(lo).and(self.at(hi))?;
+            wavelengths.clear();
+            shares.clear();
+            let mut from = lo;
+            for to in self.knots_between(lo, hi).into_iter().chain([hi]) {
+                // Smooth weights, such as a black body's, are cut where the wavelength has grown by a fiftieth.
+                let pieces = ((to / from).ln() / 0.02).ceil().max(1.0);
+                let half = 0.5 * (to - from) / pieces;
+                for piece in 0..pieces as usize {
+                    let middle = from + half * (2 * piece + 1) as f64;
+                    wavelengths.extend(RULE.iter().map(|node| middle + half * node.0));
+                    shares.extend(RULE.iter().map(|node| half * node.1));
+                }
+                from = to;
+            }
+            let weights = self.inside_all(&wavelengths);
+            total += weights.iter().zip(&shares).map(|(weight, share)| weight * share).sum::<f64>();
         }
         Some(total)
     }
@@ -141,10 +147,19 @@ impl SpectralWeight {
 
     /// The wavelengths in nm at which it is not smooth, ascending.
     pub fn knots_nm(&self) -> Vec<f64> {
+        self.knots_between(0.0, f64::INFINITY)
+    }
+
+    /// Those between two wavelengths in nm, without the two.
+    fn knots_between(&self, lo: f64, hi: f64) -> Vec<f64> {
         match &*self.0 {
-            Kind::Table(rows) => rows.iter().map(|row| row.0).collect(),
+            Kind::Table(rows) => {
+                let first = rows.partition_point(|row| row.0 <= lo);
+                rows[first..].iter().map(|row| row.0).take_while(|&knot| knot < hi).collect()
+            }
             Kind::Product { factors, .. } => {
-                let mut knots: Vec<f64> = factors.iter().flat_map(SpectralWeight::knots_nm).collect();
+                let mut knots: Vec<f64> =
+                    factors.iter().flat_map(|factor| factor.knots_between(lo, hi)).collect();
                 knots.sort_by(f64::total_cmp);
                 knots.dedup();
                 knots
@@ -254,6 +269,40 @@ mod tests {
             assert!((weight.inside(*nm) - value).abs() <= 1e-15 * value, "{nm}");
         }
         assert!(weight.inside_all(&[]).is_empty());
+    }
+
+    #[test]
+    fn an_integral_is_that_of_the_pieces_one_by_one() {
+        let rough: Vec<(f64, f64)> =
+            (0..400).map(|at| (300.0 + 2.0 * f64::from(at), f64::from(at * 7919 % 101))).collect();
+        let lamp = SpectralWeight::table(&rough).expect("valid");
+        let mask =
+            SpectralWeight::table(&[(350.0, 0.0), (401.3, 1.0), (401.4, 0.2), (1000.0, 0.9)]).expect("valid");
+        let body = SpectralWeight::blackbody(2856.0).expect("valid");
+        let both = lamp.times(&mask);
+        for weight in
+            [lamp.clone(), mask.clone(), both.clone(), both.photons(), body.clone(), mask.times(&body)]
+        {
+            for bands in [&[(400.0, 700.0)][..], &[(350.0, 351.0), (401.35, 401.36), (500.0, 1000.0)]] {
+                let mut expected = 0.0;
+                for &(lo, hi) in bands {
+                    let mut ends = weight.knots_nm();
+                    ends.retain(|knot| lo < *knot && *knot < hi);
+                    ends.extend((0..=300).map(|at| lo + (hi - lo) * f64::from(at) / 300.0));
+                    ends.sort_by(f64::total_cmp);
+                    for ends in ends.windows(2) {
+                        let half = 0.5 * (ends[1] - ends[0]);
+                        let value = |x: f64| weight.inside(0.5 * (ends[0] + ends[1]) + half * x);
+                        expected += RULE.iter().map(|&(x, share)| half * share * value(x)).sum::<f64>();
+                    }
+                }
+                let found = weight.integral(bands).expect("within reach");
+                assert!((found / expected - 1.0).abs() < 1e-13, "{found} {expected}");
+            }
+        }
+        assert_eq!(lamp.integral(&[(500.0, 500.0)]), Some(0.0));
+        assert_eq!(lamp.integral(&[(600.0, 500.0)]), None);
+        assert_eq!(SpectralWeight::constant().integral(&[(f64::NAN, 500.0)]), None);
     }
 
     #[test]

@@ -1,9 +1,12 @@
 //! The constants at several wavelengths at once, in plain arithmetic where a model allows it.
 
+use num_complex::Complex64;
+
 use super::model::Model;
-use super::{Index, formula};
+use super::{Index, ev_to_nm, formula, oscillator};
 use crate::error::IndexError;
 use crate::kernel::{Row, WIDTH};
+use crate::number::Number;
 
 impl Index {
     /// n and k at several vacuum wavelengths in nm; the same as [`Index::at`] to the last digits.
@@ -57,7 +60,25 @@ impl Index {
                 to[1] = other[1];
             }
             Model::Same(base) => return base.plain(wavelengths_nm, to),
-            Model::Oscillators { .. } | Model::Mixture { .. } | Model::Urbach { .. } => return false,
+            Model::Oscillators { eps_inf, terms } => {
+                let energies_ev = wavelengths_nm.map(ev_to_nm);
+                let Some([re, im]) = oscillator::permittivity_all(*eps_inf, terms, &energies_ev) else {
+                    return false;
+                };
+                for lane in 0..WIDTH {
+                    let index = Number::sqrt(&Complex64::new(re[lane], im[lane]));
+                    (n.0[lane], k.0[lane]) = (index.re, index.im);
+                }
+            }
+            Model::Urbach { base, k0, at_ev, width_ev } => {
+                if !base.plain(wavelengths_nm, to) {
+                    return false;
+                }
+                for (k, nm) in to[1].0.iter_mut().zip(wavelengths_nm) {
+                    *k += ((ev_to_nm(*nm) - at_ev) * (1.0 / width_ev)).exp() * k0;
+                }
+            }
+            Model::Mixture { .. } => return false,
         }
         let [n, k] = to;
         n.0.iter().all(|n| *n > 0.0 && n.is_finite()) && k.0.iter().all(|k| *k >= 0.0 && k.is_finite())
@@ -67,7 +88,7 @@ impl Index {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::dispersion::Oscillator;
+    use crate::dispersion::{MixingRule, Oscillator};
 
     #[test]
     fn a_block_is_what_its_wavelengths_are_one_by_one() {
@@ -82,7 +103,29 @@ mod tests {
         let cauchy = Index::cauchy(&[1.45, 0.003, 1e-4]).expect("valid");
         let sellmeier = Index::sellmeier(&[(0.7, 0.07), (0.4, 0.12), (0.9, 9.9)]).expect("valid");
         let drude = Oscillator::Drude { plasma_ev: 9.0, width_ev: 0.1 };
+        let lorentz = Oscillator::Lorentz { strength: 2.1, centre_ev: 2.3, width_ev: 0.4 };
+        let tauc = Oscillator::TaucLorentz { strength_ev: 92.0, centre_ev: 3.5, width_ev: 4.0, gap_ev: 1.4 };
+        let sharp = Oscillator::Lorentz { strength: 0.3, centre_ev: 6.0, width_ev: 0.0 };
+        let oscillators =
+            |eps_inf, terms: &[Oscillator]| Index::oscillators(eps_inf, terms.to_vec()).expect("valid");
+        let metal = oscillators(1.0, &[drude, lorentz]);
+        let mixture =
+            |rule| Index::mixture(rule, &[(metal.clone(), 0.2), (table.clone(), 0.8)]).expect("valid");
         let models = [
+            oscillators(2.0, &[sharp]),
+            oscillators(3.0, &[lorentz, sharp]),
+            // A metal without damping has no n where its permittivity is negative: an error.
+            oscillators(1.0, &[Oscillator::Drude { plasma_ev: 9.0, width_ev: 0.0 }]),
+            oscillators(1.0, &[tauc, lorentz]),
+            metal.with_urbach(0.02, 300.0, 0.25).expect("valid"),
+            mixture(MixingRule::Bruggeman),
+            mixture(MixingRule::MaxwellGarnett),
+            mixture(MixingRule::LorentzLorenz),
+            mixture(MixingRule::Volume),
+            table.shifted(-2.4).expect("valid"),
+            Index::sellmeier(&[(1.0, 0.4)]).expect("valid"),
+            cauchy.with_extinction(metal.clone()).expect("valid"),
+            metal.clone(),
             Index::constant(1.5, 0.1).expect("valid"),
             table.clone(),
             cauchy.clone(),

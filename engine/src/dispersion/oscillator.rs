@@ -5,6 +5,7 @@ use num_complex::Complex64;
 use super::model::Model;
 use super::{Index, check, ev_to_nm, tauc_lorentz};
 use crate::error::ModelError;
+use crate::kernel::WIDTH;
 use crate::number::Number;
 
 /// One term of a permittivity. Energies in eV.
@@ -104,4 +105,32 @@ pub(super) fn permittivity<N: Number>(eps_inf: f64, terms: &[Oscillator], energy
         }
     };
     terms.iter().map(term).fold(N::real(eps_inf), |sum, part| sum + part)
+}
+
+/// The same at several photon energies in eV, its real and its imaginary parts; `None` with a Tauc–Lorentz term.
+pub(super) fn permittivity_all(
+    eps_inf: f64,
+    terms: &[Oscillator],
+    energies_ev: &[f64; WIDTH],
+) -> Option<[[f64; WIDTH]; 2]> {
+    let (mut re, mut im) = ([eps_inf; WIDTH], [0.0; WIDTH]);
+    for term in terms {
+        // Both are s/(c − E² − iΓE); Drude's has its centre at no energy.
+        let (strength, centre, width) = match *term {
+            Oscillator::Lorentz { strength, centre_ev, width_ev } => {
+                let centre = centre_ev * centre_ev;
+                (strength * centre, centre, width_ev)
+            }
+            Oscillator::Drude { plasma_ev, width_ev } => (plasma_ev * plasma_ev, 0.0, width_ev),
+            Oscillator::TaucLorentz { .. } => return None,
+        };
+        for lane in 0..WIDTH {
+            let energy = energies_ev[lane];
+            let (off, damping) = (centre - energy * energy, width * energy);
+            let size = off * off + damping * damping;
+            re[lane] += strength * off / size;
+            im[lane] += strength * damping / size;
+        }
+    }
+    Some([re, im])
 }
