@@ -112,16 +112,18 @@ mod tests {
         let mixture =
             |rule| Index::mixture(rule, &[(metal.clone(), 0.2), (table.clone(), 0.8)]).expect("valid");
         let models = [
-            oscillators(2.0, &[sharp]),
-            oscillators(3.0, &[lorentz, sharp]),
-            // A metal without damping has no n where its permittivity is negative: an error.
-            oscillators(1.0, &[Oscillator::Drude { plasma_ev: 9.0, width_ev: 0.0 }]),
+            // These five have no plain arithmetic.
             oscillators(1.0, &[tauc, lorentz]),
-            metal.with_urbach(0.02, 300.0, 0.25).expect("valid"),
             mixture(MixingRule::Bruggeman),
             mixture(MixingRule::MaxwellGarnett),
             mixture(MixingRule::LorentzLorenz),
             mixture(MixingRule::Volume),
+            // The others have.
+            oscillators(2.0, &[sharp]),
+            oscillators(3.0, &[lorentz, sharp]),
+            // A metal without damping has no n where its permittivity is negative: an error.
+            oscillators(1.0, &[Oscillator::Drude { plasma_ev: 9.0, width_ev: 0.0 }]),
+            metal.with_urbach(0.02, 300.0, 0.25).expect("valid"),
             table.shifted(-2.4).expect("valid"),
             Index::sellmeier(&[(1.0, 0.4)]).expect("valid"),
             cauchy.with_extinction(metal.clone()).expect("valid"),
@@ -151,6 +153,7 @@ mod tests {
                     Err(error) => assert_eq!(found, Err(error), "model {at}"),
                     Ok(expected) => {
                         assert_eq!(found, Ok(()));
+                        assert_eq!(model.plain(wavelengths, &mut [Row::ZERO; 2]), at >= 5, "model {at}");
                         for (lane, index) in expected.iter().enumerate() {
                             assert!((to[0].0[lane] - index.re).abs() <= 1e-15 * index.re, "model {at}");
                             assert!((to[1].0[lane] - index.im).abs() <= 1e-15 * index.re, "model {at}");
